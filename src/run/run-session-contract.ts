@@ -1,0 +1,42 @@
+import type { RunHeader } from '#shared/journal/run-header.ts';
+import type { NewObservation } from '#shared/journal/observation.ts';
+import type { Readout } from '#shared/pace/readout.ts';
+import type { RunSheet } from '#shared/pace/run-sheet.ts';
+import type { SensorFailure, SensorSource, SensorStatus } from '#src/sensors/sensor-source.ts';
+import type { Result } from '#shared/result.ts';
+
+/** One run on this device: sensors -> engine -> journal. No React in here; the cockpit is a client of this. */
+export interface RunSession {
+  readonly header: RunHeader;
+  /** 'writer' holds the Web Lock and gives out seq; 'reader' shows what the writer publishes and takes over when it dies. */
+  readonly role: 'writer' | 'reader';
+  /** What to show at this moment of the session clock. Cheap enough for every frame. */
+  readout(): Readout;
+  /** Journals a human act. `eventTimeStamp` is the DOM event's own `timeStamp` (ms); without it, now. */
+  act(act: ActOf<NewObservation>, eventTimeStamp?: number): Result<{ readonly seq: number }, RunFailure>;
+  attach(source: SensorSource, options: { readonly ask: boolean }): Promise<Result<void, SensorFailure>>;
+  detach(): Promise<void>;
+  status(): RunStatus;
+  /** Derived now, from the state. */
+  runSheet(): RunSheet;
+  /** NDJSON of the whole journal, for export without a server. */
+  exportJournal(): Promise<string>;
+  /** Called after anything other than live figures changed (phase, status, taps, settings); at most once a frame. */
+  subscribe(listener: () => void): () => void;
+  close(): Promise<void>;
+}
+
+/** An act without its seq and instant: those are the session's to give. */
+export type ActOf<T> = T extends unknown ? Omit<T, 'at'> : never;
+
+export interface RunStatus {
+  readonly sensor: (SensorStatus & { readonly name: SensorSource['name'] }) | null;
+  readonly storage: { readonly state: 'writing' | 'saved' | 'failing'; readonly pending: number; readonly message: string | null; readonly recovered: 'database' | 'mirror' | null };
+  readonly clockRate: number;
+  readonly restored: boolean;
+}
+
+export interface RunFailure {
+  readonly code: 'read-only' | 'closed';
+  readonly message: string;
+}
