@@ -1,0 +1,9 @@
+import { z } from 'zod';
+import { idSchema } from './fields.ts';
+
+/** POST /api/entries/:id/counting-run: of several runs of one attempt, the one that counts. */
+export const setCountingRunRequestSchema = z.strictObject({ runId: idSchema });
+export type SetCountingRunRequest = z.infer<typeof setCountingRunRequestSchema>;
+
+export const setCountingRunResponseSchema = z.object({ attemptId: idSchema, countingRunId: idSchema });
+export type SetCountingRunResponse = z.infer<typeof setCountingRunResponseSchema>;
