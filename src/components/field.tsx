@@ -9,10 +9,18 @@ interface FieldWords {
   readonly error?: string | undefined;
 }
 
-const BOX = 'min-h-11 rounded-paddock border border-quiet bg-ground px-3 py-2 text-ink w-full aria-invalid:border-fault aria-invalid:border-2';
+const BOX =
+  'min-h-11 rounded-paddock border border-quiet bg-ground px-3 py-2 text-ink w-full aria-invalid:border-fault aria-invalid:border-2';
 
 /** A labelled input with its unit beside it; `ref` and the rest go to the input, so that a form library can register it. */
-export function TextField({ label, unit, hint, error, className = '', ...input }: FieldWords & InputHTMLAttributes<HTMLInputElement> & { readonly ref?: React.Ref<HTMLInputElement> }) {
+export function TextField({
+  label,
+  unit,
+  hint,
+  error,
+  className = '',
+  ...input
+}: FieldWords & InputHTMLAttributes<HTMLInputElement> & { readonly ref?: React.Ref<HTMLInputElement> }) {
   const own = useId();
   const id = input.id ?? own;
   return (
@@ -22,7 +30,15 @@ export function TextField({ label, unit, hint, error, className = '', ...input }
   );
 }
 
-export function SelectField({ label, unit, hint, error, className = '', children, ...select }: FieldWords & SelectHTMLAttributes<HTMLSelectElement> & { readonly ref?: React.Ref<HTMLSelectElement> }) {
+export function SelectField({
+  label,
+  unit,
+  hint,
+  error,
+  className = '',
+  children,
+  ...select
+}: FieldWords & SelectHTMLAttributes<HTMLSelectElement> & { readonly ref?: React.Ref<HTMLSelectElement> }) {
   const own = useId();
   const id = select.id ?? own;
   return (
@@ -34,7 +50,19 @@ export function SelectField({ label, unit, hint, error, className = '', children
   );
 }
 
-function FieldFrame({ id, label, unit, hint, error, children }: Omit<FieldWords, 'error' | 'unit'> & { readonly id: string; readonly error: string | undefined; readonly unit: string | undefined; readonly children: ReactNode }) {
+function FieldFrame({
+  id,
+  label,
+  unit,
+  hint,
+  error,
+  children,
+}: Omit<FieldWords, 'error' | 'unit'> & {
+  readonly id: string;
+  readonly error: string | undefined;
+  readonly unit: string | undefined;
+  readonly children: ReactNode;
+}) {
   return (
     <div className="grid gap-1">
       <label htmlFor={id} className="font-bold">

@@ -23,7 +23,7 @@ export function chooseTheme(theme: Theme): void {
 }
 
 export function applyTheme(theme: Theme): void {
-  document.documentElement.dataset['theme'] = theme;
+  document.documentElement.setAttribute('data-theme', theme);
   const ground = getComputedStyle(document.documentElement).getPropertyValue('--ground').trim();
   document.querySelector('meta[name="theme-color"]')?.setAttribute('content', ground);
 }
