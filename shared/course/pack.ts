@@ -8,9 +8,19 @@ import type { SpeedUnit } from '#shared/units.ts';
  */
 export interface Pack {
   readonly format: 1;
-  readonly event: { readonly id: string; readonly name: string; readonly place: string; readonly timeZone: string; readonly rules: EventRules };
+  readonly event: {
+    readonly id: string;
+    readonly name: string;
+    readonly place: string;
+    readonly timeZone: string;
+    readonly rules: EventRules;
+  };
   readonly team: { readonly id: string; readonly name: string };
-  readonly entry: { readonly id: string; readonly number: string; readonly crew: readonly { readonly name: string; readonly role: string }[] };
+  readonly entry: {
+    readonly id: string;
+    readonly number: string;
+    readonly crew: readonly { readonly name: string; readonly role: string }[];
+  };
   readonly attempt: {
     readonly id: string;
     readonly number: number;

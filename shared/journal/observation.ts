@@ -90,7 +90,13 @@ export type RunResumedV1 = At & { readonly type: 'run-resumed.v1'; readonly as: 
 /** The crew closed the run. `rerun` and `void` do not count; the organisers decide what does. */
 export type RunEndedV1 = At & { readonly type: 'run-ended.v1'; readonly outcome: 'finished' | 'rerun' | 'void' | 'retired' };
 /** What the cockpit showed at the finish, so that a later engine's difference is seen, not hidden. */
-export type FinishShownV1 = At & { readonly type: 'finish-shown.v1'; readonly engine: string; readonly elapsedMs: number; readonly timeErrorMs: number; readonly sigmaMs: number };
+export type FinishShownV1 = At & {
+  readonly type: 'finish-shown.v1';
+  readonly engine: string;
+  readonly elapsedMs: number;
+  readonly timeErrorMs: number;
+  readonly sigmaMs: number;
+};
 export type NoteV1 = At & { readonly type: 'note.v1'; readonly text: string };
 
 export type SensorObservation = PulseV1 | ButtonV1 | PpsV1 | FixV1;

@@ -1,5 +1,5 @@
 import type { Checkpoint } from '#shared/course/course-book.ts';
-import type { MetresPerSecond, Metres, Seconds, UnixMs } from '#shared/units.ts';
+import type { Metres, MetresPerSecond, Seconds, UnixMs } from '#shared/units.ts';
 
 /** What the crew is shown at one instant. Derived from the state and nothing else. */
 export interface Readout {
@@ -33,7 +33,12 @@ export interface Readout {
   readonly source: 'wheel' | 'gnss' | 'none';
   readonly lastTap: TapVerdict | null;
   readonly warnings: readonly Warning[];
-  readonly finish: { readonly elapsed: Seconds; readonly timeError: Seconds; readonly sigma: Seconds; readonly stopBoardIn: Metres | null } | null;
+  readonly finish: {
+    readonly elapsed: Seconds;
+    readonly timeError: Seconds;
+    readonly sigma: Seconds;
+    readonly stopBoardIn: Metres | null;
+  } | null;
 }
 
 /** grid: before the release; held: released, not rolling 5 s later; ended: the crew closed the run. */
@@ -88,5 +93,15 @@ export interface TapVerdict {
 }
 
 export type Warning =
-  | { readonly code: 'wheel-lost' | 'gnss-lost' | 'no-distance' | 'clock-unchecked' | 'over-limit' | 'over-cap' | 'newer-evenline' | 'slept' }
+  | {
+      readonly code:
+        | 'wheel-lost'
+        | 'gnss-lost'
+        | 'no-distance'
+        | 'clock-unchecked'
+        | 'over-limit'
+        | 'over-cap'
+        | 'newer-evenline'
+        | 'slept';
+    }
   | { readonly code: 'checkpoint-missed'; readonly checkpoint: string };

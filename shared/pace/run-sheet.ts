@@ -14,7 +14,13 @@ export interface RunSheet {
   /** What the cockpit journalled at the finish, and whether this derivation agrees to the millisecond. */
   readonly shown: { readonly engine: string; readonly elapsedS: number; readonly timeErrorS: number; readonly agrees: boolean } | null;
   /** Time error and planned time error along the course, at most a few hundred points. */
-  readonly trace: readonly { readonly d: number; readonly elapsedS: number; readonly timeErrorS: number; readonly plannedS: number; readonly speed: number }[];
+  readonly trace: readonly {
+    readonly d: number;
+    readonly elapsedS: number;
+    readonly timeErrorS: number;
+    readonly plannedS: number;
+    readonly speed: number;
+  }[];
   readonly stops: readonly { readonly fromS: number; readonly toS: number | null; readonly d: number }[];
   readonly taps: readonly { readonly seq: number; readonly checkpoint: string | null; readonly verdict: string; readonly movedM: number }[];
   readonly aidsUsed: readonly ('wheel' | 'gnss speed' | 'gnss position')[];

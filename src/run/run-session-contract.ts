@@ -1,9 +1,9 @@
-import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { NewObservation } from '#shared/journal/observation.ts';
+import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { Readout } from '#shared/pace/readout.ts';
 import type { RunSheet } from '#shared/pace/run-sheet.ts';
-import type { SensorFailure, SensorSource, SensorStatus } from '#src/sensors/sensor-source.ts';
 import type { Result } from '#shared/result.ts';
+import type { SensorFailure, SensorSource, SensorStatus } from '#src/sensors/sensor-source.ts';
 
 /** One run on this device: sensors -> engine -> journal. No React in here; the cockpit is a client of this. */
 export interface RunSession {
@@ -31,7 +31,12 @@ export type ActOf<T> = T extends unknown ? Omit<T, 'at'> : never;
 
 export interface RunStatus {
   readonly sensor: (SensorStatus & { readonly name: SensorSource['name'] }) | null;
-  readonly storage: { readonly state: 'writing' | 'saved' | 'failing'; readonly pending: number; readonly message: string | null; readonly recovered: 'database' | 'mirror' | null };
+  readonly storage: {
+    readonly state: 'writing' | 'saved' | 'failing';
+    readonly pending: number;
+    readonly message: string | null;
+    readonly recovered: 'database' | 'mirror' | null;
+  };
   readonly clockRate: number;
   readonly restored: boolean;
 }
