@@ -1,8 +1,6 @@
-import { z } from 'zod';
-
 /**
- * Every code an answer may carry, and the one shape of an error. Clients decide on the code, never on the status or the
- * sentence; the sentence is for the person and says what to do.
+ * Every code an answer may carry. Clients decide on the code, never on the status or the
+ * sentence; the sentence is for the person and says what to do. Without zod, because rooms of the cockpit's bundle read the codes too.
  */
 export const ERROR_CODES = [
   // what was sent
@@ -41,17 +39,3 @@ export const ERROR_CODES = [
   'INTERNAL',
 ] as const;
 export type ErrorCode = (typeof ERROR_CODES)[number];
-
-export const faultSchema = z.object({ code: z.string(), where: z.string(), message: z.string() });
-export type Fault = z.infer<typeof faultSchema>;
-
-export const errorBodySchema = z.object({
-  code: z.enum(ERROR_CODES),
-  message: z.string(),
-  requestId: z.string(),
-  /** With SEQUENCE_GAP: the chunk number that comes next. */
-  expected: z.number().int().nonnegative().optional(),
-  /** With COURSE_BOOK_INVALID, PACK_NOT_READY and INVALID_REQUEST: each fault with its place. */
-  faults: z.array(faultSchema).optional(),
-});
-export type ErrorBody = z.infer<typeof errorBodySchema>;
