@@ -25,8 +25,6 @@ export type SignInRequest = z.infer<typeof signInRequestSchema>;
 /** GET /api/auth/me and the answer to signing up or in. Signing out answers 204. */
 export const meResponseSchema = z.object({
   user: z.object({ id: idSchema, email: z.string(), name: z.string() }),
-  teams: z.array(
-    z.object({ id: idSchema, name: z.string(), kind: z.enum(TEAM_KINDS), role: z.enum(MEMBER_ROLES) }),
-  ),
+  teams: z.array(z.object({ id: idSchema, name: z.string(), kind: z.enum(TEAM_KINDS), role: z.enum(MEMBER_ROLES) })),
 });
 export type MeResponse = z.infer<typeof meResponseSchema>;

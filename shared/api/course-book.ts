@@ -1,7 +1,7 @@
 import { z } from 'zod';
+import { type CourseBook, DUTIES } from '#shared/course/course-book.ts';
 import { idSchema, nameSchema } from './fields.ts';
 import type { Holds, SameShape } from './type-equality.ts';
-import { type CourseBook, DUTIES } from '#shared/course/course-book.ts';
 
 export const printedDistanceSchema = z.strictObject({
   text: z.string().regex(/^\d{1,4}(\.\d{1,6})?$/, 'must be a distance as printed, for example 12.345'),

@@ -1,9 +1,9 @@
 import { z } from 'zod';
+import type { Pack } from '#shared/course/pack.ts';
 import { checkpointSchema, courseBookSchema, zoneSchema } from './course-book.ts';
 import { digestSchema, idSchema, instantSchema, nameSchema, timeZoneSchema } from './fields.ts';
 import { eventRulesSchema, raceClassSchema } from './race-class.ts';
 import type { Holds, SameShape } from './type-equality.ts';
-import type { Pack } from '#shared/course/pack.ts';
 
 const wheelSchema = z.strictObject({
   setupId: idSchema,

@@ -1,8 +1,8 @@
 import { z } from 'zod';
+import type { EventRules, RaceClass } from '#shared/course/race-class.ts';
 import { printedDistanceSchema, printedSpeedSchema } from './course-book.ts';
 import { idSchema, nameSchema } from './fields.ts';
 import type { Holds, SameShape } from './type-equality.ts';
-import type { EventRules, RaceClass } from '#shared/course/race-class.ts';
 
 /** Longer than any course: a day. */
 const DAY_MS = 86_400_000;

@@ -1,8 +1,8 @@
 import { z } from 'zod';
+import type { RunHeader } from '#shared/journal/run-header.ts';
 import { digestSchema, idSchema, instantSchema } from './fields.ts';
 import { packSchema } from './pack.ts';
 import type { Holds, SameShape } from './type-equality.ts';
-import type { RunHeader } from '#shared/journal/run-header.ts';
 
 export const runHeaderSchema = z.strictObject({
   format: z.literal('evenline-journal'),

@@ -1,6 +1,6 @@
 import { z } from 'zod';
-import type { Holds, SameShape } from './type-equality.ts';
 import type { RunSheet } from '#shared/pace/run-sheet.ts';
+import type { Holds, SameShape } from './type-equality.ts';
 
 const legRowSchema = z.object({
   checkpointId: z.string(),
@@ -33,9 +33,7 @@ export const runSheetSchema = z.object({
   legs: z.array(legRowSchema),
   finish: z.object({ elapsedS: z.number(), timeErrorS: z.number(), sigmaS: z.number() }).nullable(),
   shown: z.object({ engine: z.string(), elapsedS: z.number(), timeErrorS: z.number(), agrees: z.boolean() }).nullable(),
-  trace: z.array(
-    z.object({ d: z.number(), elapsedS: z.number(), timeErrorS: z.number(), plannedS: z.number(), speed: z.number() }),
-  ),
+  trace: z.array(z.object({ d: z.number(), elapsedS: z.number(), timeErrorS: z.number(), plannedS: z.number(), speed: z.number() })),
   stops: z.array(z.object({ fromS: z.number(), toS: z.number().nullable(), d: z.number() })),
   taps: z.array(z.object({ seq: z.number(), checkpoint: z.string().nullable(), verdict: z.string(), movedM: z.number() })),
   aidsUsed: z.array(z.enum(['wheel', 'gnss speed', 'gnss position'])),
