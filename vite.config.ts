@@ -1,0 +1,77 @@
+import tailwindcss from '@tailwindcss/vite';
+import react from '@vitejs/plugin-react';
+import { defineConfig, type Plugin } from 'vite';
+import { VitePWA } from 'vite-plugin-pwa';
+
+const GROUND = '#101418';
+
+/**
+ * Writes which modules lie in which chunk beside the build, so that a test can hold the cockpit's bundle free of what it
+ * must not carry. The folder begins with a dot: it is neither served nor precached.
+ */
+function moduleList(): Plugin {
+  return {
+    name: 'evenline:module-list',
+    apply: 'build',
+    generateBundle(_options, bundle) {
+      const chunks = Object.values(bundle).flatMap((file) =>
+        file.type === 'chunk'
+          ? [{ file: file.fileName, entry: file.facadeModuleId, imports: file.imports, modules: Object.keys(file.modules) }]
+          : [],
+      );
+      const source = JSON.stringify(chunks).replaceAll(`${process.cwd()}/`, '');
+      this.emitFile({ type: 'asset', fileName: '.vite/modules.json', source });
+    },
+  };
+}
+
+const pwa = VitePWA({
+  // A newer version waits until a person asks; src/components/app-update.ts registers the worker and asks.
+  registerType: 'prompt',
+  injectRegister: false,
+  manifest: {
+    id: '/',
+    name: 'Evenline',
+    short_name: 'Evenline',
+    description: 'Pace display, plan and run sheet for closed-road, target-average-speed events',
+    lang: 'en',
+    start_url: '/',
+    scope: '/',
+    display: 'standalone',
+    theme_color: GROUND,
+    background_color: GROUND,
+    icons: [
+      { src: '/icon-192.png', sizes: '192x192', type: 'image/png' },
+      { src: '/icon-512.png', sizes: '512x512', type: 'image/png' },
+      { src: '/icon-maskable-512.png', sizes: '512x512', type: 'image/png', purpose: 'maskable' },
+    ],
+  },
+  workbox: {
+    globPatterns: ['**/*.{js,css,html,woff2,svg,png}'],
+    // Workbox leaves files over 2 MiB out of the precache with no more than a warning; a hole there is an app that fails offline.
+    maximumFileSizeToCacheInBytes: 16 * 1024 * 1024,
+    navigateFallback: 'index.html',
+    navigateFallbackDenylist: [/^\/api(\/|$)/],
+    // The first visit is offline-ready at once; an update still waits for its prompt.
+    clientsClaim: true,
+    cleanupOutdatedCaches: true,
+  },
+});
+
+export default defineConfig({
+  plugins: [react(), tailwindcss(), pwa, moduleList()],
+  build: {
+    target: 'chrome122',
+    // The content security policy allows no data: scripts or fonts, so nothing is inlined.
+    assetsInlineLimit: 0,
+    modulePreload: { polyfill: false },
+    manifest: true,
+    reportCompressedSize: false,
+  },
+  worker: { format: 'es' },
+  server: {
+    host: '127.0.0.1',
+    port: Number(process.env['DEV_PORT'] ?? 5173),
+    proxy: { '/api': { target: `http://127.0.0.1:${process.env['PORT'] ?? 4100}`, changeOrigin: false } },
+  },
+});
