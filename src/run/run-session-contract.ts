@@ -1,3 +1,4 @@
+import type { Checkpoint } from '#shared/course/course-book.ts';
 import type { NewObservation } from '#shared/journal/observation.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { Readout } from '#shared/pace/readout.ts';
@@ -19,11 +20,34 @@ export interface RunSession {
   status(): RunStatus;
   /** Derived now, from the state. */
   runSheet(): RunSheet;
+  /** The course as it stands now, with everything that was typed in on the grid. Derived; changes only with `subscribe`. */
+  course(): CourseNow;
   /** NDJSON of the whole journal, for export without a server. */
   exportJournal(): Promise<string>;
   /** Called after anything other than live figures changed (phase, status, taps, settings); at most once a frame. */
   subscribe(listener: () => void): () => void;
   close(): Promise<void>;
+}
+
+/** What the course strip, the grid and the radio words are drawn from. Metres from the start line; plain numbers. */
+export interface CourseNow {
+  /** Start to finish. */
+  readonly lengthM: number;
+  readonly releaseMs: number | null;
+  readonly targetTimeMs: number;
+  readonly stagedBehindM: number;
+  /** Official and own, start, finish and stop board included, in order of distance. */
+  readonly places: readonly { readonly checkpoint: Checkpoint; readonly atM: number }[];
+  /** Officials' and crew's, in order of `fromM`; limit in m/s. */
+  readonly zones: readonly {
+    readonly id: string;
+    readonly name: string;
+    readonly fromM: number;
+    readonly toM: number;
+    readonly limit: number;
+  }[];
+  /** Planned time error along the course, seconds, positive = late; a few hundred points at most. */
+  readonly plan: readonly { readonly d: number; readonly errorS: number }[];
 }
 
 /** An act without its seq and instant: those are the session's to give. */
