@@ -45,8 +45,8 @@ export type EpochV1 = At & {
   readonly n: number;
   readonly mono: number;
   readonly wall: number;
-  /** What carried the session clock over from the last life: nothing (first), the box's clock, or the wall clock. */
-  readonly bridgedBy: 'first' | 'box' | 'pps' | 'gnss' | 'wall';
+  /** What carried the session clock over from the last life: nothing (first), the box's clock, another page's clock, or the wall. */
+  readonly bridgedBy: 'first' | 'box' | 'pps' | 'gnss' | 'page' | 'wall';
   readonly uncertaintyMs: number;
 };
 /** At this `at` the official clock read `officialMs` (fractions allowed), give or take `uncertaintyMs` (one sigma). */

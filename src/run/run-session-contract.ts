@@ -5,11 +5,12 @@ import type { Readout } from '#shared/pace/readout.ts';
 import type { RunSheet } from '#shared/pace/run-sheet.ts';
 import type { Result } from '#shared/result.ts';
 import type { SensorFailure, SensorSource, SensorStatus } from '#src/sensors/sensor-source.ts';
+import type { SessionClock } from './clock.ts';
 
 /** One run on this device: sensors -> engine -> journal. No React in here; the cockpit is a client of this. */
 export interface RunSession {
   readonly header: RunHeader;
-  /** 'writer' holds the Web Lock and gives out seq; 'reader' shows what the writer publishes and takes over when it dies. */
+  /** 'writer' holds the Web Lock and gives out seq; 'reader' shows what the writer publishes and takes over when it dies. May change: see `subscribe`. */
   readonly role: 'writer' | 'reader';
   /** What to show at this moment of the session clock. Cheap enough for every frame. */
   readout(): Readout;
@@ -17,6 +18,10 @@ export interface RunSession {
   act(act: ActOf<NewObservation>, eventTimeStamp?: number): Result<{ readonly seq: number }, RunFailure>;
   attach(source: SensorSource, options: { readonly ask: boolean }): Promise<Result<void, SensorFailure>>;
   detach(): Promise<void>;
+  /** Compares clocks with the server now and journals the result. Refused while the car moves unless the class permits a data link. */
+  checkClock(): Promise<Result<{ readonly uncertaintyMs: number }, RunFailure>>;
+  /** The session clock, for sensor sources and for stamping events. */
+  readonly clock: SessionClock;
   status(): RunStatus;
   /** Derived now, from the state. */
   runSheet(): RunSheet;
@@ -66,6 +71,6 @@ export interface RunStatus {
 }
 
 export interface RunFailure {
-  readonly code: 'read-only' | 'closed';
+  readonly code: 'read-only' | 'closed' | 'no-connection' | 'car-moving';
   readonly message: string;
 }
