@@ -1,7 +1,7 @@
 import type { Result } from '#shared/result.ts';
+import type { ChunkStore, OutboxRun } from '#src/storage/chunk-store.ts';
 import { CHUNK_LIMIT_BYTES } from './chunk-cutter.ts';
 import type { Sha256 } from './digest-chain.ts';
-import type { OutboxRun, OutboxStore } from './outbox-store.ts';
 import { createPatience, type Patience } from './patience.ts';
 import { type PushOutcome, pushRun } from './push-run.ts';
 import { decideRetry } from './retry-policy.ts';
@@ -23,7 +23,7 @@ export interface Outbox {
 }
 
 export interface OutboxDeps {
-  readonly store: OutboxStore;
+  readonly store: ChunkStore;
   readonly fetch: UploadFetch;
   readonly sha256: Sha256;
   /** Resolves after that long; never early. */

@@ -1,8 +1,8 @@
 import { fail, ok, type Result } from '#shared/result.ts';
+import type { ChunkStore, KeptChunk, OutboxRun } from '#src/storage/chunk-store.ts';
 import type { StorageFailure } from '#src/storage/journal-store.ts';
 import { bytesOfCut, cutChunks } from './chunk-cutter.ts';
 import { chainDigest, FIRST_DIGEST, type Sha256 } from './digest-chain.ts';
-import type { KeptChunk, OutboxRun, OutboxStore } from './outbox-store.ts';
 import type { UploadFailureCode } from './retry-policy.ts';
 import type { UploadClient, UploadFailure } from './upload-client.ts';
 
@@ -15,7 +15,7 @@ import type { UploadClient, UploadFailure } from './upload-client.ts';
 export type PushOutcome = 'idle' | 'waiting' | 'complete';
 
 export interface PushDeps {
-  readonly store: OutboxStore;
+  readonly store: ChunkStore;
   readonly client: UploadClient;
   readonly sha256: Sha256;
   /** Called whenever the server confirmed something new. */

@@ -1,7 +1,8 @@
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import { ok } from '#shared/result.ts';
+import type { ChunkStore, KeptChunk } from '#src/storage/chunk-store.ts';
 import type { StoredBlock } from '#src/storage/journal-store.ts';
-import { type KeptChunk, NOTHING_SENT, type OutboxStore, type UploadProgress } from '#src/sync/outbox-store.ts';
+import { NOTHING_SENT, type UploadProgress } from '#src/storage/upload-progress.ts';
 
 /** A device's storage that survives the lives of its pages. `step` stands for the disk: a page may die there. */
 export interface DeviceRun {
@@ -23,7 +24,7 @@ export function addRun(device: Device, header: RunHeader, blocks: StoredBlock[],
   return run;
 }
 
-export function memoryOutboxStore(device: Device, step: () => Promise<void>): OutboxStore {
+export function memoryOutboxStore(device: Device, step: () => Promise<void>): ChunkStore {
   const runOf = (runId: string): DeviceRun => {
     const run = device.runs.get(runId);
     if (run === undefined) throw new Error(`no run ${runId}`);
