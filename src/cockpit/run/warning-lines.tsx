@@ -1,0 +1,21 @@
+import { useDeviceWarnings } from '#src/cockpit/devices/device-warnings.ts';
+import { useStructure } from '#src/cockpit/live/use-live.ts';
+import { warningWords } from '#src/cockpit/view/words.ts';
+import { Icon } from '#src/components/icon.tsx';
+
+/** What is wrong now, by the fault sign; at most two lines, the engine's before the device's. */
+export function WarningLines() {
+  const structure = useStructure();
+  const device = useDeviceWarnings();
+  const lines = [...warningWords(structure), ...device].slice(0, 2);
+  return (
+    <div role="status">
+      {lines.map((words) => (
+        <p key={words} className="warning">
+          <Icon name="fault" />
+          <span>{words}</span>
+        </p>
+      ))}
+    </div>
+  );
+}
