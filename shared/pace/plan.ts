@@ -1,0 +1,237 @@
+import { type CarLimits, evaluate, makeEvaluation, type Piece, pieceMotion, type Solution, solve } from '#shared/pace/plan-solver.ts';
+import { type Schedule, targetTimeAt } from '#shared/pace/schedule.ts';
+import { type Metres, type MetresPerSecond, metres, metresPerSecond, type Seconds, seconds } from '#shared/units.ts';
+
+/** The pace plan: the profile that finishes on zero, from any present state. SI; planned time error positive = late. */
+
+/** A stretch with a highest speed, already in SI. */
+export interface LimitedStretch {
+  readonly from: number;
+  readonly to: number;
+  readonly limit: number;
+}
+
+export interface PlanRequest {
+  readonly schedule: Schedule;
+  readonly zones: readonly LimitedStretch[];
+  /** Highest speed to plan with (cap less its margin), m/s; null for none. */
+  readonly top: number | null;
+  /** Lowest speed of the class, m/s; null for none. */
+  readonly floor: number | null;
+  readonly acceleration: number;
+  readonly deceleration: number;
+  /** Present state: official distance (negative while staged behind the line), speed, seconds since the time started. */
+  readonly from: { readonly x: number; readonly v: number; readonly t: number };
+  /** finish: one even cruise, the lowest peak. sections: the same ratio to every average, so that each place is near zero. */
+  readonly mode: 'finish' | 'sections';
+}
+
+/** Without a class cap the solver still needs an end of the scale; no road car passes it. */
+const TOP_WITHOUT_CAP = 120;
+
+export interface Plan {
+  readonly outcome: 'on zero' | 'cannot be made up' | 'cannot be given back';
+  /** Seconds by which it fails: how late (made up) or early (given back) the finish would be. 0 on zero. */
+  readonly by: Seconds;
+  /** The unknown: cruise speed in m/s (mode finish), or ratio to the averages (mode sections). */
+  readonly s: number;
+  readonly iterations: number;
+  /** True where the car is too fast for a limit ahead and no braking helps. */
+  readonly cannotBrake: boolean;
+  /** Planned seconds since the time started, at official distance x. */
+  timeAt(x: number): Seconds;
+  /** Planned time error at x: positive = late, negative = in hand. */
+  plannedErrorAt(x: number): Seconds;
+  /** Planned speed at x. */
+  speedAt(x: number): MetresPerSecond;
+  /** The steady speed of the piece that holds x: what to hold there once ramps are done. */
+  holdAt(x: number): MetresPerSecond;
+  /** Where braking for the next slower piece begins; null where nothing slower follows at the end of this piece. */
+  brakingFrom(x: number): Metres | null;
+}
+
+/** Cuts [x0, finish] at zone and section edges. Overlapping zones: the lowest limit holds. */
+export function planPieces(request: PlanRequest): readonly Piece[] {
+  const { schedule, zones, from, mode } = request;
+  const top = request.top ?? TOP_WITHOUT_CAP;
+  const end: number = schedule.finish;
+  const cuts = new Set<number>([from.x, end]);
+  const add = (x: number): void => {
+    if (x > from.x && x < end) cuts.add(x);
+  };
+  for (const zone of zones) {
+    add(zone.from);
+    add(zone.to);
+  }
+  if (mode === 'sections') for (const section of schedule.sections) add(section.from);
+  const edges = [...cuts].sort((a, b) => a - b);
+  const pieces: Piece[] = [];
+  for (let i = 1; i < edges.length; i++) {
+    const [begin, stop] = [edges[i - 1] as number, edges[i] as number];
+    const middle = (begin + stop) / 2;
+    let limit = top;
+    for (const zone of zones) if (middle > zone.from && middle < zone.to) limit = Math.min(limit, zone.limit);
+    pieces.push({ from: begin, to: stop, top: limit, weight: mode === 'finish' ? 1 : weightAt(schedule, middle) });
+  }
+  return pieces;
+}
+
+function weightAt(schedule: Schedule, x: number): number {
+  let weight = (schedule.sections[0] as Schedule['sections'][number]).speed as number;
+  for (const section of schedule.sections) if (x > section.from) weight = section.speed;
+  return weight;
+}
+
+const carOf = (request: PlanRequest): CarLimits => ({
+  acceleration: request.acceleration,
+  deceleration: request.deceleration,
+  floor: Math.min(request.floor ?? 0, request.top ?? TOP_WITHOUT_CAP),
+});
+
+/** Solves from the present state to a finish on zero. Total: an impossible wish gives the nearest possible profile and `by`. */
+export function makePlan(request: PlanRequest): Plan {
+  const { schedule, from } = request;
+  const car = carOf(request);
+  const pieces = planPieces(request);
+  if (pieces.length === 0) return finishedPlan(request);
+  const solution = solve(pieces, car, from.v, schedule.targetTime - from.t);
+  const profile = profileOf(pieces, car, from, solution);
+  const timeAt = (x: number): Seconds => seconds(profile.timeAt(x));
+  return {
+    outcome: OUTCOMES[solution.kind],
+    by: seconds(solution.kind === 'solved' ? 0 : solution.by),
+    s: solution.s,
+    iterations: solution.kind === 'solved' ? solution.iterations : 0,
+    cannotBrake: profile.cannotBrake,
+    timeAt,
+    plannedErrorAt: (x) => seconds(timeAt(x) - targetTimeAt(schedule, x)),
+    speedAt: (x) => metresPerSecond(profile.speedAt(x)),
+    holdAt: (x) => metresPerSecond(profile.holdAt(x)),
+    brakingFrom: (x) => profile.brakingFrom(x),
+  };
+}
+
+const OUTCOMES = { solved: 'on zero', short: 'cannot be made up', long: 'cannot be given back' } as const;
+
+/** At or past the finish nothing is left to plan. */
+function finishedPlan({ schedule, from }: PlanRequest): Plan {
+  const error = (x: number): Seconds => seconds(from.t - targetTimeAt(schedule, x));
+  return {
+    outcome: 'on zero',
+    by: seconds(0),
+    s: from.v,
+    iterations: 0,
+    cannotBrake: false,
+    timeAt: () => seconds(from.t),
+    plannedErrorAt: error,
+    speedAt: () => metresPerSecond(from.v),
+    holdAt: () => metresPerSecond(from.v),
+    brakingFrom: () => null,
+  };
+}
+
+interface Phase {
+  readonly x: number;
+  readonly t: number;
+  readonly v: number;
+  /** m/s²: positive speeding up, negative braking. */
+  readonly a: number;
+  readonly limit: number;
+  /** Where the last ramp of this phase's piece begins. */
+  readonly brakeX: number | null;
+}
+
+interface Profile {
+  readonly cannotBrake: boolean;
+  timeAt(x: number): number;
+  speedAt(x: number): number;
+  holdAt(x: number): number;
+  brakingFrom(x: number): Metres | null;
+}
+
+function profileOf(pieces: readonly Piece[], car: CarLimits, from: PlanRequest['from'], solution: Solution): Profile {
+  const { nodes, limits } = solution.evaluation;
+  const phases: Phase[] = [];
+  let cannotBrake = false;
+  let t = from.t;
+  let end = from.x;
+  for (let i = 0; i < pieces.length; i++) {
+    const piece = pieces[i] as Piece;
+    const [v0, v1, limit] = [nodes[i] as number, nodes[i + 1] as number, limits[i] as number];
+    if (v0 > piece.top + 1e-9) cannotBrake = true;
+    const motion = pieceMotion(piece.to - piece.from, v0, v1, limit, car);
+    const brakeX = motion.peak > v1 + 1e-9 ? piece.from + motion.rampIn + motion.cruise : null;
+    const ramp = v0 > motion.peak ? -car.deceleration : car.acceleration;
+    const shared = { limit, brakeX };
+    const push = (x: number, v: number, a: number, length: number, time: number): void => {
+      if (length > 0) phases.push({ x, t, v, a, ...shared });
+      t += time;
+    };
+    push(piece.from, v0, ramp, motion.rampIn, Math.abs(motion.peak - v0) / Math.abs(ramp));
+    push(piece.from + motion.rampIn, motion.peak, 0, motion.cruise, motion.cruise > 0 ? motion.cruise / motion.peak : 0);
+    push(piece.from + motion.rampIn + motion.cruise, motion.peak, -car.deceleration, piece.to - piece.from - motion.rampIn - motion.cruise, (motion.peak - v1) / car.deceleration);
+    end = piece.to;
+  }
+  const finish: Phase = { x: end, t, v: nodes[pieces.length] as number, a: 0, limit: limits[pieces.length - 1] as number, brakeX: null };
+  const phaseAt = (x: number): Phase => {
+    if (x >= finish.x) return finish;
+    let [low, high] = [0, phases.length - 1];
+    while (low < high) {
+      const middle = (low + high + 1) >> 1;
+      if ((phases[middle] as Phase).x <= x) low = middle;
+      else high = middle - 1;
+    }
+    return phases[low] as Phase;
+  };
+  const speedIn = (phase: Phase, x: number): number => Math.sqrt(Math.max(0, phase.v * phase.v + 2 * phase.a * Math.max(0, x - phase.x)));
+  return {
+    cannotBrake,
+    speedAt: (x) => speedIn(phaseAt(x), x),
+    timeAt: (x) => {
+      const phase = phaseAt(x);
+      const way = Math.max(0, x - phase.x);
+      if (way === 0 || phase === finish) return phase.t;
+      // 2·way/(v0+v1) holds for steady and uniformly changing speed alike, and does not cancel near a = 0
+      return phase.t + (2 * way) / (phase.v + speedIn(phase, x));
+    },
+    holdAt: (x) => phaseAt(x).limit,
+    brakingFrom: (x) => {
+      const { brakeX } = phaseAt(x);
+      return brakeX === null ? null : metres(brakeX);
+    },
+  };
+}
+
+/** The least time from the request's state to the finish, under every limit, seconds. */
+export function fastestTime(request: PlanRequest): Seconds {
+  const pieces = planPieces({ ...request, mode: 'finish' });
+  if (pieces.length === 0) return seconds(0);
+  return seconds(evaluate(pieces, carOf(request), request.from.v, request.top ?? TOP_WITHOUT_CAP, makeEvaluation(pieces.length)).time);
+}
+
+/**
+ * Point of no return: how far the present speed may be held (within every limit) before a finish on zero is out of reach.
+ * Null when it already is; the finish when it never comes.
+ */
+export function pointOfNoReturn(request: PlanRequest): Metres | null {
+  const { schedule, from } = request;
+  const held = planPieces({ ...request, mode: 'finish' });
+  if (held.length === 0) return metres(schedule.finish);
+  const car = { ...carOf(request), floor: 0 };
+  const evaluation = evaluate(held, car, from.v, from.v, makeEvaluation(held.length));
+  const profile = profileOf(held, car, from, { kind: 'solved', s: from.v, evaluation, iterations: 0 });
+  const late = (x: number): number => {
+    const state = { x, v: profile.speedAt(x), t: profile.timeAt(x) };
+    return state.t + fastestTime({ ...request, from: state }) - schedule.targetTime;
+  };
+  if (late(from.x) > 0) return null;
+  if (late(schedule.finish) <= 0) return schedule.finish;
+  let [low, high] = [from.x, schedule.finish as number];
+  // 60 halvings of 150 km reach the last bit of a float64
+  for (let i = 0; i < 60 && high - low > 1e-6; i++) {
+    const middle = (low + high) / 2;
+    if (late(middle) > 0) high = middle;
+    else low = middle;
+  }
+  return metres(low);
+}
