@@ -1,6 +1,7 @@
 import { useRef } from 'react';
 import type { Band as BandReadout, Readout } from '#shared/pace/readout.ts';
 import { useLiveModel, usePainter } from '#src/cockpit/live/use-live.ts';
+import { ThemeKey } from '#src/cockpit/theme-key.tsx';
 import { openness, poolShare } from '#src/cockpit/view/band-geometry.ts';
 import { createSteadyFigure } from '#src/cockpit/view/steady-figure.ts';
 import { sideWord, stepsAsText } from '#src/cockpit/view/words.ts';
@@ -48,6 +49,7 @@ export function Band() {
         <span ref={figure} className="band-figure" />
         <span ref={word} className="band-word" />
       </div>
+      <ThemeKey className="band-theme" />
       <div className="band-window">
         <div ref={early} className="slab slab-early" />
       </div>

@@ -1,4 +1,5 @@
 import { formatSpeed } from '#shared/course/format.ts';
+import type { NextCheckpoint } from '#shared/pace/readout.ts';
 import { LiveText } from '#src/cockpit/live/live-text.tsx';
 import { useStructure } from '#src/cockpit/live/use-live.ts';
 import { fittingSize } from '#src/cockpit/view/names.ts';
@@ -19,22 +20,27 @@ export function CheckpointPanel() {
   return (
     <section className="panel" aria-label="next checkpoint">
       <div className="panel-top">
-        <span className="panel-count">{next === null ? 'after the finish' : `checkpoint ${next.index} of ${next.of}`}</span>
+        <span className="panel-count">{next === null ? 'after the finish' : countText(next)}</span>
         <StopKey />
       </div>
       {next === null ? null : (
         <>
           <h2 className="panel-name" data-size={fittingSize(next.checkpoint.name, NAME_WIDTH, 2, SIZES)}>
             {next.checkpoint.name}
-            {next.checkpoint.side === null ? null : <span className="panel-note">on the {next.checkpoint.side}</span>}
           </h2>
           <dl className="panel-rows">
             <Row label="to go" of={(r) => (r.next === null ? '' : toGoText(r.next.toGo, distanceUnit))} />
             <Row label="in" of={(r) => (r.next?.eta == null ? '–' : durationText(r.next.eta))} />
             <Row label="plan there" of={(r) => (r.next === null ? '' : errorText(r.next.planned, 1))} />
             <Row label="sure to" of={(r) => sureText(r.sigma)} />
-            <Row label="distance" of={(r) => distanceText(r.distance, distanceUnit)} />
-            <Row label="speed" of={(r) => (r.speed === null ? '–' : `${formatSpeed(r.speed, speedUnit)} ${speedUnit}`)} />
+            <div className="panel-row panel-here">
+              <dd>
+                <LiveText of={(r) => distanceText(r.distance, distanceUnit)} />
+              </dd>
+              <dd>
+                <LiveText of={(r) => (r.speed === null ? '–' : `${formatSpeed(r.speed, speedUnit)} ${speedUnit}`)} />
+              </dd>
+            </div>
           </dl>
         </>
       )}
@@ -44,6 +50,12 @@ export function CheckpointPanel() {
       </div>
     </section>
   );
+}
+
+/** Two short lines: which of the places it is, and the side to look at. */
+function countText(next: NextCheckpoint): string {
+  const side = next.checkpoint.side === null ? '' : `, ${next.checkpoint.side}`;
+  return `checkpoint\n${next.index} of ${next.of}${side}`;
 }
 
 function Row({ label, of }: { readonly label: string; readonly of: Parameters<typeof LiveText>[0]['of'] }) {

@@ -95,7 +95,7 @@ export function warningWords(readout: Readout): readonly string[] {
 function warningText(warning: Warning, readout: Readout): string {
   switch (warning.code) {
     case 'wheel-lost':
-      return readout.source === 'gnss' ? `wheel lost, GNSS now, ${sureText(readout.sigma)}` : 'wheel lost';
+      return readout.source === 'gnss' ? `GNSS now, ${sureText(readout.sigma)}` : 'wheel lost';
     case 'gnss-lost':
       return 'GNSS lost';
     case 'no-distance':
