@@ -1,56 +1,74 @@
-/** Reads what `ByteWriter` wrote. Running past the end never throws: it sets `short` and gives zeros. */
+/** Reads what `ByteWriter` wrote. Running past the end never throws: `short` becomes and stays true. */
 export class ByteReader {
-  short = false;
+  private readonly bytes: Uint8Array;
+  private readonly end: number;
+  private position: number;
 
-  constructor(
-    private readonly bytes: Uint8Array,
-    public at: number,
-    private readonly end: number,
-  ) {}
+  constructor(bytes: Uint8Array, from: number, end: number) {
+    this.bytes = bytes;
+    this.position = from;
+    this.end = end;
+  }
+
+  get at(): number {
+    return this.position;
+  }
 
   get done(): boolean {
-    return this.at >= this.end;
+    return this.position >= this.end;
+  }
+
+  get short(): boolean {
+    return this.position > this.end;
   }
 
   byte(): number {
-    if (this.at < this.end) return this.bytes[this.at++] as number;
-    this.short = true;
-    return 0;
+    return this.bytes[this.position++] as number;
   }
 
   unsigned(): number {
+    const bytes = this.bytes;
+    let at = this.position;
     let value = 0;
-    // Four groups of seven bits fit in the fast integers of the machine; longer numbers go on in floating point.
-    for (let shift = 0; shift < 28; shift += 7) {
-      const next = this.byte();
-      value |= (next & 0x7f) << shift;
-      if (next < 0x80) return value;
-    }
-    let factor = 2 ** 28;
-    for (let group = 4; group < 8; group++) {
-      const next = this.byte();
+    let factor = 1;
+    let next = 0x80;
+    // Behind the last byte `next` is undefined, whose comparison ends the loop: `short` then tells.
+    while (next >= 0x80 && factor < BEYOND) {
+      next = bytes[at++] as number;
       value += (next & 0x7f) * factor;
-      if (next < 0x80) return value;
       factor *= 0x80;
     }
-    // A ninth group would leave the whole numbers behind: no writer makes one.
-    this.short = true;
-    return 0;
+    this.position = at;
+    return value;
   }
 
   signed(): number {
-    const value = this.unsigned();
-    if (value <= 0x7fffffff) return (value >>> 1) ^ -(value & 1);
-    return value % 2 === 0 ? value / 2 : -(value + 1) / 2;
+    const bytes = this.bytes;
+    let at = this.position;
+    // One to four bytes are nearly all of a journal: they stay in the machine's whole numbers.
+    let next = bytes[at++] as number;
+    let value = next & 0x7f;
+    for (let shift = 7; next >= 0x80 && shift < 28; shift += 7) {
+      next = bytes[at++] as number;
+      value |= (next & 0x7f) << shift;
+    }
+    if (next >= 0x80) {
+      const long = this.unsigned();
+      return long % 2 === 0 ? long / 2 : -(long + 1) / 2;
+    }
+    this.position = at;
+    return (value >>> 1) ^ -(value & 1);
   }
 
   skip(length: number): void {
-    if (this.at + length > this.end) this.short = true;
-    this.at = Math.min(this.at + length, this.end);
+    this.position += length;
   }
 }
 
+/** Eight groups of seven bits reach 2^56; a writer stops at 2^53. */
+const BEYOND = 2 ** 56;
+
 export function readU32(bytes: Uint8Array, at: number): number {
-  const [a = 0, b = 0, c = 0, d = 0] = [bytes[at], bytes[at + 1], bytes[at + 2], bytes[at + 3]];
-  return (a | (b << 8) | (c << 16) | (d << 24)) >>> 0;
+  const low = (bytes[at] as number) | ((bytes[at + 1] as number) << 8) | ((bytes[at + 2] as number) << 16);
+  return (low | ((bytes[at + 3] as number) << 24)) >>> 0;
 }
