@@ -2,7 +2,10 @@ import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
 import pg from 'pg';
 
 /** The pool and Drizzle over it. A transaction is a `Database` too, so that verbs may be nested. */
-export type Database = Pick<NodePgDatabase, 'select' | 'selectDistinct' | 'insert' | 'update' | 'delete' | 'execute' | 'transaction'>;
+export type Database = Pick<
+  NodePgDatabase,
+  'select' | 'selectDistinct' | 'selectDistinctOn' | 'insert' | 'update' | 'delete' | 'execute' | 'transaction'
+>;
 
 export interface Connection {
   readonly db: NodePgDatabase;

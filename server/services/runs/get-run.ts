@@ -1,0 +1,37 @@
+import { and, desc, eq } from 'drizzle-orm';
+import { runResults } from '#server/db/schema/run-results.ts';
+import { runs } from '#server/db/schema/runs.ts';
+import { requireRun } from '#server/services/access/require-run.ts';
+import type { ServiceContext } from '#server/services/context.ts';
+import { runSheetSchema } from '#shared/api/run-sheet.ts';
+import type { RunResponse } from '#shared/api/runs.ts';
+import { heldOf } from './held.ts';
+import { runSummaries } from './run-summaries.ts';
+
+/** A run, how much of it is held, and its newest run sheet if there is one. */
+export async function getRun(ctx: ServiceContext, runId: string): Promise<RunResponse> {
+  const row = await requireRun(ctx, runId, 'runs.read');
+  const [run] = await runSummaries(ctx, eq(runs.id, runId));
+  if (!run) throw new Error('a run without its entry');
+  const [result] = await ctx.db
+    .select()
+    .from(runResults)
+    .where(and(eq(runResults.runId, runId), eq(runResults.journalHead, row.head)))
+    .orderBy(desc(runResults.computedAt))
+    .limit(1);
+  return {
+    run,
+    held: heldOf(row),
+    sheet: result ? runSheetSchema.parse(result.sheet) : null,
+    result: result
+      ? {
+          engine: result.engineVersion,
+          packDigest: result.packDigest,
+          journalHead: result.journalHead,
+          amendmentHead: result.amendmentHead,
+          computedMs: result.computedAt.getTime(),
+        }
+      : null,
+    failure: row.failureMessage === null || row.failureAt === null ? null : { message: row.failureMessage, atMs: row.failureAt.getTime() },
+  };
+}
