@@ -84,7 +84,7 @@ export function verdictWords(tap: TapVerdict): string {
 function scaleWords(tap: TapVerdict): string {
   if (tap.scaleKept !== null || tap.scaleAfter === tap.scaleBefore) return 'scale kept';
   const percent = (tap.scaleAfter / tap.scaleBefore - 1) * 100;
-  return `scale ${percent < 0 ? 'down' : 'up'} ${roundedDigits(percent, 2)} %`;
+  return `scale ${percent < 0 ? 'down' : 'up'} ${roundedDigits(percent, 2)}\u00a0%`;
 }
 
 /** What is wrong now, one short line each. A missed place is the verdict line's to tell. */

@@ -1,0 +1,52 @@
+import type { RunHeader } from '#shared/journal/run-header.ts';
+import type { Result } from '#shared/result.ts';
+import { canReadLocation, canReadSerial } from '#src/cockpit/devices/support.ts';
+import type { RunSession } from '#src/run/run-session-contract.ts';
+import { createGeolocationSource } from '#src/sensors/geolocation-source.ts';
+import type { SensorFailure, SensorSource } from '#src/sensors/sensor-source.ts';
+import { createSerialSource } from '#src/sensors/serial-source.ts';
+import { createSimulatorSource } from '#src/sensors/simulator-source.ts';
+
+export type SourceName = SensorSource['name'];
+
+const WORDS: Readonly<Record<SourceName, string>> = { serial: 'pulse box', geolocation: 'tablet GNSS', simulator: 'simulator' };
+/** Which source this device used last, so that a reloaded page finds it again without a touch. */
+const KEPT = 'evenline.source';
+
+/** The sources that this run may use on this device: practice drives by the simulator, a class may forbid the rest. */
+export function sourcesFor(header: Pick<RunHeader, 'practice' | 'pack'>): readonly { readonly name: SourceName; readonly words: string }[] {
+  const { aids } = header.pack.raceClass;
+  const names: SourceName[] = [];
+  if (header.practice) names.push('simulator');
+  else {
+    if (canReadSerial() && (aids.wheel || aids.gnssSpeed || aids.gnssPosition)) names.push('serial');
+    if (canReadLocation() && (aids.gnssSpeed || aids.gnssPosition)) names.push('geolocation');
+  }
+  return names.map((name) => ({ name, words: WORDS[name] }));
+}
+
+export async function attachSource(session: RunSession, name: SourceName, ask: boolean): Promise<Result<void, SensorFailure>> {
+  const attached = await session.attach(createSource(session, name), { ask });
+  if (attached.ok) localStorage.setItem(KEPT, name);
+  return attached;
+}
+
+/** After a reload: the source that was in use, if it can be opened without asking. */
+export async function attachAgain(session: RunSession): Promise<void> {
+  if (session.role === 'reader') return;
+  const kept = localStorage.getItem(KEPT);
+  const again = sourcesFor(session.header).find(({ name }) => session.header.practice || name === kept);
+  if (again !== undefined) await attachSource(session, again.name, false);
+}
+
+function createSource(session: RunSession, name: SourceName): SensorSource {
+  const { clock } = session;
+  switch (name) {
+    case 'serial':
+      return createSerialSource({ clock });
+    case 'geolocation':
+      return createGeolocationSource({ clock });
+    case 'simulator':
+      return createSimulatorSource({ clock, pack: session.header.pack, seed: session.header.runId });
+  }
+}

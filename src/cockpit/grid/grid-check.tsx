@@ -1,0 +1,43 @@
+import './grid.css';
+import { useState } from 'react';
+import { CheckpointButton } from '#src/cockpit/run/checkpoint-button.tsx';
+import { Cautions } from '#src/components/cautions.tsx';
+import { GridItems } from './grid-items.tsx';
+import { GridSettings, type Setting } from './grid-settings.tsx';
+import { LimitEntry } from './limit-entry.tsx';
+import { LineEntry } from './line-entry.tsx';
+import { ReleaseEntry } from './release-entry.tsx';
+import { StagedEntry } from './staged-entry.tsx';
+import { TargetEntry } from './target-entry.tsx';
+
+/** Before the start: what is missing stands out, and whatever a bulletin changes can be typed in with no signal. */
+export function GridCheck({ side }: { readonly side: 'left' | 'right' }) {
+  const [setting, setSetting] = useState<Setting | null>(null);
+  const done = (): void => setSetting(null);
+  if (setting !== null) return <SettingEntry setting={setting} done={done} />;
+  return (
+    <main className="run grid-check" data-side={side}>
+      <GridItems />
+      <GridSettings change={setSetting} />
+      <section className="strip grid-cautions">
+        <Cautions />
+      </section>
+      <CheckpointButton />
+    </main>
+  );
+}
+
+function SettingEntry({ setting, done }: { readonly setting: Setting; readonly done: () => void }) {
+  switch (setting) {
+    case 'release':
+      return <ReleaseEntry done={done} />;
+    case 'target':
+      return <TargetEntry done={done} />;
+    case 'staged':
+      return <StagedEntry done={done} />;
+    case 'limit':
+      return <LimitEntry done={done} />;
+    case 'line':
+      return <LineEntry done={done} />;
+  }
+}

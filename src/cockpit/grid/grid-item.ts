@@ -1,0 +1,61 @@
+import { formatDuration } from '#shared/course/format.ts';
+import type { Readout } from '#shared/pace/readout.ts';
+import type { RoomState } from '#src/cockpit/devices/storage-room.ts';
+import type { WakeState } from '#src/cockpit/devices/wake-lock.ts';
+import type { RunStatus } from '#src/run/run-session-contract.ts';
+
+/** What must be ready before the start. Only what is missing stands out. */
+export interface GridItem {
+  readonly ready: boolean;
+  readonly words: string;
+}
+
+/** Beyond these the clock is not called checked: a twentieth of a second at two sigma, and an hour without a look. */
+const CLOCK_SIGMA_S = 0.025;
+const CLOCK_AGE_S = 3600;
+/** Ten runs, each with its mirror: an hour at 100 Hz is about 20 MB a copy. */
+const ROOM_BYTES = 10 * 2 * 20e6;
+
+export function clockItem(official: Readout['official']): GridItem {
+  if (official === null) return { ready: false, words: 'not checked against the official clock' };
+  const ready = official.sigma <= CLOCK_SIGMA_S && official.age <= CLOCK_AGE_S && official.source !== 'wall';
+  const source = official.source === 'wall' ? 'only this tablet’s own clock' : `by ${official.source}`;
+  return { ready, words: `${source}, ±${Math.ceil(official.sigma * 2000)} ms, ${formatDuration(Math.floor(official.age))} ago` };
+}
+
+export function sensorItem(status: RunStatus['sensor']): GridItem {
+  if (status === null || status.state === 'closed') return { ready: false, words: 'nothing connected' };
+  const counts = `${status.goodLines} good, ${status.garbledLines} garbled`;
+  switch (status.state) {
+    case 'live':
+      return { ready: true, words: `${status.name}, ${counts}` };
+    case 'opening':
+      return { ready: false, words: `${status.name}, opening` };
+    case 'silent':
+      return { ready: false, words: `${status.name} is silent, ${counts}` };
+    case 'lost':
+      return { ready: false, words: status.failure?.message ?? `${status.name} is lost` };
+  }
+}
+
+export function storageItem(room: RoomState, storage: RunStatus['storage']): GridItem {
+  if (storage.state === 'failing') return { ready: false, words: storage.message ?? 'the journal cannot be written' };
+  if (room.freeBytes === null) return { ready: false, words: 'room not known yet' };
+  const megabytes = Math.floor(room.freeBytes / 1e6);
+  const enough = room.freeBytes >= ROOM_BYTES;
+  const recovered = storage.recovered === 'mirror' ? ', recovered from the mirror' : '';
+  if (!enough) return { ready: false, words: `only ${megabytes} MB free: make room on the tablet` };
+  return { ready: room.persisted, words: `${room.persisted ? 'kept' : 'the browser may clear it'}, ${megabytes} MB free${recovered}` };
+}
+
+export function wakeItem(wake: WakeState): GridItem {
+  if (wake === 'on') return { ready: true, words: 'stays on' };
+  return {
+    ready: false,
+    words: wake === 'unsupported' ? 'may sleep: set it to never in the tablet’s settings' : 'may sleep: touch the screen',
+  };
+}
+
+export function buttonItem(lastTap: Readout['lastTap']): GridItem {
+  return lastTap === null ? { ready: false, words: 'press it once, on glass or glove' } : { ready: true, words: 'button good' };
+}
