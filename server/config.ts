@@ -27,7 +27,7 @@ const originSchema = z
 const environmentSchema = z
   .object({
     HOST: setting(z.string().default('127.0.0.1')),
-    PORT: setting(z.coerce.number({ error: 'must be a port number' }).int().min(0).max(65535).default(3000)),
+    PORT: setting(z.coerce.number({ error: 'must be a port number' }).int().min(0).max(65535).default(4100)),
     PUBLIC_ORIGIN: setting(originSchema.optional()),
     TRUST_PROXY: setting(z.coerce.number({ error: 'must be the number of proxies in front' }).int().min(0).max(8).default(0)),
     TLS_CERT: setting(z.string().optional()),

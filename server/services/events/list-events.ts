@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, inArray, or } from 'drizzle-orm';
+import { asc, desc, eq, inArray, or } from 'drizzle-orm';
 import { entries } from '#server/db/schema/entries.ts';
 import { events } from '#server/db/schema/events.ts';
 import { raceClasses } from '#server/db/schema/race-classes.ts';

@@ -1,8 +1,10 @@
 import { and, desc, eq } from 'drizzle-orm';
+import { packs } from '#server/db/schema/packs.ts';
 import { runResults } from '#server/db/schema/run-results.ts';
 import { runs } from '#server/db/schema/runs.ts';
 import { requireRun } from '#server/services/access/require-run.ts';
 import type { ServiceContext } from '#server/services/context.ts';
+import { packSchema } from '#shared/api/pack.ts';
 import { runSheetSchema } from '#shared/api/run-sheet.ts';
 import type { RunResponse } from '#shared/api/runs.ts';
 import { heldOf } from './held.ts';
@@ -13,6 +15,8 @@ export async function getRun(ctx: ServiceContext, runId: string): Promise<RunRes
   const row = await requireRun(ctx, runId, 'runs.read');
   const [run] = await runSummaries(ctx, eq(runs.id, runId));
   if (!run) throw new Error('a run without its entry');
+  const [pack] = await ctx.db.select({ canonical: packs.canonical }).from(packs).where(eq(packs.digest, row.packDigest));
+  if (!pack) throw new Error('a run without its pack');
   const [result] = await ctx.db
     .select()
     .from(runResults)
@@ -22,6 +26,7 @@ export async function getRun(ctx: ServiceContext, runId: string): Promise<RunRes
   return {
     run,
     held: heldOf(row),
+    pack: packSchema.parse(JSON.parse(pack.canonical)),
     sheet: result ? runSheetSchema.parse(result.sheet) : null,
     result: result
       ? {
