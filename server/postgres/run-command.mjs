@@ -8,6 +8,7 @@ import { spawn } from 'node:child_process';
  * @property {NodeJS.ProcessEnv} [env]
  * @property {number} [uid]
  * @property {number} [gid]
+ * @property {AbortSignal} [signal] Ends the program.
  * @property {boolean} [show] Send the program's output to stderr as well.
  *
  * @typedef {{ code: number, output: string }} CommandResult

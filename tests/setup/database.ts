@@ -1,6 +1,6 @@
 import { randomBytes } from 'node:crypto';
-import pg from 'pg';
 import { inject } from 'vitest';
+import { administer, databaseUrl } from './administer.ts';
 
 interface TestDatabase {
   readonly url: string;
@@ -13,17 +13,5 @@ export async function createTestDatabase(): Promise<TestDatabase> {
   const base = inject('postgresUrl');
   const name = `test_${randomBytes(8).toString('hex')}`;
   await administer(base, `create database ${name} template ${inject('templateDatabase')}`);
-  const url = new URL(base);
-  url.pathname = `/${name}`;
-  return { url: url.href, drop: () => administer(base, `drop database if exists ${name} with (force)`) };
-}
-
-async function administer(url: string, sql: string): Promise<void> {
-  const client = new pg.Client({ connectionString: url });
-  await client.connect();
-  try {
-    await client.query(sql);
-  } finally {
-    await client.end();
-  }
+  return { url: databaseUrl(base, name), drop: () => administer(base, `drop database if exists ${name} with (force)`) };
 }

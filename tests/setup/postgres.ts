@@ -1,7 +1,7 @@
-import pg from 'pg';
 import type { TestProject } from 'vitest/node';
 import { migrate } from '#server/db/migrate.ts';
 import { openDisposableCluster } from '#server/postgres/cluster.mjs';
+import { administer, databaseUrl } from './administer.ts';
 
 /**
  * PostgreSQL for a run of API tests: a cluster of its own, or the one that DATABASE_URL names. The schema is migrated once,
@@ -22,23 +22,11 @@ export default async function setup(project: TestProject): Promise<() => Promise
   const url = cluster?.url ?? given ?? '';
   const template = `evenline_template_${process.pid}`;
   await administer(url, `create database ${template}`);
-  const templateUrl = new URL(url);
-  templateUrl.pathname = `/${template}`;
-  await migrate(templateUrl.href);
+  await migrate(databaseUrl(url, template));
   project.provide('postgresUrl', url);
   project.provide('templateDatabase', template);
   return async () => {
     await administer(url, `drop database if exists ${template} with (force)`);
     await cluster?.release();
   };
-}
-
-async function administer(url: string, sql: string): Promise<void> {
-  const client = new pg.Client({ connectionString: url });
-  await client.connect();
-  try {
-    await client.query(sql);
-  } finally {
-    await client.end();
-  }
 }
