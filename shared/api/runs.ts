@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { digestSchema, idSchema, unixMsSchema } from './fields.ts';
+import { packSchema } from './pack.ts';
 import { runSheetSchema } from './run-sheet.ts';
 
 /** Largest chunk the server takes: whole blocks up to 256 KiB, and room for the block that crosses the line. */
@@ -59,6 +60,8 @@ export type SealResponse = z.infer<typeof sealResponseSchema>;
 export const runResponseSchema = z.object({
   run: runSummarySchema,
   held: heldResponseSchema,
+  /** The pack the run was driven with: its course book, class and units are what the sheet speaks of. */
+  pack: packSchema,
   /** Null until `status` is ready. */
   sheet: runSheetSchema.nullable(),
   /** What the sheet was derived from. */
