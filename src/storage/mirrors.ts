@@ -37,7 +37,8 @@ export class Mirrors {
         // Asking for a file makes it: of a run nobody holds none is left behind.
         if (mirror !== null && run === null && copy?.soundBytes === 0 && mirror.damagedTail().byteLength === 0) await this.remove(runId);
       });
-      return run;
+      // Said for as long as this window lives: the start may have mended it before anyone read it.
+      return run !== null && this.mended.has(runId) ? { ...run, recovered: 'mirror' } : run;
     });
   }
 

@@ -5,7 +5,14 @@ const CHANNEL = 'evenline-storage';
 /** A run under way commits four blocks a second; nobody needs to hear of each. */
 const AT_MOST_EVERY_MS = 500;
 
-const CHANGING = ['createRun', 'append', 'removeRun', 'putPack', 'removePack', 'progress'] as const satisfies readonly (keyof JournalStore)[];
+const CHANGING = [
+  'createRun',
+  'append',
+  'removeRun',
+  'putPack',
+  'removePack',
+  'progress',
+] as const satisfies readonly (keyof JournalStore)[];
 
 /** The same store, heard of by whoever watches. */
 export function announcing(store: JournalStore): JournalStore {

@@ -49,6 +49,8 @@ type AnyMethod = (...args: readonly unknown[]) => Promise<unknown>;
 
 /** Answers the calls that come over `port`, once the store is there. */
 export function serveStore(store: Promise<JournalStore>, port: CallPort): void {
+  // Told to every caller; it needs no report of its own.
+  store.catch(() => undefined);
   port.onmessage = ({ data }: MessageEvent<Call>) => void answer(store, data).then((reply) => port.postMessage(reply));
 }
 
