@@ -25,7 +25,7 @@ function lockedPackages(path) {
  *
  * @param {string} root
  */
-function isInstalled(root) {
+export function isInstalled(root) {
   const wanted = lockedPackages(join(root, 'package-lock.json'));
   const held = lockedPackages(join(root, 'node_modules/.package-lock.json'));
   if (wanted === null || held === null) return false;
