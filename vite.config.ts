@@ -1,9 +1,11 @@
+import { readFileSync } from 'node:fs';
 import tailwindcss from '@tailwindcss/vite';
 import react from '@vitejs/plugin-react';
 import { defineConfig, type Plugin } from 'vite';
 import { VitePWA } from 'vite-plugin-pwa';
 
 const GROUND = '#101418';
+const { version } = JSON.parse(readFileSync('package.json', 'utf8')) as { readonly version: string };
 
 /**
  * Writes which modules lie in which chunk beside the build, so that a test can hold the cockpit's bundle free of what it
@@ -59,6 +61,7 @@ const pwa = VitePWA({
 });
 
 export default defineConfig({
+  define: { 'import.meta.env.VITE_APP_VERSION': JSON.stringify(version) },
   plugins: [react(), tailwindcss(), pwa, moduleList()],
   build: {
     target: 'chrome122',

@@ -5,7 +5,7 @@ import type { RunSession } from '#src/run/run-session-contract.ts';
 import { createGeolocationSource } from '#src/sensors/geolocation-source.ts';
 import type { SensorFailure, SensorSource } from '#src/sensors/sensor-source.ts';
 import { createSerialSource } from '#src/sensors/serial-source.ts';
-import { createSimulatorSource } from '#src/sensors/simulator-source.ts';
+import { createPracticeSource } from './simulator.ts';
 
 export type SourceName = SensorSource['name'];
 
@@ -26,7 +26,7 @@ export function sourcesFor(header: Pick<RunHeader, 'practice' | 'pack'>): readon
 }
 
 export async function attachSource(session: RunSession, name: SourceName, ask: boolean): Promise<Result<void, SensorFailure>> {
-  const attached = await session.attach(createSource(session, name), { ask });
+  const attached = await session.attach(await createSource(session, name), { ask });
   if (attached.ok) localStorage.setItem(KEPT, name);
   return attached;
 }
@@ -39,7 +39,7 @@ export async function attachAgain(session: RunSession): Promise<void> {
   if (again !== undefined) await attachSource(session, again.name, false);
 }
 
-function createSource(session: RunSession, name: SourceName): SensorSource {
+async function createSource(session: RunSession, name: SourceName): Promise<SensorSource> {
   const { clock } = session;
   switch (name) {
     case 'serial':
@@ -47,6 +47,6 @@ function createSource(session: RunSession, name: SourceName): SensorSource {
     case 'geolocation':
       return createGeolocationSource({ clock });
     case 'simulator':
-      return createSimulatorSource({ clock, pack: session.header.pack, seed: session.header.runId });
+      return createPracticeSource(session);
   }
 }

@@ -1,8 +1,8 @@
 import { formatDuration } from '#shared/course/format.ts';
 import type { Readout } from '#shared/pace/readout.ts';
-import type { RoomState } from '#src/cockpit/devices/storage-room.ts';
 import type { WakeState } from '#src/cockpit/devices/wake-lock.ts';
 import type { RunStatus } from '#src/run/run-session-contract.ts';
+import type { PersistenceFacts } from '#src/storage/persistence.ts';
 
 /** What must be ready before the start. Only what is missing stands out. */
 export interface GridItem {
@@ -13,8 +13,8 @@ export interface GridItem {
 /** Beyond these the clock is not called checked: a twentieth of a second at two sigma, and an hour without a look. */
 const CLOCK_SIGMA_S = 0.025;
 const CLOCK_AGE_S = 3600;
-/** Ten runs, each with its mirror: an hour at 100 Hz is about 20 MB a copy. */
-const ROOM_BYTES = 10 * 2 * 20e6;
+/** Room for ten runs of an hour: less and no run should start here. */
+const ROOM_HOURS = 10;
 
 export function clockItem(official: Readout['official']): GridItem {
   if (official === null) return { ready: false, words: 'not checked against the official clock' };
@@ -38,14 +38,14 @@ export function sensorItem(status: RunStatus['sensor']): GridItem {
   }
 }
 
-export function storageItem(room: RoomState, storage: RunStatus['storage']): GridItem {
+export function storageItem(facts: PersistenceFacts, storage: RunStatus['storage']): GridItem {
   if (storage.state === 'failing') return { ready: false, words: storage.message ?? 'the journal cannot be written' };
-  if (room.freeBytes === null) return { ready: false, words: 'room not known yet' };
-  const megabytes = Math.floor(room.freeBytes / 1e6);
-  const enough = room.freeBytes >= ROOM_BYTES;
-  const recovered = storage.recovered === 'mirror' ? ', recovered from the mirror' : '';
-  if (!enough) return { ready: false, words: `only ${megabytes} MB free: make room on the tablet` };
-  return { ready: room.persisted, words: `${room.persisted ? 'kept' : 'the browser may clear it'}, ${megabytes} MB free${recovered}` };
+  if (facts.freeHours === null) return { ready: false, words: 'room not known' };
+  const hours = Math.floor(facts.freeHours);
+  if (hours < ROOM_HOURS) return { ready: false, words: `room for ${hours} h only: make room on the tablet` };
+  const room = hours > 99 ? 'room for over 99 h' : `room for ${hours} h`;
+  const recovered = storage.recovered === 'mirror' ? ', recovered from its mirror' : '';
+  return { ready: facts.persisted, words: `${facts.persisted ? 'kept' : 'the browser may clear it'}, ${room}${recovered}` };
 }
 
 export function wakeItem(wake: WakeState): GridItem {

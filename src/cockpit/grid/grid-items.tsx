@@ -1,5 +1,4 @@
 import { useSyncExternalStore } from 'react';
-import { useStorageRoom } from '#src/cockpit/devices/use-storage-room.ts';
 import { useWakeLock } from '#src/cockpit/devices/use-wake-lock.ts';
 import { useStructure } from '#src/cockpit/live/use-live.ts';
 import { useRunSettings } from '#src/cockpit/run/run-context.ts';
@@ -8,16 +7,17 @@ import { ClockItem } from './clock-item.tsx';
 import { buttonItem, storageItem, wakeItem } from './grid-item.ts';
 import { ItemRow } from './item-row.tsx';
 import { SensorItem } from './sensor-item.tsx';
+import { usePersistence } from './use-persistence.ts';
 
 /** The list of what must be ready, always in the same places; what is missing is in ink with the act that mends it. */
 export function GridItems() {
   const { session } = useRunSettings();
   const { lastTap } = useStructure();
   const status = useSyncExternalStore(session.subscribe, session.status);
-  const [room, askRoom] = useStorageRoom();
+  const [facts, askAgain] = usePersistence();
   const wake = useWakeLock();
   const { pack, packDigest, practice, clockRate } = session.header;
-  const storage = storageItem(room, status.storage);
+  const storage = storageItem(facts, status.storage);
   return (
     <section className="grid-items" aria-label="grid check">
       <header className="grid-head">
@@ -31,7 +31,7 @@ export function GridItems() {
         name="course"
         item={{ ready: true, words: `${pack.courseBook.name}, version ${pack.courseBook.version}, ${packDigest.slice(0, 8)}` }}
       />
-      <ItemRow name="storage" item={storage} acts={storage.ready ? [] : [{ words: 'ask again', run: askRoom }]} />
+      <ItemRow name="storage" item={storage} acts={storage.ready ? [] : [{ words: 'ask again', run: askAgain }]} />
       <ClockItem />
       <SensorItem />
       <ItemRow name="button" item={buttonItem(lastTap)} />
