@@ -1,0 +1,115 @@
+import { Link } from 'react-router';
+import { formatDistance, formatDuration } from '#shared/course/format.ts';
+import type { RaceClass } from '#shared/course/race-class.ts';
+import { Button } from '#src/components/button.tsx';
+import { FigureRow } from '#src/components/figure.tsx';
+import { TimeError } from '#src/paddock/parts/time-error.tsx';
+import { clockInZone, formatDay } from '#src/paddock/parts/when.ts';
+import type { StoredPack } from '#src/storage/pack-store.ts';
+import { isDone, isStale, type PlacedAttempt } from './next-thing.ts';
+import { PLAIN_LINK } from './next-thing-field.tsx';
+import { PackOnDeviceWords, StorePackButton } from './pack-on-device.tsx';
+import { ReleaseEditor } from './release-form.tsx';
+
+/** One go at the course: what it is, its release, its pack on this tablet, its runs. */
+export function AttemptSection({
+  placed,
+  pack,
+  editing,
+  setEditing,
+}: {
+  readonly placed: PlacedAttempt;
+  readonly pack: StoredPack | null;
+  readonly editing: boolean;
+  readonly setEditing: (editing: boolean) => void;
+}) {
+  const { event, entry, attempt } = placed;
+  const raceClass = event.raceClasses.find(({ id }) => id === entry.raceClassId);
+  const { courseBook } = attempt;
+  return (
+    <section className="mb-10" aria-label={`attempt ${attempt.number} of number ${entry.number}`}>
+      <h3 className="text-xl font-bold">
+        Attempt {attempt.number}: {courseBook.name}
+      </h3>
+      <dl>
+        <FigureRow label="course">
+          {formatDistance(courseBook.lengthM, courseBook.unit, 3)} {courseBook.unit}
+          <Quiet>
+            {courseBook.checkpoints} checkpoints, {attempt.ownCheckpoints} of your own, {courseBook.zones} zones, version{' '}
+            {courseBook.version}
+          </Quiet>
+        </FigureRow>
+        {raceClass === undefined ? null : <ClassRow raceClass={raceClass} />}
+        <FigureRow label="release">
+          <Release placed={placed} editing={editing} setEditing={setEditing} />
+        </FigureRow>
+        <FigureRow label="pack">
+          <PackOnDeviceWords attempt={attempt} pack={pack} />
+        </FigureRow>
+        <RunRows placed={placed} />
+      </dl>
+      <div className="mt-4 flex flex-wrap gap-3">
+        {pack === null ? null : (
+          <>
+            <a className={PLAIN_LINK} href={`/cockpit/${attempt.id}`}>
+              {isDone(attempt) ? 'open cockpit for a rerun' : 'open cockpit'}
+            </a>
+            <Link className={PLAIN_LINK} to={`/plan/${attempt.id}`}>
+              plan
+            </Link>
+          </>
+        )}
+        {entry.mayPrepare && attempt.packFault === null && (pack === null || isStale(attempt, pack)) ? (
+          <StorePackButton attemptId={attempt.id} again={pack !== null} kind="plain" />
+        ) : null}
+      </div>
+    </section>
+  );
+}
+
+function Release({ placed, editing, setEditing }: Pick<Parameters<typeof AttemptSection>[0], 'placed' | 'editing' | 'setEditing'>) {
+  const { event, entry, attempt } = placed;
+  if (editing) return <ReleaseEditor placed={placed} done={() => setEditing(false)} />;
+  return (
+    <span className="grid justify-items-end gap-1">
+      <span>{attempt.releaseMs === null ? 'not set' : clockInZone(attempt.releaseMs, event.timeZone)}</span>
+      {attempt.releaseMs === null ? null : <Quiet>{formatDay(attempt.releaseMs, event.timeZone)}</Quiet>}
+      {entry.mayPrepare ? (
+        <Button kind="bare" className="-mr-4" onClick={() => setEditing(true)}>
+          {attempt.releaseMs === null ? 'set' : 'change'}
+        </Button>
+      ) : null}
+    </span>
+  );
+}
+
+function ClassRow({ raceClass }: { readonly raceClass: RaceClass }) {
+  const { cap, floor } = raceClass;
+  const averages = raceClass.sections.flatMap((section) =>
+    section.kind === 'average' ? [`${section.average.text} ${section.average.unit}`] : ['neutral'],
+  );
+  return (
+    <FigureRow label={`class ${raceClass.name}`}>
+      {formatDuration(raceClass.targetTimeMs / 1000, 3)}
+      <Quiet>
+        average {averages.join(', ')}
+        {cap === null ? '' : `; cap ${cap.text} ${cap.unit}`}
+        {floor === null ? '' : `; floor ${floor.text} ${floor.unit}`}
+      </Quiet>
+    </FigureRow>
+  );
+}
+
+function RunRows({ placed }: { readonly placed: PlacedAttempt }) {
+  return placed.attempt.runs.map((run) => (
+    <FigureRow key={run.id} label={run.counts ? 'run that counts' : run.practice ? 'practice run' : 'run'}>
+      <Link className="underline underline-offset-4" to={`/runs/${run.id}`}>
+        {run.finish === null ? (run.outcome ?? run.status) : <TimeError seconds={run.finish.timeErrorS} decimals={2} />}
+      </Link>
+    </FigureRow>
+  ));
+}
+
+function Quiet({ children }: { readonly children: React.ReactNode }) {
+  return <span className="font-text text-quiet block text-right text-sm font-normal whitespace-normal">{children}</span>;
+}

@@ -1,0 +1,87 @@
+import type { ReactNode } from 'react';
+import { Link } from 'react-router';
+import { CAUTIONS } from '#shared/cautions.ts';
+import { Button } from '#src/components/button.tsx';
+import type { StoredPack } from '#src/storage/pack-store.ts';
+import { type NextThing, nextThing, type PlacedAttempt } from './next-thing.ts';
+import { StorePackButton } from './pack-on-device.tsx';
+
+export const MAIN_LINK = 'rounded-paddock bg-ink text-ground border-ink inline-flex min-h-11 items-center border px-4 py-2 font-bold';
+export const PLAIN_LINK = 'rounded-paddock border-ink inline-flex min-h-11 items-center border px-4 py-2 font-bold';
+
+/** Stands first on the page: how far this attempt is, and the one act that comes next. */
+export function NextThingField({
+  placed,
+  pack,
+  editRelease,
+}: {
+  readonly placed: PlacedAttempt;
+  readonly pack: StoredPack | null;
+  readonly editRelease: () => void;
+}) {
+  const next = nextThing(placed, pack, CAUTIONS.length);
+  return (
+    <section aria-labelledby="next-thing" className="bg-pool mb-8 grid gap-4 p-5 md:p-6">
+      <h2 id="next-thing" className="text-quiet">
+        next, for attempt {placed.attempt.number} of number {placed.entry.number}
+      </h2>
+      <ul className="font-figure flex flex-wrap gap-x-6 gap-y-1 text-lg font-extrabold md:text-xl">
+        {next.readiness.map((words) => (
+          <li key={words}>{words}</li>
+        ))}
+      </ul>
+      <p className="max-w-prose">{next.why}</p>
+      <Act next={next} placed={placed} editRelease={editRelease} />
+    </section>
+  );
+}
+
+function Act({
+  next,
+  placed,
+  editRelease,
+}: {
+  readonly next: NextThing;
+  readonly placed: PlacedAttempt;
+  readonly editRelease: () => void;
+}): ReactNode {
+  const { attempt, entry } = placed;
+  switch (next.act) {
+    case 'set the release':
+      return entry.mayPrepare ? (
+        <div>
+          <Button kind="main" onClick={editRelease}>
+            set the release
+          </Button>
+        </div>
+      ) : (
+        <p>The manager or the navigator sets it.</p>
+      );
+    case 'mend the pack':
+      return null;
+    case 'store the pack':
+    case 'store the pack again':
+      return <StorePackButton attemptId={attempt.id} again={next.act === 'store the pack again'} kind="main" />;
+    case 'open the cockpit':
+      return (
+        <div className="flex flex-wrap gap-3">
+          <a className={MAIN_LINK} href={`/cockpit/${attempt.id}`}>
+            open cockpit
+          </a>
+          <Link className={PLAIN_LINK} to={`/plan/${attempt.id}`}>
+            see the plan
+          </Link>
+        </div>
+      );
+    case 'read the run sheet': {
+      const run = attempt.runs.find(({ id }) => id === attempt.countingRunId) ?? attempt.runs[0];
+      return run === undefined ? null : (
+        <div>
+          <Link className={MAIN_LINK} to={`/runs/${run.id}`}>
+            read the run sheet
+          </Link>
+        </div>
+      );
+    }
+  }
+}

@@ -1,0 +1,65 @@
+import type { ReactNode } from 'react';
+
+/** A table of figures: hairlines between rows, figures to the right so that decimal points stand under each other. */
+export function DataTable({
+  caption,
+  head,
+  children,
+}: {
+  readonly caption: string;
+  readonly head: readonly Column[];
+  readonly children: ReactNode;
+}) {
+  return (
+    // biome-ignore lint/a11y/noNoninteractiveTabindex: a region that scrolls must be reachable from the keyboard
+    <section className="overflow-x-auto" tabIndex={0} aria-label={caption}>
+      <table className="w-full border-collapse text-base">
+        <caption className="spoken-only">{caption}</caption>
+        <thead>
+          <tr className="border-ink border-b">
+            {head.map((column) => (
+              <th
+                key={column.name}
+                scope="col"
+                className={`text-quiet px-2 py-2 align-bottom font-normal first:pl-0 ${column.figures === true ? 'text-right' : 'text-left'}`}
+              >
+                {column.name}
+                {column.unit === undefined ? null : <span className="block text-sm">{column.unit}</span>}
+              </th>
+            ))}
+          </tr>
+        </thead>
+        <tbody>{children}</tbody>
+      </table>
+    </section>
+  );
+}
+
+export interface Column {
+  readonly name: string;
+  readonly unit?: string;
+  readonly figures?: boolean;
+}
+
+export function Row({ children, className = '' }: { readonly children: ReactNode; readonly className?: string }) {
+  return <tr className={`border-hair border-b align-baseline ${className}`}>{children}</tr>;
+}
+
+export function RowHead({ children }: { readonly children: ReactNode }) {
+  return (
+    <th scope="row" className="px-2 py-2 text-left font-normal first:pl-0">
+      {children}
+    </th>
+  );
+}
+
+export function Cell({ children, className = '' }: { readonly children: ReactNode; readonly className?: string }) {
+  return <td className={`px-2 py-2 first:pl-0 ${className}`}>{children}</td>;
+}
+
+/** A figure in its column; a dash where there is none. */
+export function FigureCell({ children }: { readonly children: string | null }) {
+  return (
+    <td className="font-figure px-2 py-2 text-right whitespace-pre first:pl-0">{children ?? <span className="text-quiet">–</span>}</td>
+  );
+}
