@@ -16,17 +16,21 @@ export interface Connection {
 /** Waiting for a connection, and any one statement, end after this long: an exhausted pool answers 503, never hangs. */
 const PATIENCE_MS = 5000;
 
-export function connect(
-  databaseUrl: string,
-  options: { readonly max?: number; readonly onIdleError?: (error: Error) => void } = {},
-): Connection {
+export interface ConnectOptions {
+  readonly max?: number;
+  /** For work that is nobody's request: statements and pauses inside a transaction may take as long as they need. */
+  readonly patient?: boolean;
+  readonly onIdleError?: (error: Error) => void;
+}
+
+export function connect(databaseUrl: string, options: ConnectOptions = {}): Connection {
+  const limits = options.patient ? {} : { statement_timeout: PATIENCE_MS, idle_in_transaction_session_timeout: 2 * PATIENCE_MS };
   const pool = new pg.Pool({
     connectionString: databaseUrl,
     max: options.max ?? 10,
     connectionTimeoutMillis: PATIENCE_MS,
-    statement_timeout: PATIENCE_MS,
-    idle_in_transaction_session_timeout: 2 * PATIENCE_MS,
     application_name: 'evenline',
+    ...limits,
   });
   // Without a listener, a connection that the database drops while idle would end the process.
   pool.on('error', options.onIdleError ?? (() => undefined));

@@ -4,9 +4,10 @@ import { courseBooks } from '#server/db/schema/course-books.ts';
 import { ServiceError } from '#server/service-error.ts';
 import { requireTeam } from '#server/services/access/require-team.ts';
 import { type ServiceContext, within } from '#server/services/context.ts';
-import type { CourseBookResponse, PublishCourseBookRequest } from '#shared/api/course-book.ts';
+import { type CourseBookResponse, courseBookSchema, type PublishCourseBookRequest } from '#shared/api/course-book.ts';
 import { checkCourseBook } from '#shared/course/check.ts';
 import { printedMetres } from '#shared/course/convert.ts';
+import type { CourseBook } from '#shared/course/course-book.ts';
 
 /** Publishes a new book, or the next version of one of the team's. A published version never changes. */
 export async function publishCourseBook(
@@ -18,19 +19,36 @@ export async function publishCourseBook(
   const { courseBookId, ...content } = request;
   return ctx.db.transaction(async (tx) => {
     const inside = within(ctx, tx);
-    const id = courseBookId === null ? await createBook(inside, teamId, request.name) : await lockBook(inside, teamId, courseBookId);
-    const courseBook = { ...content, id, version: await nextVersion(inside, id) };
-    const lengthM = checkedLength(courseBook);
-    const publishedAt = new Date(ctx.now());
-    await tx
-      .insert(courseBookVersions)
-      .values({ courseBookId: id, version: courseBook.version, body: courseBook, lengthM, publishedBy: userId, publishedAt });
-    return { courseBook, publishedMs: publishedAt.getTime() };
+    const id =
+      courseBookId === null
+        ? await createBook(inside, { teamId, eventId: null, name: request.name })
+        : await lockBook(inside, teamId, courseBookId);
+    return publishVersion(inside, id, userId, content);
   });
 }
 
-async function createBook(ctx: ServiceContext, teamId: string, name: string): Promise<string> {
-  const [book] = await ctx.db.insert(courseBooks).values({ ownerTeamId: teamId, name }).returning({ id: courseBooks.id });
+export type CourseContent = Omit<CourseBook, 'id' | 'version'>;
+
+/** The caller has been let through already, and holds the book's row or has just made it. */
+export async function publishVersion(ctx: ServiceContext, id: string, userId: string, content: CourseContent): Promise<CourseBookResponse> {
+  const courseBook = courseBookSchema.parse({ ...content, id, version: await nextVersion(ctx, id) });
+  const lengthM = checkedLength(courseBook);
+  const publishedAt = new Date(ctx.now());
+  await ctx.db
+    .insert(courseBookVersions)
+    .values({ courseBookId: id, version: courseBook.version, body: courseBook, lengthM, publishedBy: userId, publishedAt });
+  return { courseBook, publishedMs: publishedAt.getTime() };
+}
+
+interface NewBook {
+  readonly teamId: string;
+  readonly eventId: string | null;
+  readonly name: string;
+}
+
+/** A book without a version yet. */
+export async function createBook(ctx: ServiceContext, { teamId, eventId, name }: NewBook): Promise<string> {
+  const [book] = await ctx.db.insert(courseBooks).values({ ownerTeamId: teamId, eventId, name }).returning({ id: courseBooks.id });
   if (!book) throw new Error('insert returned no row');
   return book.id;
 }
@@ -55,7 +73,7 @@ async function nextVersion(ctx: ServiceContext, id: string): Promise<number> {
 }
 
 /** Metres from start to finish. @throws ServiceError COURSE_BOOK_INVALID with every fault, each with its place. */
-export function checkedLength(courseBook: CourseBookResponse['courseBook']): number {
+function checkedLength(courseBook: CourseBook): number {
   const faults = checkCourseBook(courseBook).filter((fault) => fault.severity === 'error');
   const [first, ...others] = faults;
   if (first) {
