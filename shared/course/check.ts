@@ -1,5 +1,12 @@
 import { readPrintedMetres, readPrintedSpeed } from '#shared/course/convert.ts';
-import { type Checkpoint, type CourseBook, DUTIES, type PrintedDistance, type PrintedSpeed, type Zone } from '#shared/course/course-book.ts';
+import {
+  type Checkpoint,
+  type CourseBook,
+  DUTIES,
+  type PrintedDistance,
+  type PrintedSpeed,
+  type Zone,
+} from '#shared/course/course-book.ts';
 import type { RaceClass, Section } from '#shared/course/race-class.ts';
 
 /** Every fault of a course book or a class, each with its place and a sentence. None is a reason to lose what was typed. */
@@ -44,7 +51,8 @@ function collector(): { readonly faults: CourseFault[]; readonly report: Report 
 
 function distance(report: Report, d: PrintedDistance, where: string): number | null {
   const value = readPrintedMetres(d);
-  if (value === null) report('BAD_DISTANCE', where, `"${d.text}" is no distance. Write plain decimals with a point, like 12.345, and the unit km or mi.`);
+  if (value === null)
+    report('BAD_DISTANCE', where, `"${d.text}" is no distance. Write plain decimals with a point, like 12.345, and the unit km or mi.`);
   return value;
 }
 
@@ -110,15 +118,19 @@ function checkEnds(report: Report, book: CourseBook, places: readonly (number | 
     report('NO_START', 'checkpoints[0]', 'The first checkpoint must be the start, at distance 0.');
   }
   rows.forEach((row, i) => {
-    if (i > 0 && row.duty === 'start') report('NO_START', `checkpoints[${i}].duty`, `"${row.name}" is a second start. Only the first checkpoint is the start.`);
+    if (i > 0 && row.duty === 'start')
+      report('NO_START', `checkpoints[${i}].duty`, `"${row.name}" is a second start. Only the first checkpoint is the start.`);
   });
   const finish = rows.findIndex((row) => row.duty === 'finish');
   if (finish < 0) return report('NO_FINISH', 'checkpoints', 'One checkpoint must have the duty finish.');
   rows.forEach((row, i) => {
     const where = `checkpoints[${i}].duty`;
-    if (i > finish && row.duty === 'finish') report('SEVERAL_FINISHES', where, `"${row.name}" is a second finish. Only one checkpoint is the finish.`);
-    else if (i > finish && row.duty !== 'stop board') report('AFTER_FINISH', where, `"${row.name}" lies after the finish. Only the stop board may.`);
-    if (i < finish && row.duty === 'stop board') report('STOP_BOARD_BEFORE_FINISH', where, `"${row.name}" is a stop board before the finish. It belongs after it.`);
+    if (i > finish && row.duty === 'finish')
+      report('SEVERAL_FINISHES', where, `"${row.name}" is a second finish. Only one checkpoint is the finish.`);
+    else if (i > finish && row.duty !== 'stop board')
+      report('AFTER_FINISH', where, `"${row.name}" lies after the finish. Only the stop board may.`);
+    if (i < finish && row.duty === 'stop board')
+      report('STOP_BOARD_BEFORE_FINISH', where, `"${row.name}" is a stop board before the finish. It belongs after it.`);
   });
 }
 
@@ -129,7 +141,8 @@ function checkZone(report: Report, zone: Zone, where: string, length: number | n
   speed(report, zone.limit, `${where}.limit`);
   if (from === null || to === null) return;
   if (from >= to) report('ZONE_REVERSED', where, `The zone "${zone.name}" ends before it begins. Its end must lie after its beginning.`);
-  if (length !== null && to > length) report('ZONE_OUTSIDE', `${where}.to`, `The zone "${zone.name}" ends after the finish. It must lie between start and finish.`);
+  if (length !== null && to > length)
+    report('ZONE_OUTSIDE', `${where}.to`, `The zone "${zone.name}" ends after the finish. It must lie between start and finish.`);
 }
 
 /** Faults of a class on a book whose own check is clean. A target time that the sections do not add up to is a caution: the official target decides. */
@@ -154,7 +167,12 @@ export function checkRaceClass(book: CourseBook, raceClass: RaceClass): readonly
 }
 
 /** Seconds that the sections add up to, or null where one of them is faulty. */
-function checkSections(report: Report, sections: readonly Section[], length: number | null, bounds: { cap: number | null; floor: number | null }): number | null {
+function checkSections(
+  report: Report,
+  sections: readonly Section[],
+  length: number | null,
+  bounds: { cap: number | null; floor: number | null },
+): number | null {
   let begin = 0;
   let sum: number | null = 0;
   sections.forEach((section, i) => {
@@ -172,7 +190,13 @@ function checkSections(report: Report, sections: readonly Section[], length: num
   return sum;
 }
 
-function sectionTime(report: Report, section: Section, where: string, length: number, { cap, floor }: { cap: number | null; floor: number | null }): number | null {
+function sectionTime(
+  report: Report,
+  section: Section,
+  where: string,
+  length: number,
+  { cap, floor }: { cap: number | null; floor: number | null },
+): number | null {
   if (section.kind === 'neutral') {
     if (Number.isInteger(section.timeMs) && section.timeMs > 0) return section.timeMs / 1000;
     report('BAD_TIME', `${where}.timeMs`, 'A neutral section needs its time in whole milliseconds above zero.');
@@ -180,7 +204,9 @@ function sectionTime(report: Report, section: Section, where: string, length: nu
   }
   const average = speed(report, section.average, `${where}.average`);
   if (average === null) return null;
-  if (cap !== null && average > cap) report('AVERAGE_OUT_OF_BOUNDS', `${where}.average`, 'The average lies above the highest speed of the class.');
-  if (floor !== null && average < floor) report('AVERAGE_OUT_OF_BOUNDS', `${where}.average`, 'The average lies below the lowest speed of the class.');
+  if (cap !== null && average > cap)
+    report('AVERAGE_OUT_OF_BOUNDS', `${where}.average`, 'The average lies above the highest speed of the class.');
+  if (floor !== null && average < floor)
+    report('AVERAGE_OUT_OF_BOUNDS', `${where}.average`, 'The average lies below the lowest speed of the class.');
   return length / average;
 }

@@ -29,7 +29,10 @@ export function formatSpeed(mps: number, unit: SpeedUnit): string {
 }
 
 /** A time error as magnitude and word, never a bare sign. Positive seconds = late. A shown zero is `level`. */
-export function formatTimeError(seconds: number, decimals: number): { readonly magnitude: string; readonly word: 'late' | 'early' | 'level' } {
+export function formatTimeError(
+  seconds: number,
+  decimals: number,
+): { readonly magnitude: string; readonly word: 'late' | 'early' | 'level' } {
   const magnitude = roundedDigits(seconds, decimals);
   if (isZero(magnitude)) return { magnitude, word: 'level' };
   return { magnitude, word: seconds > 0 ? 'late' : 'early' };

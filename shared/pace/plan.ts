@@ -1,4 +1,4 @@
-import { type CarLimits, evaluate, makeEvaluation, type Piece, pieceMotion, type Solution, solve } from '#shared/pace/plan-solver.ts';
+import { type CarLimits, type Evaluation, evaluate, makeEvaluation, type Piece, pieceMotion, solve } from '#shared/pace/plan-solver.ts';
 import { type Schedule, targetTimeAt } from '#shared/pace/schedule.ts';
 import { type Metres, type MetresPerSecond, metres, metresPerSecond, type Seconds, seconds } from '#shared/units.ts';
 
@@ -44,10 +44,21 @@ export interface Plan {
   plannedErrorAt(x: number): Seconds;
   /** Planned speed at x. */
   speedAt(x: number): MetresPerSecond;
-  /** The steady speed of the piece that holds x: what to hold there once ramps are done. */
+  /** The steady speed to hold at x once ramps are done. */
   holdAt(x: number): MetresPerSecond;
-  /** Where braking for the next slower piece begins; null where nothing slower follows at the end of this piece. */
-  brakingFrom(x: number): Metres | null;
+  /** The stretch under one limit that holds x. */
+  stretchAt(x: number): PlannedStretch;
+}
+
+/** A stretch under one limit: a zone, or the road between zones; a section's edge cuts too where averages are followed. */
+export interface PlannedStretch {
+  readonly to: Metres;
+  /** Highest speed here by zone and cap, m/s. */
+  readonly top: MetresPerSecond;
+  /** The steady speed to hold here once ramps are done. */
+  readonly hold: MetresPerSecond;
+  /** Where braking for what follows begins; null where nothing slower follows. */
+  readonly brakingFrom: Metres | null;
 }
 
 /** Cuts [x0, finish] at zone and section edges. Overlapping zones: the lowest limit holds. */
@@ -95,7 +106,7 @@ export function makePlan(request: PlanRequest): Plan {
   const pieces = planPieces(request);
   if (pieces.length === 0) return finishedPlan(request);
   const solution = solve(pieces, car, from.v, schedule.targetTime - from.t);
-  const profile = profileOf(pieces, car, from, solution);
+  const profile = profileOf(pieces, car, from, solution.evaluation);
   const timeAt = (x: number): Seconds => seconds(profile.timeAt(x));
   return {
     outcome: OUTCOMES[solution.kind],
@@ -106,8 +117,8 @@ export function makePlan(request: PlanRequest): Plan {
     timeAt,
     plannedErrorAt: (x) => seconds(timeAt(x) - targetTimeAt(schedule, x)),
     speedAt: (x) => metresPerSecond(profile.speedAt(x)),
-    holdAt: (x) => metresPerSecond(profile.holdAt(x)),
-    brakingFrom: (x) => profile.brakingFrom(x),
+    holdAt: (x) => profile.stretchAt(x).hold,
+    stretchAt: (x) => profile.stretchAt(x),
   };
 }
 
@@ -126,7 +137,7 @@ function finishedPlan({ schedule, from }: PlanRequest): Plan {
     plannedErrorAt: error,
     speedAt: () => metresPerSecond(from.v),
     holdAt: () => metresPerSecond(from.v),
-    brakingFrom: () => null,
+    stretchAt: () => ({ to: schedule.finish, top: metresPerSecond(from.v), hold: metresPerSecond(from.v), brakingFrom: null }),
   };
 }
 
@@ -136,53 +147,54 @@ interface Phase {
   readonly v: number;
   /** m/s²: positive speeding up, negative braking. */
   readonly a: number;
-  readonly limit: number;
-  /** Where the last ramp of this phase's piece begins. */
-  readonly brakeX: number | null;
+  readonly stretch: PlannedStretch;
 }
 
 interface Profile {
   readonly cannotBrake: boolean;
   timeAt(x: number): number;
   speedAt(x: number): number;
-  holdAt(x: number): number;
-  brakingFrom(x: number): Metres | null;
+  stretchAt(x: number): PlannedStretch;
 }
 
-function profileOf(pieces: readonly Piece[], car: CarLimits, from: PlanRequest['from'], solution: Solution): Profile {
-  const { nodes, limits } = solution.evaluation;
+/** The phases of one piece, in order: ramp, steady, ramp down. Lengths of zero are left out. */
+function phasesOf(piece: Piece, v0: number, v1: number, limit: number, car: CarLimits, begins: number): { phases: Phase[]; ends: number } {
+  const motion = pieceMotion(piece.to - piece.from, v0, v1, limit, car);
+  const cruiseX = piece.from + motion.rampIn;
+  const brakeX = cruiseX + motion.cruise;
+  const stretch: PlannedStretch = {
+    to: metres(piece.to),
+    top: metresPerSecond(piece.top),
+    hold: metresPerSecond(limit),
+    brakingFrom: motion.peak > v1 + 1e-9 ? metres(brakeX) : null,
+  };
+  const ramp = v0 > motion.peak ? -car.deceleration : car.acceleration;
+  const phases: Phase[] = [];
+  let t = begins;
+  const push = (x: number, v: number, a: number, length: number, time: number): void => {
+    if (length > 0) phases.push({ x, t, v, a, stretch });
+    t += time;
+  };
+  push(piece.from, v0, ramp, motion.rampIn, Math.abs(motion.peak - v0) / Math.abs(ramp));
+  push(cruiseX, motion.peak, 0, motion.cruise, motion.cruise > 0 ? motion.cruise / motion.peak : 0);
+  push(brakeX, motion.peak, -car.deceleration, piece.to - brakeX, (motion.peak - v1) / car.deceleration);
+  return { phases, ends: t };
+}
+
+function profileOf(pieces: readonly Piece[], car: CarLimits, from: PlanRequest['from'], { nodes, limits }: Evaluation): Profile {
   const phases: Phase[] = [];
   let cannotBrake = false;
   let t = from.t;
-  let end = from.x;
   for (let i = 0; i < pieces.length; i++) {
     const piece = pieces[i] as Piece;
-    const [v0, v1, limit] = [nodes[i] as number, nodes[i + 1] as number, limits[i] as number];
-    if (v0 > piece.top + 1e-9) cannotBrake = true;
-    const motion = pieceMotion(piece.to - piece.from, v0, v1, limit, car);
-    const brakeX = motion.peak > v1 + 1e-9 ? piece.from + motion.rampIn + motion.cruise : null;
-    const ramp = v0 > motion.peak ? -car.deceleration : car.acceleration;
-    const shared = { limit, brakeX };
-    const push = (x: number, v: number, a: number, length: number, time: number): void => {
-      if (length > 0) phases.push({ x, t, v, a, ...shared });
-      t += time;
-    };
-    push(piece.from, v0, ramp, motion.rampIn, Math.abs(motion.peak - v0) / Math.abs(ramp));
-    push(piece.from + motion.rampIn, motion.peak, 0, motion.cruise, motion.cruise > 0 ? motion.cruise / motion.peak : 0);
-    push(piece.from + motion.rampIn + motion.cruise, motion.peak, -car.deceleration, piece.to - piece.from - motion.rampIn - motion.cruise, (motion.peak - v1) / car.deceleration);
-    end = piece.to;
+    if ((nodes[i] as number) > piece.top + 1e-9) cannotBrake = true;
+    const part = phasesOf(piece, nodes[i] as number, nodes[i + 1] as number, limits[i] as number, car, t);
+    phases.push(...part.phases);
+    t = part.ends;
   }
-  const finish: Phase = { x: end, t, v: nodes[pieces.length] as number, a: 0, limit: limits[pieces.length - 1] as number, brakeX: null };
-  const phaseAt = (x: number): Phase => {
-    if (x >= finish.x) return finish;
-    let [low, high] = [0, phases.length - 1];
-    while (low < high) {
-      const middle = (low + high + 1) >> 1;
-      if ((phases[middle] as Phase).x <= x) low = middle;
-      else high = middle - 1;
-    }
-    return phases[low] as Phase;
-  };
+  const last = phases[phases.length - 1] as Phase;
+  const finish: Phase = { x: last.stretch.to, t, v: nodes[pieces.length] as number, a: 0, stretch: last.stretch };
+  const phaseAt = (x: number): Phase => (x >= finish.x ? finish : findPhase(phases, x));
   const speedIn = (phase: Phase, x: number): number => Math.sqrt(Math.max(0, phase.v * phase.v + 2 * phase.a * Math.max(0, x - phase.x)));
   return {
     cannotBrake,
@@ -194,12 +206,18 @@ function profileOf(pieces: readonly Piece[], car: CarLimits, from: PlanRequest['
       // 2·way/(v0+v1) holds for steady and uniformly changing speed alike, and does not cancel near a = 0
       return phase.t + (2 * way) / (phase.v + speedIn(phase, x));
     },
-    holdAt: (x) => phaseAt(x).limit,
-    brakingFrom: (x) => {
-      const { brakeX } = phaseAt(x);
-      return brakeX === null ? null : metres(brakeX);
-    },
+    stretchAt: (x) => phaseAt(x).stretch,
   };
+}
+
+function findPhase(phases: readonly Phase[], x: number): Phase {
+  let [low, high] = [0, phases.length - 1];
+  while (low < high) {
+    const middle = (low + high + 1) >> 1;
+    if ((phases[middle] as Phase).x <= x) low = middle;
+    else high = middle - 1;
+  }
+  return phases[low] as Phase;
 }
 
 /** The least time from the request's state to the finish, under every limit, seconds. */
@@ -219,7 +237,7 @@ export function pointOfNoReturn(request: PlanRequest): Metres | null {
   if (held.length === 0) return metres(schedule.finish);
   const car = { ...carOf(request), floor: 0 };
   const evaluation = evaluate(held, car, from.v, from.v, makeEvaluation(held.length));
-  const profile = profileOf(held, car, from, { kind: 'solved', s: from.v, evaluation, iterations: 0 });
+  const profile = profileOf(held, car, from, evaluation);
   const late = (x: number): number => {
     const state = { x, v: profile.speedAt(x), t: profile.timeAt(x) };
     return state.t + fastestTime({ ...request, from: state }) - schedule.targetTime;

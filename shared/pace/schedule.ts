@@ -62,7 +62,13 @@ export function makeSchedule(book: CourseBook, raceClass: RaceClass, changes: Sc
   let begins = 0;
   for (const s of raw) {
     const time = s.neutral && onlyAverages ? s.time : s.time * factor;
-    sections.push({ from: metres(s.from), to: metres(s.to), begins: seconds(begins), speed: metresPerSecond((s.to - s.from) / time), neutral: s.neutral });
+    sections.push({
+      from: metres(s.from),
+      to: metres(s.to),
+      begins: seconds(begins),
+      speed: metresPerSecond((s.to - s.from) / time),
+      neutral: s.neutral,
+    });
     begins += time;
   }
   return { start: metres(start), finish: metres(finish), targetTime: seconds(target), difference: seconds(target - total), sections };

@@ -1,0 +1,143 @@
+import type { CourseModel } from '#shared/pace/course-model.ts';
+import { startOf } from '#shared/pace/derive-start.ts';
+import { judgeTap, type TapContext, tapQueue } from '#shared/pace/derive-tap.ts';
+import { distanceOf } from '#shared/pace/distance.ts';
+import { type Anchor, type Derived, modelOf, type PlacePassing, type RunState, type TapAct } from '#shared/pace/run-state.ts';
+
+/**
+ * The one path from what was recorded to what it means: start, anchors, passings, verdicts. Run anew, from the start of the run,
+ * whenever an act, a passing or the clock changes anything; costs one look at the sparse trace. A voided tap is simply not
+ * looked at, so it leaves everything as if it had never been made.
+ */
+export function derive(state: RunState): void {
+  const model = modelOf(state);
+  const start = startOf(state, model);
+  const passings = model.places.map((): PlacePassing => unpassed(state.pack.wheel.mmPerPulse));
+  const derived: Derived = { ...start.derived, anchors: start.anchor === null ? [] : [start.anchor], passings, taps: [], nextD: null };
+  const walk = new Walk(state, model, derived);
+  for (const tap of tapQueue(state)) walk.take(tap);
+  if (start.anchor !== null) {
+    walk.passUntil(Number.POSITIVE_INFINITY, null);
+    derived.nextD = walk.nextD();
+  }
+  derived.taps.sort((a, b) => a.seq - b.seq);
+  state.derived = derived;
+}
+
+const unpassed = (mm: number): PlacePassing => ({
+  by: null,
+  at: null,
+  tap: null,
+  measured: null,
+  moved: null,
+  scaleBefore: mm,
+  scaleAfter: mm,
+  scaleKept: null,
+});
+
+/** Walks along the trace, from touch to touch, passing places by distance on the way. */
+class Walk {
+  /** Index into the trace of the knot last looked at. */
+  private knot = -1;
+  /** Instant and distance walked to. */
+  private at: number;
+  private d: number;
+
+  constructor(
+    private readonly state: RunState,
+    private readonly model: CourseModel,
+    private readonly derived: Derived,
+  ) {
+    const anchor = this.anchor();
+    this.at = anchor?.at ?? 0;
+    this.d = anchor?.d ?? 0;
+  }
+
+  private anchor(): Anchor | undefined {
+    return this.derived.anchors[this.derived.anchors.length - 1];
+  }
+
+  take(tap: TapAct): void {
+    const anchor = this.anchor();
+    const { derived } = this;
+    if (anchor !== undefined && tap.raw !== null && tap.t >= this.at) {
+      const measured = distanceOf(anchor, tap.raw);
+      this.passUntil(tap.t, measured);
+    }
+    const context: TapContext = { state: this.state, model: this.model, derived, firstLeg: derived.anchors.length === 1 };
+    const judged = judgeTap(context, tap);
+    derived.taps.push(judged.verdict);
+    if (judged.anchor === null) return;
+    derived.anchors.push(judged.anchor);
+    this.snap(judged.anchor, judged.place, tap);
+  }
+
+  /** After a snap: places jumped over are passed now; places the car is again before are not passed yet. */
+  private snap(anchor: Anchor, placeIndex: number, tap: TapAct): void {
+    this.model.places.forEach((place, i) => {
+      const passing = this.derived.passings[i] as PlacePassing;
+      if (i === placeIndex || passing.by === 'tap') return;
+      if (place.d > anchor.d) {
+        passing.by = null;
+        passing.at = null;
+      } else if (passing.by === null) {
+        passing.by = 'distance';
+        passing.at = Math.round(tap.t);
+      }
+    });
+    this.at = anchor.at;
+    this.d = anchor.d;
+  }
+
+  /** Passes places by distance up to an instant, whose own distance is given where it is no knot of the trace. */
+  passUntil(until: number, dUntil: number | null): void {
+    const anchor = this.anchor() as Anchor;
+    const { at, w, g } = this.state.odometer.track.trace;
+    let i = this.knot < 0 ? firstAfter(at, this.at) : this.knot;
+    while (i < at.length && (at[i] as number) <= this.at) i++;
+    for (; i < at.length && (at[i] as number) < until; i++) {
+      this.advance(at[i] as number, distanceOf(anchor, { w: w[i] as number, g: g[i] as number }));
+    }
+    this.knot = i;
+    if (dUntil !== null) this.advance(until, dUntil);
+  }
+
+  private advance(at: number, d: number): void {
+    if (d > this.d) this.cross(at, d);
+    this.at = at;
+    this.d = d;
+  }
+
+  private cross(at: number, d: number): void {
+    const instantOf = (x: number): number => Math.round(this.at + ((x - this.d) / (d - this.d)) * (at - this.at));
+    const { derived, model } = this;
+    if (derived.startAt === null && derived.start !== 'standing' && model.start >= this.d && model.start <= d) {
+      // the beam at the line; the car may be rolling back and forth before it
+      if (this.state.pack.event.rules.timeStart === 'beam') derived.startAt = instantOf(model.start);
+    }
+    model.places.forEach((place, i) => {
+      const passing = derived.passings[i] as PlacePassing;
+      if (passing.by !== null || place.d <= this.d || place.d > d) return;
+      passing.by = 'distance';
+      passing.at = instantOf(place.d);
+    });
+  }
+
+  /** The next place, or the line, still to be passed by distance. */
+  nextD(): number | null {
+    const { derived, model } = this;
+    if (derived.startAt === null && this.state.pack.event.rules.timeStart === 'beam' && derived.start !== 'standing') return model.start;
+    const next = model.places.find((place, i) => place.d > this.d && (derived.passings[i] as PlacePassing).by === null);
+    return next?.d ?? null;
+  }
+}
+
+function firstAfter(at: readonly number[], instant: number): number {
+  let [low, high] = [0, at.length];
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if ((at[middle] as number) <= instant) low = middle + 1;
+    else high = middle;
+  }
+  return low;
+}

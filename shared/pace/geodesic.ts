@@ -1,0 +1,24 @@
+/** WGS84 defining constants. Source: NIMA TR8350.2, table 3.1. */
+const EQUATORIAL_RADIUS = 6378137;
+const FLATTENING = 1 / 298.257223563;
+const E2 = FLATTENING * (2 - FLATTENING);
+const RADIANS = Math.PI / 180;
+
+/**
+ * Length of a short line on the WGS84 ellipsoid, metres, between two positions in degrees.
+ *
+ * Gauss's mid-latitude formula, leading term: the meridian and the prime-vertical radius of curvature at the middle latitude
+ * turn the differences of latitude and longitude into lengths (formula and name from memory; the checks compare it with
+ * GeodSolve). Its relative error grows with the square of length over earth radius: below 1e-8 up to 1 km.
+ */
+export function shortLine(lat1: number, lon1: number, lat2: number, lon2: number): number {
+  const middle = ((lat1 + lat2) / 2) * RADIANS;
+  const sin = Math.sin(middle);
+  const w2 = 1 - E2 * sin * sin;
+  const primeVertical = EQUATORIAL_RADIUS / Math.sqrt(w2);
+  const meridian = (primeVertical * (1 - E2)) / w2;
+  let longitudes = lon2 - lon1;
+  if (longitudes > 180) longitudes -= 360;
+  else if (longitudes < -180) longitudes += 360;
+  return Math.hypot(meridian * (lat2 - lat1) * RADIANS, primeVertical * Math.cos(middle) * longitudes * RADIANS);
+}

@@ -1,0 +1,263 @@
+import type { Aids } from '#shared/course/race-class.ts';
+import type { FixV1, PulseV1 } from '#shared/journal/observation.ts';
+import { type Gnss, gnssMetresAt, makeGnss, takeFix } from '#shared/pace/gnss.ts';
+import { isLaunching, type LaunchEvent, type LaunchWatch, makeLaunchWatch, watchLaunch } from '#shared/pace/launch.ts';
+import { addKnot, bridgeToCounts, makeTrack, type Raw, type Track } from '#shared/pace/track.ts';
+import { makeWheelChannel, takeRecord, type WheelChannel } from '#shared/pace/wheel.ts';
+
+/**
+ * Raw distance from whatever is permitted and alive: the wheel's count first, GNSS where there is no wheel or it fell silent.
+ * Knows nothing of checkpoints, scales or taps.
+ */
+export interface Odometer {
+  mode: 'none' | 'wheel' | 'gnss';
+  readonly wheel: WheelChannel;
+  readonly gnss: Gnss;
+  readonly track: Track;
+  readonly launches: LaunchWatch;
+  /** Raw values of the last knot. */
+  w: number;
+  g: number;
+  /** Last knot by the wheel, and the count that stood there. */
+  wheelKnot: { at: number; total: number };
+  /** Speed of the wheel, counts per second over the last knots. */
+  rate: number;
+  /** Where the wheel was left for GNSS: gMetres is GNSS's own reading there. Null when GNSS has been the source from the start. */
+  bridge: { at: number; w: number; g: number; total: number } | null;
+  /** GNSS's own reading less `g`, while GNSS is the source. */
+  gnssZero: number;
+  /** Distance that nothing measured: instants and one sigma in metres. */
+  losses: { at: number; sigma: number }[];
+  usedWheel: boolean;
+  usedGnssSpeed: boolean;
+  usedGnssPosition: boolean;
+  bridges: number;
+  /** Records of other channels. */
+  otherRecords: number;
+}
+
+export interface OdometerChange {
+  /** The last knot's values changed. */
+  moved: boolean;
+  traced: boolean;
+  launch: LaunchEvent;
+  /** Part of the past was told anew (bridged metres became counts). */
+  rewritten: { from: number; w: number; g: number; share: number } | null;
+}
+
+export const makeOdometer = (): Odometer => ({
+  mode: 'none',
+  wheel: makeWheelChannel(),
+  gnss: makeGnss(),
+  track: makeTrack(),
+  launches: makeLaunchWatch(),
+  w: 0,
+  g: 0,
+  wheelKnot: { at: 0, total: 0 },
+  rate: 0,
+  bridge: null,
+  gnssZero: 0,
+  losses: [],
+  usedWheel: false,
+  usedGnssSpeed: false,
+  usedGnssPosition: false,
+  bridges: 0,
+  otherRecords: 0,
+});
+
+/** The wheel is silent for this long while GNSS says the car moves faster than this: carry on by GNSS. */
+const SILENT_US = 1_000_000;
+const SURELY_MOVING = 3;
+/** Below this share of the bridged metres the count had stood still, not gone on. */
+const COUNT_WENT_ON = 0.8;
+/** Speed is read over at least this long. */
+const RATE_US = 250_000;
+
+const UNCHANGED: OdometerChange = { moved: false, traced: false, launch: 'none', rewritten: null };
+
+function knot(
+  o: Odometer,
+  at: number,
+  w: number,
+  g: number,
+  metresPerPulse: number,
+  rewritten: OdometerChange['rewritten'] = null,
+): OdometerChange {
+  o.w = w;
+  o.g = g;
+  const launch = watchLaunch(o.launches, at, w * metresPerPulse + g, w, g);
+  const traced = addKnot(o.track, at, w, g, isLaunching(o.launches) || launch !== 'none');
+  return { moved: true, traced, launch, rewritten };
+}
+
+/** Takes a record of a wheel channel; only the measuring one counts. */
+export function takePulse(o: Odometer, pulse: PulseV1, channel: number, aids: Aids, metresPerPulse: number): OdometerChange {
+  if (!aids.wheel) return UNCHANGED;
+  if (pulse.channel !== channel) {
+    o.otherRecords++;
+    return UNCHANGED;
+  }
+  const { wheel } = o;
+  const before = wheel.at;
+  const verdict = takeRecord(wheel, pulse, metresPerPulse);
+  if (verdict === 'held' || verdict === 'stale' || verdict === 'same') return UNCHANGED;
+  o.usedWheel = true;
+  if (o.mode === 'gnss') return handBack(o, verdict, metresPerPulse);
+  if (verdict === 'restarted') return restart(o, before, metresPerPulse);
+  o.mode = 'wheel';
+  if (verdict === 'first') {
+    o.wheelKnot = { at: wheel.at, total: wheel.total };
+    return knot(o, wheel.at, o.w, o.g, metresPerPulse);
+  }
+  const w = o.w + (wheel.total - o.wheelKnot.total);
+  o.wheelKnot.at = wheel.at;
+  o.wheelKnot.total = wheel.total;
+  const change = knot(o, wheel.at, w, o.g, metresPerPulse);
+  o.rate = rateNow(o.track);
+  return change;
+}
+
+/** Counts per second over the last knots, at least a quarter of a second apart where they are that close. */
+function rateNow(track: Track): number {
+  const { at, w, head } = track.recent;
+  const last = at.length - 1;
+  let i = last - 1;
+  while (i > head && (at[last] as number) - (at[i] as number) < RATE_US) i--;
+  if (i < head) return 0;
+  const us = (at[last] as number) - (at[i] as number);
+  return us > 0 ? (((w[last] as number) - (w[i] as number)) * 1e6) / us : 0;
+}
+
+/** The box restarted between two records: GNSS may know the gap, else nothing is invented. */
+function restart(o: Odometer, before: number, metresPerPulse: number): OdometerChange {
+  const { wheel, gnss } = o;
+  const gap = (wheel.at - before) / 1e6;
+  const from = Math.max(before, o.wheelKnot.at);
+  const [g0, g1] = [gnssMetresAt(gnss, from), gnssMetresAt(gnss, wheel.at)];
+  const covered = gnss.recent.length > 1 && (gnss.recent[0] as { at: number }).at <= from && g0 !== null && g1 !== null;
+  const metres = covered ? Math.max(0, g1 - g0) : 0;
+  if (covered) noteGnss(o);
+  else o.losses.push({ at: wheel.at, sigma: Math.abs(o.rate) * metresPerPulse * gap });
+  o.wheelKnot = { at: wheel.at, total: wheel.total };
+  return knot(o, wheel.at, o.w, o.g + metres, metresPerPulse);
+}
+
+/** The wheel speaks again after GNSS carried on. If its count went on, the count decides; else the bridged metres stand. */
+function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', metresPerPulse: number): OdometerChange {
+  const { wheel, gnss, bridge, track } = o;
+  const lastAt = track.recent.at[track.recent.at.length - 1] ?? wheel.at;
+  const reading = gnssMetresAt(gnss, wheel.at);
+  const g = Math.max(o.g, (reading ?? 0) - o.gnssZero);
+  const counts = bridge === null || verdict !== 'moved' ? null : wheel.total - bridge.total;
+  o.mode = 'wheel';
+  o.bridge = null;
+  o.wheelKnot = { at: wheel.at, total: wheel.total };
+  if (bridge === null || counts === null || counts * metresPerPulse < COUNT_WENT_ON * (g - bridge.g)) {
+    // GNSS knots may already lie a little later than this record
+    return knot(o, Math.max(wheel.at, lastAt), o.w, wheel.at >= lastAt ? g : o.g, metresPerPulse);
+  }
+  const endG = gnssAtRecord(o, wheel.at, g);
+  const w = bridge.w + counts;
+  bridgeToCounts(track, bridge, wheel.at, w, endG);
+  const share = endG > bridge.g ? counts / (endG - bridge.g) : 0;
+  const change = knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
+  o.rate = rateNow(track);
+  return change;
+}
+
+const gnssAtRecord = (o: Odometer, at: number, fallback: number): number => {
+  const reading = gnssMetresAt(o.gnss, at);
+  return reading === null ? fallback : reading - o.gnssZero;
+};
+
+function noteGnss(o: Odometer): void {
+  if (o.gnss.by === 'speed') o.usedGnssSpeed = true;
+  if (o.gnss.by === 'position') o.usedGnssPosition = true;
+}
+
+/** Takes a fix. GNSS carries on from the instant at which the wheel was last heard. */
+export function takeGnss(o: Odometer, fix: FixV1, aids: Aids, now: number, metresPerPulse: number): OdometerChange {
+  const { gnss } = o;
+  if (!takeFix(gnss, fix, aids, now)) return UNCHANGED;
+  if (o.mode === 'none') {
+    o.mode = 'gnss';
+    o.gnssZero = gnss.metres - o.g;
+    return knot(o, fix.at, o.w, o.g, metresPerPulse);
+  }
+  if (o.mode === 'wheel') {
+    if (!wheelFellSilent(o, fix.at)) return UNCHANGED;
+    beginBridge(o);
+  }
+  const lastAt = o.track.recent.at[o.track.recent.at.length - 1] ?? fix.at;
+  const g = gnss.metres - o.gnssZero;
+  if (fix.at < lastAt || g <= o.g) return UNCHANGED;
+  noteGnss(o);
+  return knot(o, fix.at, o.w, g, metresPerPulse);
+}
+
+function wheelFellSilent(o: Odometer, at: number): boolean {
+  const { recent } = o.gnss;
+  const [a, b] = [recent[recent.length - 2], recent[recent.length - 1]];
+  if (a === undefined || b === undefined || at - o.wheelKnot.at <= SILENT_US) return false;
+  return a.speed > SURELY_MOVING && b.speed > SURELY_MOVING;
+}
+
+function beginBridge(o: Odometer): void {
+  const from = o.track.recent.at[o.track.recent.at.length - 1] ?? o.wheelKnot.at;
+  // a wheel silent for longer than GNSS remembers was standing: it moved only as long as GNSS says
+  const since = Math.max(from, (o.gnss.recent[0] as { at: number }).at);
+  o.bridge = { at: from, w: o.w, g: o.g, total: o.wheelKnot.total };
+  o.gnssZero = (gnssMetresAt(o.gnss, since) ?? o.gnss.metres) - o.g;
+  o.mode = 'gnss';
+  o.bridges++;
+}
+
+/** Speed at an instant, m/s, and raw values carried forward from the last knot; null speed where nothing tells it. */
+export interface Now extends Raw {
+  readonly speed: number | null;
+  readonly source: 'wheel' | 'gnss' | 'none';
+}
+
+const FRESH_US = 1_000_000;
+const CARRY_US = 2_000_000;
+const CARRY_SPEED = 5;
+/** Unchanged for less than this may be a hiccup of the box, not the car. */
+const BRIEF_S = 0.15;
+
+/** Values at an instant at or after the last knot. Scale: metres per pulse in force. */
+export function odometerNow(o: Odometer, at: number, metresPerPulse: number): Now {
+  const lastAt = o.track.recent.at[o.track.recent.at.length - 1];
+  if (o.mode === 'none' || lastAt === undefined) return { w: o.w, g: o.g, speed: null, source: 'none' };
+  const age = Math.max(0, at - lastAt);
+  return o.mode === 'gnss' ? gnssNow(o, at, age) : wheelNow(o, age, metresPerPulse);
+}
+
+function gnssNow(o: Odometer, at: number, age: number): Now {
+  const fix = o.gnss.recent[o.gnss.recent.length - 1];
+  if (fix === undefined) return { w: o.w, g: o.g, speed: null, source: 'none' };
+  const silent = at - fix.at;
+  const speed = fix.speed < AT_REST ? 0 : fix.speed;
+  if (silent > 3 * FRESH_US) return { w: o.w, g: o.g + (speed * CARRY_US) / 1e6, speed: null, source: 'none' };
+  return { w: o.w, g: o.g + (speed * Math.min(age, CARRY_US)) / 1e6, speed, source: 'gnss' };
+}
+
+const AT_REST = 0.3;
+
+function wheelNow(o: Odometer, age: number, metresPerPulse: number): Now {
+  const { rate, wheel, g, w } = o;
+  const speed = rate * metresPerPulse;
+  const steps = (rate * age) / 1e6;
+  // alive and unchanged: the next pulse has not come, so the car is less than one pulse further
+  if (wheel.at > o.wheelKnot.at) {
+    const unchanged = (wheel.at - o.wheelKnot.at) / 1e6;
+    const most = unchanged < BRIEF_S ? rate : Math.sign(rate) * Math.min(Math.abs(rate), 1 / unchanged);
+    return { w: w + clampStep(steps), g, speed: most * metresPerPulse, source: 'wheel' };
+  }
+  if (Math.abs(speed) > CARRY_SPEED) {
+    const carried = (rate * Math.min(age, CARRY_US)) / 1e6;
+    return { w: w + carried, g, speed: age <= FRESH_US ? speed : null, source: age <= CARRY_US ? 'wheel' : 'none' };
+  }
+  return { w: w + clampStep(steps), g, speed: age <= FRESH_US ? speed : 0, source: 'wheel' };
+}
+
+const clampStep = (steps: number): number => Math.max(-1, Math.min(1, steps));

@@ -1,0 +1,165 @@
+import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
+import { advise } from '#shared/pace/advice.ts';
+import { rememberBand } from '#shared/pace/band.ts';
+import { offerClock, takeClockPair, takeEpoch } from '#shared/pace/clock.ts';
+import { derive } from '#shared/pace/derive.ts';
+import { rolledThrough, startGate } from '#shared/pace/derive-start.ts';
+import { distanceOf } from '#shared/pace/distance.ts';
+import { changeCourse } from '#shared/pace/grid-changes.ts';
+import { type OdometerChange, takeGnss, takePulse } from '#shared/pace/odometer.ts';
+import { modelOf, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
+import { situationAt } from '#shared/pace/situation.ts';
+import { soundness } from '#shared/pace/sound.ts';
+import { addTap, pressButton, rewriteTaps, settleTaps } from '#shared/pace/taps.ts';
+import { never } from '#shared/result.ts';
+
+/**
+ * One observation into the state. Total: whatever a journal holds, in whatever order, it never throws; what makes no sense is
+ * counted, what is unknown is named. Deterministic, and changes nothing but the state.
+ */
+export function step(state: RunState, o: Observation | UnknownObservation): void {
+  state.observations++;
+  state.lastSeq = o.seq;
+  const kind = soundness(o);
+  if (kind === 'unknown' && !state.unknownTypes.includes(o.type)) state.unknownTypes.push(o.type);
+  if (kind === 'unsound') state.ignored++;
+  if (kind !== 'known') return;
+  if (state.now === null || o.at > state.now) state.now = o.at;
+  let stale = take(state, o as Observation);
+  if (state.acts.pending > 0 && settleTaps(state)) stale = true;
+  if (stale) derive(state);
+  advise(state);
+}
+
+/** Records the observation; true when what was derived so far may no longer hold. */
+function take(state: RunState, o: Observation): boolean {
+  const { acts, pack } = state;
+  switch (o.type) {
+    case 'pulse.v1':
+      return takeChange(state, takePulse(state.odometer, o, pack.wheel.channel, pack.raceClass.aids, nominalMetres(state)));
+    case 'fix.v1':
+      return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now ?? o.at, nominalMetres(state)));
+    case 'button.v1':
+      return pressButton(state, o);
+    case 'clock.v1':
+      return offerClock(state.clock, o, state.now ?? o.at, isReleased(state));
+    case 'epoch.v1':
+      return takeEpoch(state.clock, o, state.now ?? o.at, isReleased(state));
+    case 'clock-pair.v1':
+      takeClockPair(state.clock, o);
+      return false;
+    case 'sensor-lost.v1':
+      acts.sensorLostAt = o.at;
+      return false;
+    case 'sensor-gained.v1':
+      acts.sensorLostAt = null;
+      return false;
+    case 'pps.v1':
+    case 'note.v1':
+      return false;
+    default:
+      return takeAct(state, o);
+  }
+}
+
+type Act = Exclude<
+  Observation,
+  {
+    type:
+      | 'pulse.v1'
+      | 'fix.v1'
+      | 'button.v1'
+      | 'clock.v1'
+      | 'epoch.v1'
+      | 'clock-pair.v1'
+      | 'sensor-lost.v1'
+      | 'sensor-gained.v1'
+      | 'pps.v1'
+      | 'note.v1';
+  }
+>;
+
+function takeAct(state: RunState, o: Act): boolean {
+  const { acts } = state;
+  switch (o.type) {
+    case 'tap.v1':
+      addTap(state, { seq: o.seq, at: o.at, input: o.input, checkpoint: o.checkpoint });
+      return true;
+    case 'tap-voided.v1':
+      acts.voided.push(o.tap);
+      return true;
+    case 'tap-moved.v1':
+      acts.moved.push({ tap: o.tap, checkpoint: o.checkpoint });
+      return true;
+    case 'tap-accepted.v1':
+      acts.accepted.push(o.tap);
+      return true;
+    case 'checkpoint-skipped.v1':
+      acts.skipped.push(o.checkpoint);
+      return true;
+    case 'start-marked.v1':
+      acts.startMarks.push(o.at);
+      return true;
+    case 'release-set.v1':
+    case 'target-set.v1':
+    case 'staged-set.v1':
+    case 'limit-set.v1':
+    case 'line-moved.v1':
+      if (changeCourse(state, o)) return true;
+      state.ignored++;
+      return false;
+    case 'run-stopped.v1':
+      if (acts.stops.every((s) => s.to !== null)) acts.stops.push({ from: o.at, to: null });
+      return false;
+    case 'run-resumed.v1':
+      return resume(state, o.at, o.as === 'escort');
+    case 'run-ended.v1':
+      acts.ended = { at: o.at, outcome: o.outcome };
+      return false;
+    case 'finish-shown.v1':
+      acts.finishShown ??= { engine: o.engine, elapsedMs: o.elapsedMs, timeErrorMs: o.timeErrorMs };
+      return false;
+    default:
+      return never(o);
+  }
+}
+
+function resume(state: RunState, at: number, escort: boolean): boolean {
+  const stop = state.acts.stops.find((s) => s.to === null);
+  if (stop !== undefined) stop.to = Math.max(at, stop.from);
+  state.acts.escort = escort;
+  return false;
+}
+
+function isReleased(state: RunState): boolean {
+  const { releaseAt } = state.derived;
+  return releaseAt !== null && state.now !== null && state.now >= releaseAt;
+}
+
+/** After a knot: does anything derived change? Places passed by distance, the start, taps in a rewritten stretch. */
+function takeChange(state: RunState, change: OdometerChange): boolean {
+  if (!change.moved) return false;
+  if (change.rewritten !== null) rewriteTaps(state, change.rewritten);
+  const stale = change.rewritten !== null || change.launch !== 'none';
+  if (!change.traced) return stale;
+  rememberBand(state, situationAt(state, state.now as number));
+  return stale || passesNext(state) || rollsThrough(state);
+}
+
+function passesNext(state: RunState): boolean {
+  const { anchors, nextD } = state.derived;
+  const anchor = anchors[anchors.length - 1];
+  return anchor !== undefined && nextD !== null && distanceOf(anchor, state.odometer) >= nextD;
+}
+
+function rollsThrough(state: RunState): boolean {
+  if (state.derived.start !== 'standing') return false;
+  const gate = startGate(state, state.derived.releaseAt);
+  return gate !== null && (state.now as number) >= gate && rolledThrough(state, gate);
+}
+
+/** Builds the course once, so that a pack that cannot be driven fails at `begin` and never in a run. */
+export function settle(state: RunState): void {
+  modelOf(state);
+  derive(state);
+}
