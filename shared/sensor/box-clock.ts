@@ -20,7 +20,7 @@ export interface BoxClock {
 const ALLOWANCE = 100e-6;
 /** Sentences of one box may be out of order by the length of its send queue, not more. */
 const BACK_US = 1e6;
-const AHEAD_US = 5e6;
+const AHEAD_US = 2e6;
 const STALE_US = 1e6;
 const STALE_WINDOW_US = 5e6;
 
