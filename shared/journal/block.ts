@@ -55,7 +55,10 @@ export function encodeBlock(firstSeq: number, observations: readonly Journalled[
   return out.view().slice();
 }
 
-/** Judges the block at `offset` by its frame and checksum alone, without understanding what is in it. Never throws. */
+/**
+ * Judges the block at `offset` by its frame and checksum alone, without understanding what is in it: the frame is the same in
+ * every block format, so that an older Evenline can keep and send what it cannot read. Never throws.
+ */
 export function checkBlock(bytes: Uint8Array, offset = 0): Result<BlockHead, BlockFault> {
   const left = bytes.length - offset;
   if (left < HEADER_BYTES) {
@@ -63,13 +66,11 @@ export function checkBlock(bytes: Uint8Array, offset = 0): Result<BlockHead, Blo
   }
   if (bytes[offset] !== MAGIC_0 || bytes[offset + 1] !== MAGIC_1)
     return fail(blockFault('not-a-block', offset, null, 'the mark EB is missing'));
-  const format = bytes[offset + 2] as number;
-  const seq = readU32(bytes, offset + 8);
-  if (format > BLOCK_FORMAT) return fail(blockFault('newer-format', offset, seq, `block format ${format}`));
   const length = readU32(bytes, offset + 4);
+  const seq = readU32(bytes, offset + 8);
   const count = readU32(bytes, offset + 12);
-  if (length < HEADER_BYTES + CRC_BYTES || format < 1 || count === 0) {
-    return fail(blockFault('not-a-block', offset, null, `format ${format}, ${count} observations in ${length} bytes`));
+  if (length < HEADER_BYTES + CRC_BYTES || count === 0) {
+    return fail(blockFault('not-a-block', offset, null, `${count} observations in ${length} bytes`));
   }
   if (length > left) return fail(blockFault('torn-tail', offset, seq, `${left} of ${length} bytes are there`));
   const end = offset + length;
@@ -84,6 +85,8 @@ export function decodeBlock(bytes: Uint8Array, offset = 0): Result<Block, BlockF
   const head = checkBlock(bytes, offset);
   if (!head.ok) return head;
   const { firstSeq, count, nextOffset } = head.value;
+  const format = bytes[offset + 2];
+  if (format !== BLOCK_FORMAT) return fail(blockFault('newer-format', offset, firstSeq, `block format ${String(format)}`));
   const reader = new ByteReader(bytes, offset + HEADER_BYTES, nextOffset - CRC_BYTES);
   const pulses = createPulseDecoder(reader);
   const observations: Journalled[] = [];

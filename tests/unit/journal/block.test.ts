@@ -5,9 +5,9 @@ import { checkBlock, decodeBlock, decodeBlocks, encodeBlock, type Journalled } f
 import { journal } from './arbitrary-observations.ts';
 
 /** By hand from FORMAT.md: the code under test had no part in it. */
-function blockByHand(firstSeq: number, count: number, records: readonly number[]): Uint8Array {
+function blockByHand(firstSeq: number, count: number, records: readonly number[], format = 1): Uint8Array {
   const bytes = Buffer.alloc(16 + records.length + 4);
-  bytes.set([0x45, 0x42, 1, 0]);
+  bytes.set([0x45, 0x42, format, 0]);
   bytes.writeUInt32LE(bytes.length, 4);
   bytes.writeUInt32LE(firstSeq, 8);
   bytes.writeUInt32LE(count, 12);
@@ -110,9 +110,10 @@ describe('damage', () => {
     expect(at(joined([one, three]))).toEqual(['sequence-gap', 6, expect.stringMatching(/6 where 3 follows.*missing part/)]);
     expect(at(joined([one, one]))).toEqual(['sequence-gap', 0, expect.stringMatching(/0 where 3 follows/)]);
     expect(at(joined([one, new Uint8Array(40)]))).toEqual(['not-a-block', null, expect.stringMatching(/another copy/)]);
-    const newer = one.slice();
-    newer[2] = 2;
-    expect(at(newer)).toEqual(['newer-format', 0, expect.stringMatching(/newer Evenline/)]);
+    const newer = blockByHand(9, 4, [0xff, 0x00], 2);
+    expect(at(newer)).toEqual(['newer-format', 9, expect.stringMatching(/newer Evenline/)]);
+    // Kept and sent on all the same.
+    expect(checkBlock(newer)).toEqual({ ok: true, value: { firstSeq: 9, count: 4, nextOffset: newer.length } });
     expect(at(blockByHand(9, 1, [0x02, 0x00]))).toEqual(['bad-record', 9, expect.stringMatching(/another copy/)]);
   });
 
