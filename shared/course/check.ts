@@ -74,7 +74,7 @@ export function checkCourseBook(book: CourseBook): readonly CourseFault[] {
   const finishIndex = book.checkpoints.findIndex((c) => c.duty === 'finish');
   const length = finishIndex < 0 ? null : (places[finishIndex] ?? null);
   checkIds(report, book.zones, 'zones');
-  book.zones.forEach((zone, i) => checkZone(report, zone, `zones[${i}]`, length));
+  for (const [i, zone] of book.zones.entries()) checkZone(report, zone, `zones[${i}]`, length);
   if (book.slowDownLimit !== null) speed(report, book.slowDownLimit, 'slowDownLimit');
   return faults;
 }
@@ -122,7 +122,10 @@ function checkEnds(report: Report, book: CourseBook, places: readonly (number | 
       report('NO_START', `checkpoints[${i}].duty`, `"${row.name}" is a second start. Only the first checkpoint is the start.`);
   });
   const finish = rows.findIndex((row) => row.duty === 'finish');
-  if (finish < 0) return report('NO_FINISH', 'checkpoints', 'One checkpoint must have the duty finish.');
+  if (finish < 0) {
+    report('NO_FINISH', 'checkpoints', 'One checkpoint must have the duty finish.');
+    return;
+  }
   rows.forEach((row, i) => {
     const where = `checkpoints[${i}].duty`;
     if (i > finish && row.duty === 'finish')
