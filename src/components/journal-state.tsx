@@ -11,7 +11,7 @@ const SIGN: Readonly<Record<StoredRunSummary['upload'], IconName>> = {
 /** Where a journal is, in the only words used for it. */
 export function JournalState({ state }: { readonly state: StoredRunSummary['upload'] }) {
   return (
-    <span className="inline-flex items-center gap-2">
+    <span className="inline-flex items-center gap-2 align-bottom">
       <Icon name={SIGN[state]} className={state === 'blocked' ? 'text-fault size-5' : 'size-5'} />
       {state === 'blocked' ? 'on this device, sending is blocked' : state}
     </span>

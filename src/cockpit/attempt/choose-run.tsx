@@ -44,7 +44,7 @@ export function ChooseRun({ stored, runs, store, trouble, choose }: ChooseRunPro
         </button>
         {PRACTICE_RATES.map((clockRate) => (
           <button key={clockRate} type="button" className="key" onClick={() => begin({ practice: true, clockRate })}>
-            practice {clockRate}×<span className="quiet">{clockRate === 1 ? 'you touch the places' : 'places are touched for you'}</span>
+            practice {clockRate}×<span className="quiet">{clockRate === 1 ? 'you touch the places' : 'touched for you'}</span>
           </button>
         ))}
       </div>

@@ -1,4 +1,5 @@
 import { useEffect, useRef } from 'react';
+import { Icon } from '#src/components/icon.tsx';
 
 const KEYS = ['1', '2', '3', '4', '5', '6', '7', '8', '9', '.', '0', '⌫'] as const;
 const NAMES: Readonly<Record<string, string>> = { '.': 'point', '⌫': 'delete last' };
@@ -21,7 +22,7 @@ export function KeyPad({ press, point }: { readonly press: (key: string) => void
     <fieldset className="key-pad" aria-label="keys">
       {KEYS.map((key) => (
         <button key={key} type="button" className="key" disabled={key === '.' && !point} aria-label={NAMES[key]} onClick={() => press(key)}>
-          {key}
+          {key === '⌫' ? <Icon name="erase" /> : key}
         </button>
       ))}
     </fieldset>

@@ -22,7 +22,9 @@ export function GridSettings({ change }: { readonly change: (setting: Setting) =
     <section className="panel grid-settings" aria-label="release and what may be changed">
       <button type="button" className="key key-bare grid-release" disabled={session.role === 'reader'} onClick={() => change('release')}>
         <span className="quiet">release{structure.release === null ? ' not known' : ''}</span>
-        <span className="grid-clock">{structure.release === null ? 'type it in' : formatClock(structure.release, timeZone)}</span>
+        <span className="grid-clock" data-known={structure.release !== null}>
+          {structure.release === null ? 'type it in' : formatClock(structure.release, timeZone)}
+        </span>
         <LiveText className="quiet" of={untilRelease} />
       </button>
       {session.header.practice ? <PracticeRelease /> : null}

@@ -55,9 +55,11 @@ export function PackList({ store }: { readonly store: JournalStore }) {
           ))}
         </section>
       )}
-      <p>
-        <a href="/">to the paddock</a>
-      </p>
+      {stored.packs.length === 0 ? null : (
+        <p>
+          <a href="/">to the paddock</a>
+        </p>
+      )}
     </Shell>
   );
 }

@@ -11,18 +11,18 @@ const TOUCH_SHOWN_MS = 900;
 
 /**
  * The one button. The touch is taken on pointer-down with the event's own instant and shown in the same handler, past
- * React, so that neither a busy frame nor a commit stands between the finger and the journal.
+ * React, so that neither a busy frame nor a commit stands between the finger and the journal. On the grid it is tried.
  */
-export function CheckpointButton() {
+export function CheckpointButton({ trial }: { readonly trial?: { readonly name: string; readonly words: string } }) {
   const { session } = useRunSettings();
   const { next } = useStructure();
   const button = useRef<HTMLButtonElement>(null);
   const full = useRef<HTMLSpanElement>(null);
-  const checkpoint = next?.checkpoint ?? null;
+  const checkpoint = trial === undefined ? (next?.checkpoint ?? null) : null;
   useTouch(button, (timeStamp) => session.act({ type: 'tap.v1', input: 'glass', checkpoint: checkpoint?.id ?? null }, timeStamp).ok);
 
   usePainter((readout) => {
-    const nearness = readout.next === null ? 0 : readout.next.inReach ? 1 : readout.next.nearness;
+    const nearness = readout.next === null || trial !== undefined ? 0 : readout.next.inReach ? 1 : readout.next.nearness;
     const clip = `inset(${((1 - nearness) * 100).toFixed(1)}% 0 0 0)`;
     if (full.current !== null && full.current.style.clipPath !== clip) full.current.style.clipPath = clip;
   });
@@ -34,9 +34,9 @@ export function CheckpointButton() {
       </button>
     );
   }
-  const name = checkpoint === null ? 'touch' : shortName(checkpoint.name);
+  const name = trial?.name ?? (checkpoint === null ? 'touch' : shortName(checkpoint.name));
   const size = fittingSize(name, NAME_WIDTH, 2, SIZES);
-  const words = checkpoint?.duty === 'finish' ? 'passes by itself' : 'touch as you pass';
+  const words = trial?.words ?? (checkpoint?.duty === 'finish' ? 'passes by itself' : 'touch as you pass');
   const face = (
     <>
       <span className="tap-name" data-size={size}>

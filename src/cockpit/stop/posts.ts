@@ -25,5 +25,5 @@ export function radioWords(carNumber: string, posts: Posts, distanceM: number, u
     posts.behind === null ? null : `${toGoText(distanceM - posts.behind.atM, unit)} after ${shortName(posts.behind.checkpoint.name)}`,
     posts.ahead === null ? null : `${toGoText(posts.ahead.atM - distanceM, unit)} before ${shortName(posts.ahead.checkpoint.name)}`,
   ].filter((words) => words !== null);
-  return `Car ${carNumber}, stopped at ${distanceText(distanceM, unit)}: ${between.join(', ')}.`;
+  return `Car ${carNumber}, stopped at ${[distanceText(distanceM, unit), ...between].join(', ')}.`;
 }
