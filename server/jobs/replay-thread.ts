@@ -43,7 +43,7 @@ export function createReplayThread(): ReplayThread {
 }
 
 function startWorker(): Worker {
-  const worker = new Worker(new URL('./replay-worker.ts', import.meta.url), { execArgv: ['--import', 'tsx'] });
+  const worker = new Worker(new URL('./replay-thread-entry.mjs', import.meta.url), { execArgv: [] });
   // An idle thread must not keep the process alive.
   worker.unref();
   return worker;
