@@ -36,14 +36,20 @@ const LOOK_MS = 60_000;
 
 export async function startReplayQueue(deps: Deps): Promise<ReplayQueue> {
   const { databaseUrl, db, logger } = deps;
-  const boss = new PgBoss({ connectionString: databaseUrl, max: 2, application_name: 'evenline jobs' });
+  const boss = new PgBoss({ connectionString: databaseUrl, max: 2, schedule: false, application_name: 'evenline jobs' });
   boss.on('error', (error) => logger.error({ err: error }, 'job queue'));
   await boss.start();
   // 'short': one waiting job a run is enough, however often it is asked for.
   await boss.createQueue(QUEUE, { name: QUEUE, policy: 'short', retryLimit: 2, retryDelay: 1, expireInSeconds: 300 });
   const thread = createReplayThread();
-  const worker = await boss.work<Job>(QUEUE, { batchSize: 8, pollingIntervalSeconds: 2, includeMetadata: true }, async (jobs) => {
-    for (const job of jobs) await workOff(deps, boss, thread, job);
+  let stopping = false;
+  let batch: Promise<void> = Promise.resolve();
+  const workOffAll = async (jobs: PgBoss.JobWithMetadata<Job>[]): Promise<void> => {
+    for (const job of jobs) if (!stopping) await workOff(deps, boss, thread, job);
+  };
+  const worker = await boss.work<Job>(QUEUE, { batchSize: 8, pollingIntervalSeconds: 2, includeMetadata: true }, (jobs) => {
+    batch = workOffAll(jobs);
+    return batch;
   });
 
   const ask = async (runId: string): Promise<void> => {
@@ -66,7 +72,10 @@ export async function startReplayQueue(deps: Deps): Promise<ReplayQueue> {
     askOutdated,
     async stop() {
       clearInterval(look);
-      await boss.stop({ graceful: true, wait: true, timeout: 10_000 });
+      stopping = true;
+      await batch;
+      // The replay under way has ended; jobs fetched and not begun go back into the queue.
+      await boss.stop({ graceful: false });
       await thread.close();
     },
   };

@@ -51,7 +51,7 @@ export const SERVER_ROOMS: readonly Room[] = [
     sample: '#server/jobs/planted.ts',
     alias: ['#server/jobs/**'],
     mayImport: [...SHARED_ALL, 'server root', 'server/db', 'server/mail', 'server/services', 'server/jobs'],
-    packages: ['pg-boss', 'pino', 'node:*'],
+    packages: ['pg-boss', 'pino', 'tsx', 'node:*'],
   },
   {
     name: 'server/routes',
