@@ -26,6 +26,7 @@ export interface Shown {
 /** Speed wanders by 0.4 m/s around what the driver means to hold, over some seconds. */
 const SPEED_SIGMA = 0.4;
 const SPEED_SPAN_S = 5;
+const NOISE_S = 0.2;
 /** How quickly the right foot takes up a difference of speed. */
 const FOOT_S = 0.8;
 const REACTION_S = { mean: 0.4, sigma: 0.08, least: 0.15 };
@@ -45,12 +46,13 @@ export function createDriver(pack: Pack, course: DriveCourse, seed: number): Dri
   const random = createRandom(seed, 'driver');
   const reaction = Math.max(REACTION_S.least, REACTION_S.mean + random.gauss(REACTION_S.sigma));
   const wander = createWander(random, SPEED_SIGMA, SPEED_SPAN_S);
+  let noise = { value: 0, due: 0 };
   const { acceleration: most, deceleration: least } = pack.plan;
   return {
     reaction,
     acceleration(car, shown, dt) {
-      const noise = wander(dt);
-      const wanted = Math.max(0, wantedSpeed(car, shown, course) + (car.v > 5 ? noise : 0));
+      noise = noise.due > 0 ? { value: noise.value, due: noise.due - dt } : { value: wander(NOISE_S), due: NOISE_S };
+      const wanted = Math.max(0, wantedSpeed(car, shown, course) + (car.v > 5 ? noise.value : 0));
       const steady = (Math.min(wanted, highestSpeed(car, course)) - car.v) / FOOT_S;
       const braking = Math.max(brakingNeeded(car, course, least), shown.stopped ? least * BRAKE_SHARE : 0);
       return Math.max(-least, Math.min(most, steady, braking > 0 ? -braking : most));

@@ -55,7 +55,7 @@ export interface Drive {
   readonly movedAt: number | null;
 }
 
-const TICK_US = 10_000;
+const TICK_US = 20_000;
 const TICK_S = TICK_US / 1e6;
 const AHEAD_US = 1_000_000;
 
@@ -75,7 +75,9 @@ export function createDrive(options: DriveOptions): Drive {
   const lines = [
     ...course.places.filter((p) => p.checkpoint.duty !== 'start').map((p) => ({ at: p.at, checkpoint: p.checkpoint.id, touched: false })),
     ...navigator.targets.map((target) => ({ ...target, touched: true })),
-  ].filter((line) => line.at > (resume?.distance ?? Number.NEGATIVE_INFINITY));
+  ]
+    .filter((line) => line.at > (resume?.distance ?? Number.NEGATIVE_INFINITY))
+    .sort((a, b) => a.at - b.at);
 
   let car: CarState = { x: resume?.distance ?? -pack.attempt.stagedBehindM, v: resume?.speed ?? 0, t: 0 };
   let worldAt = beginAt;
@@ -88,8 +90,8 @@ export function createDrive(options: DriveOptions): Drive {
   const maySet = (): boolean => movedAt !== null || (releaseAt !== null && worldAt >= releaseAt + driver.reaction * 1e6);
 
   const passLines = (before: CarState, from: number): void => {
-    for (const line of lines) {
-      if (line.at <= before.x || line.at > car.x) continue;
+    for (let line = lines[0]; line !== undefined && line.at <= car.x; line = lines[0]) {
+      lines.shift();
       const at = from + (TICK_US * (line.at - before.x)) / (car.x - before.x);
       if (line.touched) waiting.push(navigator.tap(line.checkpoint, at));
       else passed.push({ checkpoint: line.checkpoint, at });

@@ -26,12 +26,16 @@ const LINE = { sigma: 0.001, wanderSigma: 0.0002, spanM: 5000 };
 const SLIP = { everyM: 10_000, low: 0.3, high: 3, overS: 1 };
 const DROPOUT = { everyM: 15_000, low: 1, high: 6 };
 const SPIN_TO_SPEED = 12;
+const LAUNCH_S = 20;
+/** Speed at which the growth by speed is stated, m/s. */
+const TYPICAL_SPEED = 50;
+/** Tyres change slowly. */
+const REFRESH_S = 0.5;
 const DRIVEN_SLIP = 0.008;
 
 export function createDriveWheel(pack: Pack, seed: number, faults: WheelFaults): DriveWheel {
   const random = createRandom(seed, 'wheel');
   const perPulse = pack.wheel.mmPerPulse / 1000;
-  const typicalSpeed = 50;
   const fixed = random.gauss(pack.wheel.scaleSigma) + random.gauss(LINE.sigma);
   const heat = { full: HEAT.mean + random.gauss(HEAT.sigma), span: random.range(HEAT.fromS, HEAT.toS) };
   const speedGrowth = random.range(SPEED_GROWTH.low, SPEED_GROWTH.high);
@@ -41,16 +45,25 @@ export function createDriveWheel(pack: Pack, seed: number, faults: WheelFaults):
   const lost = createDropouts(seed, faults.dropouts);
   let drift = 0;
   let movingS = 0;
+  let since = { s: Number.POSITIVE_INFINITY, m: 0 };
+  let perPulseNow = perPulse;
+
+  const refresh = (v: number): void => {
+    drift += random.gauss(DRIFT_PER_ROOT_METRE * Math.sqrt(since.m));
+    const share = (v / TYPICAL_SPEED) ** 2;
+    const growth = heat.full * (1 - Math.exp(-movingS / heat.span)) + speedGrowth * share - (faults.driven ? DRIVEN_SLIP * share : 0);
+    perPulseNow = perPulse * Math.exp(fixed + growth + drift + line(since.m));
+    since = { s: 0, m: 0 };
+  };
 
   return {
     pulses(dx, v, dt) {
       if (dx <= 0) return 0;
       movingS += dt;
-      drift += random.gauss(DRIFT_PER_ROOT_METRE * Math.sqrt(dx));
-      const share = (v / typicalSpeed) ** 2;
-      const growth = heat.full * (1 - Math.exp(-movingS / heat.span)) + speedGrowth * share - (faults.driven ? DRIVEN_SLIP * share : 0);
-      const turned = dx * (1 + (v < SPIN_TO_SPEED && movingS < 20 ? spin : 0)) + slip(dx, v, dt);
-      return lost(turned / (perPulse * Math.exp(fixed + growth + drift + line(dx))), dx);
+      since = { s: since.s + dt, m: since.m + dx };
+      if (since.s >= REFRESH_S) refresh(v);
+      const turned = dx * (1 + (v < SPIN_TO_SPEED && movingS < LAUNCH_S ? spin : 0)) + slip(dx, v, dt);
+      return lost(turned / perPulseNow, dx);
     },
   };
 }

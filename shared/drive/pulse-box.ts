@@ -15,7 +15,7 @@ export interface PulseBoxStart {
 }
 
 const REPORT_US = 20_000;
-/** While no pulse comes the box repeats its count, so that it is known to be alive. */
+/** At the first report and while no pulse comes the box repeats its count, so that it is known to be alive. */
 const ALIVE_US = 1_000_000;
 const CLOCK_SIGMA = 20e-6;
 
@@ -26,7 +26,7 @@ export function createPulseBox(channel: number, seed: number, beginAt: number, s
   const [firstCount, firstUs] = start === undefined ? [bootCount, bootUs] : [start.count, start.boxUs];
   let turned = 0;
   let newest = beginAt;
-  let reported = { whole: -1, at: beginAt - ALIVE_US };
+  let reported = { whole: 0, at: beginAt - ALIVE_US };
 
   const report = (at: number): NewObservation => {
     reported = { whole: Math.floor(turned), at };

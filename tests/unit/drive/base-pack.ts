@@ -73,3 +73,11 @@ export const BASE_PACK: Pack = {
   plan: { acceleration: 2.5, deceleration: 4, capMargin: 0.02 },
   settings: { speedUnit: 'km/h', scaleRule: 'gain', tapLeadMs: { glass: 0, wired: 0 }, tapScatterMs: 100, buttonSide: 'right' },
 };
+
+/** Twelve kilometres of the same kind with no limits and seven places, where many drives are wanted. */
+export const SHORT_PACK: Pack = {
+  ...BASE_PACK,
+  courseBook: { ...BASE_PACK.courseBook, checkpoints: [checkpoint('start', 'start', 0), checkpoint('finish', 'finish', 12)], zones: [] },
+  raceClass: { ...BASE_PACK.raceClass, targetTimeMs: 240_000, sections: [{ kind: 'average', to: km(12), average: kmh(180) }] },
+  ownCheckpoints: [2, 3.5, 5, 6.5, 8, 9.5, 11].map((at, i) => checkpoint(`place-${i + 1}`, i === 0 ? 'settle' : 'scale', at)),
+};
