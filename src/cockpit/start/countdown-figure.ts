@@ -10,6 +10,7 @@ const TICKS_FROM_S = 10;
 
 /** The tick that belongs to this instant: 10 … 1, and 0 for the second after the release; null while silent. */
 export function tickAt(toReleaseS: number): number | null {
-  const whole = Math.ceil(toReleaseS - 1e-6);
-  return whole <= TICKS_FROM_S && whole >= 0 && toReleaseS > -1 ? whole : null;
+  if (toReleaseS <= -1) return null;
+  const whole = Math.max(0, Math.ceil(toReleaseS - 1e-6));
+  return whole <= TICKS_FROM_S ? whole : null;
 }
