@@ -3,7 +3,7 @@ import { useWakeLock } from '#src/cockpit/devices/use-wake-lock.ts';
 import { EndedScreen } from '#src/cockpit/finish/ended-screen.tsx';
 import { FinishScreen } from '#src/cockpit/finish/finish-screen.tsx';
 import { GridCheck } from '#src/cockpit/grid/grid-check.tsx';
-import { createLiveModel } from '#src/cockpit/live/live-model.ts';
+import { createLiveModel, heldForLong } from '#src/cockpit/live/live-model.ts';
 import { LiveContext, useLiveLoop, useStructure } from '#src/cockpit/live/use-live.ts';
 import { RunContext, useRunSettings } from '#src/cockpit/run/run-context.ts';
 import { RunScreen } from '#src/cockpit/run/run-screen.tsx';
@@ -59,7 +59,7 @@ function OpenRun() {
     case 'countdown':
       return <Countdown />;
     case 'held':
-      return <Held />;
+      return heldForLong(structure) ? <GridCheck side={buttonSide} /> : <Held />;
     case 'stopped':
       return <StoppedScreen />;
     case 'finished':

@@ -1,4 +1,5 @@
 import type { Readout } from '#shared/pace/readout.ts';
+import { zoneShown } from '#src/cockpit/view/zone-shown.ts';
 import type { RunSession } from '#src/run/run-session-contract.ts';
 
 /**
@@ -62,6 +63,11 @@ export function createLiveModel(session: Pick<RunSession, 'readout' | 'subscribe
   };
 }
 
+/** Held so long that the release is history: the grid check is the place to type a new one. */
+const LONG_HELD_S = 120;
+export const heldForLong = ({ phase, toRelease }: Pick<Readout, 'phase' | 'toRelease'>): boolean =>
+  phase === 'held' && toRelease !== null && toRelease < -LONG_HELD_S;
+
 /** What decides which elements stand on the screen; figures are left out on purpose. */
 export function structureKey(readout: Readout): string {
   return JSON.stringify([
@@ -72,8 +78,9 @@ export function structureKey(readout: Readout): string {
     readout.hold.kind,
     readout.next?.checkpoint.id,
     readout.next?.inReach,
-    readout.zone?.name,
-    readout.zoneAhead?.name,
+    readout.zone === null,
+    zoneShown(readout)?.name,
+    heldForLong(readout),
     readout.source,
     readout.official?.source,
     readout.lastTap,

@@ -3,13 +3,14 @@ import type { Readout } from '#shared/pace/readout.ts';
 import { LiveText } from '#src/cockpit/live/live-text.tsx';
 import { useStructure } from '#src/cockpit/live/use-live.ts';
 import { errorText, holdWords, toGoText } from '#src/cockpit/view/words.ts';
+import { zoneShown } from '#src/cockpit/view/zone-shown.ts';
 import { useRunSettings } from './run-context.ts';
 
 /** On the pool's floor: the speed to hold, the limit where one is near, and the schedule when the band speaks of the plan. */
 export function BandFloor() {
   const { speedUnit, distanceUnit } = useRunSettings();
   const structure = useStructure();
-  const zone = structure.zone ?? structure.zoneAhead;
+  const zone = zoneShown(structure);
   const over = structure.warnings.some((warning) => warning.code === 'over-limit' || warning.code === 'over-cap');
   return (
     <div className="band-floor">

@@ -1,4 +1,5 @@
 import { useEffect, useRef } from 'react';
+import type { Checkpoint } from '#shared/course/course-book.ts';
 import { usePainter, useStructure } from '#src/cockpit/live/use-live.ts';
 import { fittingSize, shortName } from '#src/cockpit/view/names.ts';
 import { useRunSettings } from './run-context.ts';
@@ -15,7 +16,7 @@ const TOUCH_SHOWN_MS = 900;
  */
 export function CheckpointButton({ trial }: { readonly trial?: { readonly name: string; readonly words: string } }) {
   const { session } = useRunSettings();
-  const { next } = useStructure();
+  const { next, warnings } = useStructure();
   const button = useRef<HTMLButtonElement>(null);
   const full = useRef<HTMLSpanElement>(null);
   const checkpoint = trial === undefined ? (next?.checkpoint ?? null) : null;
@@ -36,7 +37,8 @@ export function CheckpointButton({ trial }: { readonly trial?: { readonly name: 
   }
   const name = trial?.name ?? (checkpoint === null ? 'touch' : shortName(checkpoint.name));
   const size = fittingSize(name, NAME_WIDTH, 2, SIZES);
-  const words = trial?.words ?? (checkpoint?.duty === 'finish' ? 'passes by itself' : 'touch as you pass');
+  const missed = warnings.some((warning) => warning.code === 'checkpoint-missed' && warning.checkpoint === checkpoint?.id);
+  const words = trial?.words ?? touchWords(checkpoint, missed);
   const face = (
     <>
       <span className="tap-name" data-size={size}>
@@ -56,6 +58,11 @@ export function CheckpointButton({ trial }: { readonly trial?: { readonly name: 
       </span>
     </button>
   );
+}
+
+function touchWords(checkpoint: Checkpoint | null, missed: boolean): string {
+  if (missed) return 'passed, a late touch counts';
+  return checkpoint?.duty === 'finish' || checkpoint?.duty === 'stop board' ? 'passes by itself' : 'touch as you pass';
 }
 
 /** Pointer-down on the glass, or Enter and space for whoever has keys; `touched` says whether the act was journalled. */

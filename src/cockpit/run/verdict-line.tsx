@@ -1,3 +1,4 @@
+import { useState } from 'react';
 import { useStructure } from '#src/cockpit/live/use-live.ts';
 import { shortName } from '#src/cockpit/view/names.ts';
 import { verdictWords } from '#src/cockpit/view/words.ts';
@@ -7,47 +8,40 @@ import { useRunSettings } from './run-context.ts';
 /** What became of the last touch, with the one act that answers it, beside the thumb that made it. */
 export function VerdictLine() {
   const { session } = useRunSettings();
-  const { lastTap, warnings } = useStructure();
-  const readOnly = session.role === 'reader';
-  const missed = warnings.find((warning) => warning.code === 'checkpoint-missed');
-  if (missed !== undefined) {
-    const name = session.header.pack.courseBook.checkpoints
-      .concat(session.header.pack.ownCheckpoints)
-      .find((c) => c.id === missed.checkpoint)?.name;
+  const { lastTap, next, warnings } = useStructure();
+  // Touches made before this screen came (the button tried on the grid) are no news here.
+  const [seen] = useState(lastTap?.verdict === 'no place near' ? lastTap.seq : null);
+  const act = session.role === 'reader' ? () => undefined : session.act;
+  if (next !== null && warnings.some((warning) => warning.code === 'checkpoint-missed')) {
+    const { id, name } = next.checkpoint;
     return (
-      <div className="verdict">
-        <span className="verdict-words">{shortName(name ?? 'place')} passed untouched</span>
-        <button
-          type="button"
-          className="key"
-          disabled={readOnly}
-          onPointerDown={(event) => session.act({ type: 'tap.v1', input: 'glass', checkpoint: missed.checkpoint }, event.timeStamp)}
-        >
-          late touch
-        </button>
-      </div>
+      <Line words={`${shortName(name)} passed untouched`} label="skip" act={() => act({ type: 'checkpoint-skipped.v1', checkpoint: id })} />
     );
   }
-  if (lastTap === null) return <div className="verdict" />;
-  const doubted = lastTap.verdict === 'doubted';
-  const undone = lastTap.verdict === 'voided';
+  if (lastTap === null || lastTap.seq === seen) return <div className="verdict" />;
+  const { seq, verdict } = lastTap;
+  const words = verdictWords(lastTap);
+  switch (verdict) {
+    case 'doubted':
+      return <Line words={words} label="use it" act={() => act({ type: 'tap-accepted.v1', tap: seq })} />;
+    case 'used':
+    case 'provisional':
+      return <Line words={words} label="undo" act={() => act({ type: 'tap-voided.v1', tap: seq })} />;
+    case 'no place near':
+    case 'repeated':
+    case 'voided':
+      return <Line words={words} />;
+  }
+}
+
+function Line({ words, label, act }: { readonly words: string; readonly label?: string; readonly act?: () => unknown }) {
   return (
     <div className="verdict" role="status">
-      <span className="verdict-words">{verdictWords(lastTap)}</span>
-      {doubted ? (
-        <button
-          type="button"
-          className="key"
-          disabled={readOnly}
-          onClick={() => session.act({ type: 'tap-accepted.v1', tap: lastTap.seq })}
-        >
-          use it
-        </button>
-      ) : null}
-      {doubted || undone ? null : (
-        <button type="button" className="key" disabled={readOnly} onClick={() => session.act({ type: 'tap-voided.v1', tap: lastTap.seq })}>
-          <Icon name="undo" />
-          undo
+      <span className="verdict-words">{words}</span>
+      {label === undefined ? null : (
+        <button type="button" className="key" onClick={act}>
+          {label === 'undo' ? <Icon name="undo" /> : null}
+          {label}
         </button>
       )}
     </div>
