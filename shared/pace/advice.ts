@@ -35,10 +35,15 @@ export function shownSpeed(wanted: number, upper: number, lower: number, unit: S
   return shown * per;
 }
 
-/** Part of the fold: brings the shown hold speed up to date where a second has passed since the last time. */
+/** At most once a second of session time, driven by whatever happens. */
+export function isAdviceDue(state: RunState): boolean {
+  const { advisedAt } = state.shown;
+  return advisedAt === null || state.now - advisedAt >= ADVISE_US;
+}
+
+/** Part of the fold: brings the shown hold speed up to date. */
 export function advise(state: RunState): void {
   const { shown, now } = state;
-  if (now === null || (shown.advisedAt !== null && now - shown.advisedAt < ADVISE_US)) return;
   shown.advisedAt = now;
   const s = situationAt(state, now);
   if (s.phase !== 'running' && s.phase !== 'countdown' && s.phase !== 'grid' && s.phase !== 'held') shown.hold = null;
@@ -48,7 +53,9 @@ export function advise(state: RunState): void {
 
 function freshHold(state: RunState, s: Situation): HoldMemory {
   const waiting = s.phase !== 'running' || s.elapsed === null;
-  const plan: Plan = waiting ? s.model.plan : makePlan({ ...s.model.request, from: { x: s.distance, v: s.speed ?? 0, t: s.elapsed } });
+  const plan: Plan = waiting
+    ? s.model.plan
+    : makePlan({ ...s.model.request, from: { x: s.distance, v: Math.max(0, s.speed ?? 0), t: s.elapsed } });
   let stretch = plan.stretchAt(s.distance);
   const { brakingFrom } = stretch;
   const ahead = s.distance + LEAD_S * (s.speed ?? 0);

@@ -1,5 +1,5 @@
 import type { CourseModel } from '#shared/pace/course-model.ts';
-import { firstMovement, type Launch } from '#shared/pace/launch.ts';
+import type { Launch } from '#shared/pace/launch.ts';
 import { type Anchor, type Derived, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
 import { tracedAt } from '#shared/pace/track.ts';
 
@@ -37,7 +37,7 @@ export function startOf(state: RunState, model: CourseModel): DerivedStart {
   const gate = startGate(state, releaseAt);
   const startAt = startInstant(state, releaseAt);
   const standing: DerivedStart = { derived: { releaseAt, startAt, firstMovedAt: null, start: 'standing' }, anchor: null };
-  if (gate === null || state.now === null || state.now < gate - JUMPED_US) return standing;
+  if (gate === null || state.now < gate - JUMPED_US) return standing;
   const launch = findLaunch(state, gate);
   const d = model.start - Math.max(0, state.changes.stagedBehindM);
   if (launch !== null) return fromRest(state, standing.derived, launch, d);
@@ -76,14 +76,10 @@ function findLaunch(state: RunState, gate: number): Launch | null {
 }
 
 function fromRest(state: RunState, standing: StartPart, launch: Launch, d: number): DerivedStart {
-  const metres = nominalMetres(state);
-  // before the first metres are complete the fit would change with every knot: the first knot stands for it
-  const under = state.odometer.launches.current === launch;
-  const movement = under ? { at: launch.movedAt, within: 0 } : firstMovement(launch, state.odometer.usedWheel ? metres : 0);
-  const at = Math.round(movement.at);
+  const at = Math.round(launch.first.at);
   return {
     derived: { ...standing, firstMovedAt: at, start: 'from rest' },
-    anchor: firstAnchor(state, at, d, launch.w + movement.within / metres, launch.g),
+    anchor: firstAnchor(state, at, d, launch.w + launch.first.within / nominalMetres(state), launch.g),
   };
 }
 

@@ -81,8 +81,7 @@ class Walk {
         passing.by = null;
         passing.at = null;
       } else if (passing.by === null) {
-        passing.by = 'distance';
-        passing.at = Math.round(tap.t);
+        this.passByDistance(passing, Math.round(tap.t));
       }
     });
     this.at = anchor.at;
@@ -118,9 +117,16 @@ class Walk {
     model.places.forEach((place, i) => {
       const passing = derived.passings[i] as PlacePassing;
       if (passing.by !== null || place.d <= this.d || place.d > d) return;
-      passing.by = 'distance';
-      passing.at = instantOf(place.d);
+      this.passByDistance(passing, instantOf(place.d));
     });
+  }
+
+  private passByDistance(passing: PlacePassing, at: number): void {
+    const scale = (this.anchor() as Anchor).mmPerPulse;
+    passing.by = 'distance';
+    passing.at = at;
+    passing.scaleBefore = scale;
+    passing.scaleAfter = scale;
   }
 
   /** The next place, or the line, still to be passed by distance. */

@@ -9,16 +9,27 @@ export interface Launch {
   readonly g: number;
   /** First knot that had moved. */
   readonly movedAt: number;
+  readonly first: FirstMovement;
+}
+
+/** Moving off, not yet far enough to call it a launch. */
+export interface MovingOff extends Launch {
   /** Instants and metres since rest of the first knots. */
   readonly t: number[];
   readonly s: number[];
 }
 
+export interface FirstMovement {
+  /** Instant, microseconds; fractions allowed. */
+  readonly at: number;
+  /** Metres between the last count at rest and the car's true place at rest, 0 up to one pulse. */
+  readonly within: number;
+}
+
 export interface LaunchWatch {
   /** Where the car has been still (or was last seen), and since when. */
   cell: { at: number; r: number; w: number; g: number } | null;
-  /** Moving off, not yet far enough to call it a launch. */
-  current: Launch | null;
+  current: MovingOff | null;
   done: Launch[];
 }
 
@@ -30,15 +41,14 @@ const STILL_US = 700_000;
 /** Further than a shuffle on the grid. */
 const LAUNCH_M = 6;
 const APART_US = 20_000;
-const MOST_LAUNCHES = 64;
 
 export type LaunchEvent = 'none' | 'moved' | 'complete';
 
 /** True while the first metres are being driven. */
 export const isLaunching = (watch: LaunchWatch): boolean => watch.current !== null;
 
-/** Takes a knot: `r` raw metres by the nominal scale. */
-export function watchLaunch(watch: LaunchWatch, at: number, r: number, w: number, g: number): LaunchEvent {
+/** Takes a knot: `r` raw metres by the nominal scale, `pulseMetres` one pulse of the source (0 for GNSS). */
+export function watchLaunch(watch: LaunchWatch, at: number, r: number, w: number, g: number, pulseMetres: number): LaunchEvent {
   const { cell, current } = watch;
   if (cell === null) {
     watch.cell = { at, r, w, g };
@@ -47,7 +57,7 @@ export function watchLaunch(watch: LaunchWatch, at: number, r: number, w: number
   if (Math.abs(r - cell.r) <= STILL_M) return 'none';
   watch.cell = { at, r, w, g };
   if (at - cell.at >= STILL_US) {
-    watch.current = { r: cell.r, w: cell.w, g: cell.g, movedAt: at, t: [at], s: [r - cell.r] };
+    watch.current = { r: cell.r, w: cell.w, g: cell.g, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - cell.r] };
     return 'moved';
   }
   if (current === null) return 'none';
@@ -57,16 +67,8 @@ export function watchLaunch(watch: LaunchWatch, at: number, r: number, w: number
   current.s.push(s);
   if (s < LAUNCH_M) return 'none';
   watch.current = null;
-  watch.done.push(current);
-  if (watch.done.length > MOST_LAUNCHES) watch.done.shift();
+  watch.done.push({ r: current.r, w: current.w, g: current.g, movedAt: current.movedAt, first: firstMovement(current, pulseMetres) });
   return 'complete';
-}
-
-export interface FirstMovement {
-  /** Instant, microseconds; fractions allowed. */
-  readonly at: number;
-  /** Metres between the last count at rest and the car's true place at rest, 0 up to one pulse. */
-  readonly within: number;
 }
 
 /** Steadiest pull that can be told from a roll, and the longest a car can have crept before the first knot. */
@@ -78,7 +80,7 @@ const LONGEST_BEFORE_S = 2.5;
  * vertex, whatever part of a pulse the car had covered when it stood. Where the knots show no steady pull, the first knot less
  * the time of one step. `pulseMetres` bounds `within`; 0 for GNSS.
  */
-export function firstMovement(launch: Launch, pulseMetres: number): FirstMovement {
+export function firstMovement(launch: Pick<MovingOff, 't' | 's'>, pulseMetres: number): FirstMovement {
   const { t, s } = launch;
   const t1 = t[0] as number;
   const fit = parabola(
@@ -114,4 +116,12 @@ function parabola(x: readonly number[], y: readonly number[]): { c0: number; c1:
   const c1 = (y1 - s3 * c2) / s2;
   const c0 = (y0 - s2 * c2) / n;
   return { c0: c0 - c1 * mean + c2 * mean * mean, c1: c1 - 2 * c2 * mean, c2 };
+}
+
+/** The stretch after `from` is told anew, GNSS metres beyond `g` becoming `share` counts each: what is remembered of it too. */
+export function rewriteLaunches(watch: LaunchWatch, from: number, w: number, g: number, share: number): void {
+  const anew = <T extends { w: number; g: number }>(x: T, at: number): T => (at > from ? { ...x, w: w + (x.g - g) * share, g } : x);
+  if (watch.cell !== null) watch.cell = anew(watch.cell, watch.cell.at);
+  if (watch.current !== null) watch.current = anew(watch.current, watch.current.movedAt);
+  watch.done = watch.done.map((launch) => anew(launch, launch.movedAt));
 }

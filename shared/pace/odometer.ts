@@ -1,7 +1,7 @@
 import type { Aids } from '#shared/course/race-class.ts';
 import type { FixV1, PulseV1 } from '#shared/journal/observation.ts';
 import { type Gnss, gnssMetresAt, makeGnss, takeFix } from '#shared/pace/gnss.ts';
-import { isLaunching, type LaunchEvent, type LaunchWatch, makeLaunchWatch, watchLaunch } from '#shared/pace/launch.ts';
+import { isLaunching, type LaunchEvent, type LaunchWatch, makeLaunchWatch, rewriteLaunches, watchLaunch } from '#shared/pace/launch.ts';
 import { addKnot, bridgeToCounts, makeTrack, type Raw, type Track } from '#shared/pace/track.ts';
 import { makeWheelChannel, takeRecord, type WheelChannel } from '#shared/pace/wheel.ts';
 
@@ -85,7 +85,7 @@ function knot(
 ): OdometerChange {
   o.w = w;
   o.g = g;
-  const launch = watchLaunch(o.launches, at, w * metresPerPulse + g, w, g);
+  const launch = watchLaunch(o.launches, at, w * metresPerPulse + g, w, g, o.mode === 'wheel' ? metresPerPulse : 0);
   const traced = addKnot(o.track, at, w, g, isLaunching(o.launches) || launch !== 'none');
   return { moved: true, traced, launch, rewritten };
 }
@@ -160,6 +160,7 @@ function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', metresP
   const w = bridge.w + counts;
   bridgeToCounts(track, bridge, wheel.at, w, endG);
   const share = endG > bridge.g ? counts / (endG - bridge.g) : 0;
+  rewriteLaunches(o.launches, bridge.at, bridge.w, bridge.g, share);
   const change = knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
   o.rate = rateNow(track);
   return change;

@@ -16,8 +16,8 @@ export interface RunState {
   readonly pack: Pack;
   observations: number;
   lastSeq: number | null;
-  /** Latest instant of any observation; null before the first. */
-  now: number | null;
+  /** Latest instant of any observation; the session clock begins at 0. */
+  now: number;
   unknownTypes: string[];
   /** Observations of a known type that made no sense. */
   ignored: number;
@@ -142,7 +142,7 @@ export function makeRunState(pack: Pack): RunState {
     pack,
     observations: 0,
     lastSeq: null,
-    now: null,
+    now: 0,
     unknownTypes: [],
     ignored: 0,
     changes,

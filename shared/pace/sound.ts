@@ -1,4 +1,4 @@
-import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
+import type { Observation, PulseV1, UnknownObservation } from '#shared/journal/observation.ts';
 
 /** Whether an observation of a known type has what the engine reads from it. A journal may hold anything; a fold must not stumble. */
 
@@ -44,8 +44,12 @@ const FIELDS: { readonly [T in Observation['type']]: Readonly<Record<string, Che
   'note.v1': {},
 };
 
+const isSoundPulse = (o: PulseV1): boolean => number(o.at) && number(o.channel) && counter(o.count) && counter(o.boxUs);
+
 /** known: may be stepped. unknown: a type this engine has never heard of. unsound: known, but its content makes no sense. */
 export function soundness(o: Observation | UnknownObservation): 'known' | 'unknown' | 'unsound' {
+  // nearly all observations are pulses
+  if (o.type === 'pulse.v1') return isSoundPulse(o as PulseV1) ? 'known' : 'unsound';
   if (!Object.hasOwn(FIELDS, o.type)) return 'unknown';
   if (!number(o.at)) return 'unsound';
   const fields = FIELDS[o.type as Observation['type']];

@@ -1,5 +1,5 @@
 import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
-import { advise } from '#shared/pace/advice.ts';
+import { advise, isAdviceDue } from '#shared/pace/advice.ts';
 import { rememberBand } from '#shared/pace/band.ts';
 import { offerClock, takeClockPair, takeEpoch } from '#shared/pace/clock.ts';
 import { derive } from '#shared/pace/derive.ts';
@@ -21,14 +21,16 @@ export function step(state: RunState, o: Observation | UnknownObservation): void
   state.observations++;
   state.lastSeq = o.seq;
   const kind = soundness(o);
-  if (kind === 'unknown' && !state.unknownTypes.includes(o.type)) state.unknownTypes.push(o.type);
-  if (kind === 'unsound') state.ignored++;
-  if (kind !== 'known') return;
-  if (state.now === null || o.at > state.now) state.now = o.at;
+  if (kind !== 'known') {
+    if (kind === 'unsound') state.ignored++;
+    else if (!state.unknownTypes.includes(o.type)) state.unknownTypes.push(o.type);
+    return;
+  }
+  if (o.at > state.now) state.now = o.at;
   let stale = take(state, o as Observation);
   if (state.acts.pending > 0 && settleTaps(state)) stale = true;
   if (stale) derive(state);
-  advise(state);
+  if (isAdviceDue(state)) advise(state);
 }
 
 /** Records the observation; true when what was derived so far may no longer hold. */
@@ -38,13 +40,13 @@ function take(state: RunState, o: Observation): boolean {
     case 'pulse.v1':
       return takeChange(state, takePulse(state.odometer, o, pack.wheel.channel, pack.raceClass.aids, nominalMetres(state)));
     case 'fix.v1':
-      return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now ?? o.at, nominalMetres(state)));
+      return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now, nominalMetres(state)));
     case 'button.v1':
       return pressButton(state, o);
     case 'clock.v1':
-      return offerClock(state.clock, o, state.now ?? o.at, isReleased(state));
+      return offerClock(state.clock, o, state.now, isReleased(state));
     case 'epoch.v1':
-      return takeEpoch(state.clock, o, state.now ?? o.at, isReleased(state));
+      return takeEpoch(state.clock, o, state.now, isReleased(state));
     case 'clock-pair.v1':
       takeClockPair(state.clock, o);
       return false;
@@ -133,7 +135,7 @@ function resume(state: RunState, at: number, escort: boolean): boolean {
 
 function isReleased(state: RunState): boolean {
   const { releaseAt } = state.derived;
-  return releaseAt !== null && state.now !== null && state.now >= releaseAt;
+  return releaseAt !== null && state.now >= releaseAt;
 }
 
 /** After a knot: does anything derived change? Places passed by distance, the start, taps in a rewritten stretch. */
@@ -142,7 +144,7 @@ function takeChange(state: RunState, change: OdometerChange): boolean {
   if (change.rewritten !== null) rewriteTaps(state, change.rewritten);
   const stale = change.rewritten !== null || change.launch !== 'none';
   if (!change.traced) return stale;
-  rememberBand(state, situationAt(state, state.now as number));
+  rememberBand(state, situationAt(state, state.now));
   return stale || passesNext(state) || rollsThrough(state);
 }
 
@@ -155,7 +157,7 @@ function passesNext(state: RunState): boolean {
 function rollsThrough(state: RunState): boolean {
   if (state.derived.start !== 'standing') return false;
   const gate = startGate(state, state.derived.releaseAt);
-  return gate !== null && (state.now as number) >= gate && rolledThrough(state, gate);
+  return gate !== null && state.now >= gate && rolledThrough(state, gate);
 }
 
 /** Builds the course once, so that a pack that cannot be driven fails at `begin` and never in a run. */

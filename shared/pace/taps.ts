@@ -66,7 +66,7 @@ export function settleTaps(state: RunState): boolean {
       tap.firm = true;
       acts.pending--;
       changed = true;
-    } else if (tap.raw === null && now !== null && now - tap.at > LATEST_US) {
+    } else if (tap.raw === null && now - tap.at > LATEST_US) {
       tap.raw = carried(state, tap.t);
       changed = tap.raw !== null || changed;
     }
