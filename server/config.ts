@@ -19,9 +19,10 @@ const LOOPBACK = new Set(['127.0.0.1', '::1', 'localhost']);
 const blankIsUnset = (value: unknown): unknown => (value === '' ? undefined : value);
 const setting = <T extends z.ZodType>(schema: T) => z.preprocess(blankIsUnset, schema);
 
+const isOrigin = (text: string): boolean => /^https?:/.test(text) && URL.canParse(text) && new URL(text).origin === text.replace(/\/$/, '');
 const originSchema = z
-  .url({ protocol: /^https?$/, error: 'must be an origin, for example https://pace.example' })
-  .refine((text) => new URL(text).origin === text.replace(/\/$/, ''), 'must be an origin only: no path, no query')
+  .string()
+  .refine(isOrigin, 'must be an origin with no path, for example https://pace.example')
   .transform((text) => new URL(text).origin);
 
 const environmentSchema = z
