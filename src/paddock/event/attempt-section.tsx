@@ -1,10 +1,9 @@
 import { Link } from 'react-router';
 import { formatDistance, formatDuration } from '#shared/course/format.ts';
 import type { RaceClass } from '#shared/course/race-class.ts';
-import { Button } from '#src/components/button.tsx';
 import { FigureRow } from '#src/components/figure.tsx';
 import { TimeError } from '#src/paddock/parts/time-error.tsx';
-import { clockInZone, formatDay } from '#src/paddock/parts/when.ts';
+import { dayAndClock } from '#src/paddock/parts/when.ts';
 import type { StoredPack } from '#src/storage/pack-store.ts';
 import { isDone, isStale, type PlacedAttempt } from './next-thing.ts';
 import { PLAIN_LINK } from './next-thing-field.tsx';
@@ -33,7 +32,9 @@ export function AttemptSection({
       </h3>
       <dl>
         <FigureRow label="course">
-          {formatDistance(courseBook.lengthM, courseBook.unit, 3)} {courseBook.unit}
+          <Right>
+            {formatDistance(courseBook.lengthM, courseBook.unit, 3)} {courseBook.unit}
+          </Right>
           <Quiet>
             {courseBook.checkpoints} checkpoints, {attempt.ownCheckpoints} of your own, {courseBook.zones} zones, version{' '}
             {courseBook.version}
@@ -71,14 +72,13 @@ function Release({ placed, editing, setEditing }: Pick<Parameters<typeof Attempt
   const { event, entry, attempt } = placed;
   if (editing) return <ReleaseEditor placed={placed} done={() => setEditing(false)} />;
   return (
-    <span className="grid justify-items-end gap-1">
-      <span>{attempt.releaseMs === null ? 'not set' : clockInZone(attempt.releaseMs, event.timeZone)}</span>
-      {attempt.releaseMs === null ? null : <Quiet>{formatDay(attempt.releaseMs, event.timeZone)}</Quiet>}
+    <span className="flex flex-wrap items-baseline justify-end gap-x-4">
       {entry.mayPrepare ? (
-        <Button kind="bare" className="-mr-4" onClick={() => setEditing(true)}>
+        <button type="button" className="font-text min-h-8 font-normal underline underline-offset-4" onClick={() => setEditing(true)}>
           {attempt.releaseMs === null ? 'set' : 'change'}
-        </Button>
+        </button>
       ) : null}
+      <span className="whitespace-normal">{attempt.releaseMs === null ? 'not set' : dayAndClock(attempt.releaseMs, event.timeZone)}</span>
     </span>
   );
 }
@@ -90,7 +90,7 @@ function ClassRow({ raceClass }: { readonly raceClass: RaceClass }) {
   );
   return (
     <FigureRow label={`class ${raceClass.name}`}>
-      {formatDuration(raceClass.targetTimeMs / 1000, 3)}
+      <Right>{formatDuration(raceClass.targetTimeMs / 1000, 3)}</Right>
       <Quiet>
         average {averages.join(', ')}
         {cap === null ? '' : `; cap ${cap.text} ${cap.unit}`}
@@ -108,6 +108,10 @@ function RunRows({ placed }: { readonly placed: PlacedAttempt }) {
       </Link>
     </FigureRow>
   ));
+}
+
+function Right({ children }: { readonly children: React.ReactNode }) {
+  return <span className="block text-right">{children}</span>;
 }
 
 function Quiet({ children }: { readonly children: React.ReactNode }) {

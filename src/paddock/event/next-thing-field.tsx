@@ -2,6 +2,7 @@ import type { ReactNode } from 'react';
 import { Link } from 'react-router';
 import { CAUTIONS } from '#shared/cautions.ts';
 import { Button } from '#src/components/button.tsx';
+import { Icon } from '#src/components/icon.tsx';
 import type { StoredPack } from '#src/storage/pack-store.ts';
 import { type NextThing, nextThing, type PlacedAttempt } from './next-thing.ts';
 import { StorePackButton } from './pack-on-device.tsx';
@@ -25,9 +26,12 @@ export function NextThingField({
       <h2 id="next-thing" className="text-quiet">
         next, for attempt {placed.attempt.number} of number {placed.entry.number}
       </h2>
-      <ul className="font-figure flex flex-wrap gap-x-6 gap-y-1 text-lg font-extrabold md:text-xl">
-        {next.readiness.map((words) => (
-          <li key={words}>{words}</li>
+      <ul className="font-figure grid gap-x-8 gap-y-2 text-lg font-extrabold lg:grid-cols-2">
+        {next.readiness.map(({ words, done }) => (
+          <li key={words} className="flex items-center gap-3">
+            <Icon name={done ? 'ready' : 'missing'} className="size-5" />
+            <span className={done ? '' : 'underline decoration-dotted underline-offset-4'}>{words}</span>
+          </li>
         ))}
       </ul>
       <p className="max-w-prose">{next.why}</p>

@@ -27,10 +27,15 @@ export type NextAct =
   | 'open the cockpit'
   | 'read the run sheet';
 
+export interface Readiness {
+  readonly words: string;
+  readonly done: boolean;
+}
+
 export interface NextThing {
   readonly act: NextAct;
-  /** `release 10:42:00, pack stored, set-up Gravel 16, 6 cautions`. */
-  readonly readiness: readonly string[];
+  /** `release 10:42:00`, `pack stored`, `set-up Gravel 16`, `6 cautions`, each done or still missing. */
+  readonly readiness: readonly Readiness[];
   /** Why this comes next, one sentence. */
   readonly why: string;
 }
@@ -53,11 +58,14 @@ function byTurn(a: PlacedAttempt, b: PlacedAttempt): number {
 }
 
 export function nextThing({ event, entry, attempt }: PlacedAttempt, pack: PackOnDevice | null, cautions: number): NextThing {
-  const readiness = [
-    attempt.releaseMs === null ? 'release not set' : `release ${clockInZone(attempt.releaseMs, event.timeZone)}`,
-    packWords(attempt, pack, event.timeZone),
-    `set-up ${entry.car.wheelSetup}`,
-    `${cautions} cautions`,
+  const readiness: readonly Readiness[] = [
+    {
+      words: attempt.releaseMs === null ? 'release not set' : `release ${clockInZone(attempt.releaseMs, event.timeZone)}`,
+      done: attempt.releaseMs !== null,
+    },
+    { words: packWords(attempt, pack, event.timeZone), done: pack !== null && !isStale(attempt, pack) },
+    { words: `set-up ${entry.car.wheelSetup}`, done: true },
+    { words: `${cautions} cautions`, done: true },
   ];
   return { readiness, ...chooseAct(attempt, pack) };
 }

@@ -21,7 +21,7 @@ export function courseOptions(ink: ChartInk, width: number, height: number, mark
   return {
     width,
     height,
-    padding: [20, 12, 0, 0],
+    padding: [24, 28, 0, 0],
     cursor: { show: false },
     legend: { show: false },
     scales: { x: { time: false }, y: { range: evenRange } },
@@ -31,15 +31,14 @@ export function courseOptions(ink: ChartInk, width: number, height: number, mark
         font,
         grid: { show: false },
         ticks: { stroke: ink.hair },
-        values: (_plot, ticks) => ticks.map((tick) => String(tick)),
-        label: marks.unit,
-        labelFont: font,
-        labelSize: 20,
+        size: 36,
+        values: (_plot, ticks) => ticks.map((tick, i) => (i === ticks.length - 1 ? `${tick} ${marks.unit}` : String(tick))),
       },
       {
         stroke: ink.quiet,
         font,
-        size: 84,
+        size: 92,
+        gap: 12,
         grid: { stroke: ink.hair, width: 1 },
         ticks: { show: false },
         values: (_plot, ticks) => ticks.map((tick) => timeErrorTick(-tick, ticks)),
@@ -89,6 +88,7 @@ function drawLine(plot: uPlot, ink: ChartInk, marks: CourseMarks): void {
   const zero = plot.valToPos(0, 'y', true);
   const ratio = uPlot.pxRatio;
   ctx.save();
+  ctx.setLineDash([]);
   ctx.fillStyle = ink.ink;
   ctx.fillRect(bbox.left, zero - ratio, bbox.width, 2 * ratio);
   for (const dot of marks.dots) {

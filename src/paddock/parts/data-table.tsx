@@ -47,7 +47,7 @@ export function Row({ children, className = '' }: { readonly children: ReactNode
 
 export function RowHead({ children }: { readonly children: ReactNode }) {
   return (
-    <th scope="row" className="px-2 py-2 text-left font-normal first:pl-0">
+    <th scope="row" className="bg-ground sticky left-0 min-w-32 px-2 py-2 text-left font-normal first:pl-0">
       {children}
     </th>
   );

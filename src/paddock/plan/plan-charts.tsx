@@ -45,7 +45,7 @@ export function marksOf(pack: Pack, plan: Pick<PackPlan, 'places'>): CourseMarks
     zones: [...pack.courseBook.zones, ...pack.crewZones].map(({ from, to, limit }) => ({
       from: printedMetres(from),
       to: printedMetres(to),
-      limit: limit.text,
+      limit: `${limit.text} ${limit.unit}`,
     })),
     dots: plan.places.map(({ at }) => ({ at, filled: false })),
   };

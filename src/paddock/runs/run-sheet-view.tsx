@@ -20,24 +20,24 @@ export interface SheetPlace {
 export function RunSheetView({ sheet, place }: { readonly sheet: RunSheet; readonly place: SheetPlace }) {
   return (
     <>
-      <Summary sheet={sheet} place={place} />
+      <Summary sheet={sheet} />
       <ShownAndDerived sheet={sheet} />
       <RunChart sheet={sheet} unit={place.unit} zones={place.zones} />
       <LegTable legs={sheet.legs} unit={place.unit} />
       <div className="mt-8 grid gap-x-12 gap-y-8 md:grid-cols-2">
-        <Facts sheet={sheet} />
+        <Facts sheet={sheet} place={place} />
         <Incidents sheet={sheet} place={place} />
       </div>
     </>
   );
 }
 
-function Summary({ sheet, place }: { readonly sheet: RunSheet; readonly place: SheetPlace }) {
+function Summary({ sheet }: { readonly sheet: RunSheet }) {
   const { finish, reactionS } = sheet;
   return (
     <div className="mb-4 flex flex-wrap items-end gap-x-12 gap-y-4">
       <p>
-        <span className="text-quiet block">{finish === null ? `outcome` : 'finish, own time, unofficial'}</span>
+        <span className="text-quiet block">{finish === null ? `outcome` : 'finish, own and unofficial'}</span>
         {finish === null ? (
           <Figure className="text-4xl" value={sheet.outcome} />
         ) : (
@@ -52,7 +52,6 @@ function Summary({ sheet, place }: { readonly sheet: RunSheet; readonly place: S
       </Small>
       <Small label="elapsed">{finish === null ? '–' : formatDuration(finish.elapsedS, 2)}</Small>
       <Small label="target time">{formatDuration(sheet.targetTimeS, 2)}</Small>
-      <Small label="release">{sheet.releaseMs === null ? '–' : dayAndClock(sheet.releaseMs, place.timeZone)}</Small>
     </div>
   );
 }
@@ -66,13 +65,18 @@ function Small({ label, children }: { readonly label: string; readonly children:
   );
 }
 
-function Facts({ sheet }: { readonly sheet: RunSheet }) {
+function Facts({ sheet, place }: { readonly sheet: RunSheet; readonly place: SheetPlace }) {
   return (
     <section aria-labelledby="facts">
       <h2 id="facts" className="mb-2 text-xl font-bold">
         What was used
       </h2>
       <dl>
+        {sheet.releaseMs === null ? null : (
+          <FigureRow label="release">
+            <span className="block text-right whitespace-normal">{dayAndClock(sheet.releaseMs, place.timeZone)}</span>
+          </FigureRow>
+        )}
         <FigureRow label="aids">{sheet.aidsUsed.length === 0 ? 'none' : sheet.aidsUsed.join(', ')}</FigureRow>
         <FigureRow label="wheel pulses">{groupDigits(sheet.pulses)}</FigureRow>
         <FigureRow label="observations">{groupDigits(sheet.observations)}</FigureRow>

@@ -9,7 +9,7 @@ export function sheetPlace(pack: Pack): SheetPlace {
     zones: [...pack.courseBook.zones, ...pack.crewZones].map(({ from, to, limit }) => ({
       from: printedMetres(from),
       to: printedMetres(to),
-      limit: limit.text,
+      limit: `${limit.text} ${limit.unit}`,
     })),
   };
 }

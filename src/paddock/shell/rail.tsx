@@ -21,7 +21,7 @@ const PAGES = [
 export function Rail() {
   return (
     <nav aria-label="pages" className="border-hair bg-ground fixed inset-x-0 bottom-0 z-10 border-t md:static md:border-t-0 print:hidden">
-      <ul className="flex justify-around md:grid md:gap-1">
+      <ul className="flex justify-around md:grid md:justify-stretch md:gap-1">
         {PAGES.map(({ to, name, shape }) => (
           <li key={to} className="grow md:grow-0">
             <NavLink
