@@ -13,18 +13,25 @@ export interface DeviceClocks {
 
 export const deviceClocks: DeviceClocks = { mono: () => performance.now(), wall: () => Date.now() };
 
-/** One reading of all clocks at once. */
+/**
+ * One reading of all clocks at once, ms. Both device clocks are given as they would read if they ran at the session's rate from
+ * the run's beginning on: at rate 1 that is what they read, and at any rate wall less session time is the same at every reading.
+ */
 export interface ClockReading {
   readonly at: Micros;
   readonly mono: number;
   readonly wall: number;
 }
 
+/** What a clock that runs at the session's rate is ahead of the device's own, `atUs` after the run's beginning. */
+export const aheadMs = (atUs: number, rate: number): number => (atUs / 1000) * (1 - 1 / rate);
+
 export interface SessionClock {
   readonly rate: number;
   now(): Micros;
   /** The instant of a stamp of this page's monotonic clock: a DOM event's `timeStamp`, or a worker's stamp bridged by `measureClockOffset`. */
   at(performanceTimeStamp: number): Micros;
+  /** The present, for the journal. */
   reading(): ClockReading;
   /** Moves every later reading by so many microseconds: a new life of the page was bridged better than at first. */
   shift(byUs: number): void;
@@ -47,7 +54,9 @@ export function createSessionClock(options: {
     now: () => at(clocks.mono()),
     reading: () => {
       const mono = clocks.mono();
-      return { at: at(mono), mono, wall: clocks.wall() };
+      const now = at(mono);
+      const ahead = aheadMs(now, rate);
+      return { at: now, mono: mono + ahead, wall: clocks.wall() + ahead };
     },
     shift: (byUs) => {
       base += byUs;

@@ -25,6 +25,6 @@ export interface OpenRunOptions {
 }
 
 export interface OpenRunFailure {
-  readonly code: 'unknown-run' | 'storage' | 'damaged' | 'rate';
+  readonly code: 'unknown-run' | 'storage' | 'damaged' | 'rate' | 'pack';
   readonly message: string;
 }

@@ -11,6 +11,8 @@ export interface RunEnvironment {
   after(ms: number, then: () => void): () => void;
   /** Calls once before the next paint, or soon where nothing is painted. */
   nextFrame(paint: () => void): void;
+  /** Calls whenever the page is hidden or left: it may be killed without another word. */
+  onHide(hidden: () => void): () => void;
   channel(name: string): RunChannel;
   newId(): string;
 }
@@ -45,6 +47,17 @@ export function browserEnvironment(newId: () => string): RunEnvironment {
       };
       requestAnimationFrame(once);
       setTimeout(once, HIDDEN_FRAME_MS);
+    },
+    onHide: (hidden) => {
+      const ifHidden = (): void => {
+        if (document.visibilityState === 'hidden') hidden();
+      };
+      document.addEventListener('visibilitychange', ifHidden);
+      addEventListener('pagehide', hidden);
+      return () => {
+        document.removeEventListener('visibilitychange', ifHidden);
+        removeEventListener('pagehide', hidden);
+      };
     },
     channel: (name) => new BroadcastChannel(name),
     newId,

@@ -34,7 +34,7 @@ export interface RunSession {
   close(): Promise<void>;
 }
 
-/** What the course strip, the grid and the radio words are drawn from. Metres from the start line; plain numbers. */
+/** What the course strip, the grid and the radio words are drawn from. Official distances, as `Readout.distance`, in plain metres. */
 export interface CourseNow {
   /** Start to finish. */
   readonly lengthM: number;
