@@ -70,7 +70,13 @@ export function AttemptSection({
 
 function Release({ placed, editing, setEditing }: Pick<Parameters<typeof AttemptSection>[0], 'placed' | 'editing' | 'setEditing'>) {
   const { event, entry, attempt } = placed;
-  if (editing) return <ReleaseEditor placed={placed} done={() => setEditing(false)} />;
+  if (editing) {
+    return (
+      <div className="font-text font-normal whitespace-normal">
+        <ReleaseEditor placed={placed} done={() => setEditing(false)} />
+      </div>
+    );
+  }
   return (
     <span className="flex flex-wrap items-baseline justify-end gap-x-4">
       {entry.mayPrepare ? (

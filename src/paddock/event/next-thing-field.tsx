@@ -29,8 +29,8 @@ export function NextThingField({
       <ul className="font-figure grid gap-x-8 gap-y-2 text-lg font-extrabold lg:grid-cols-2">
         {next.readiness.map(({ words, done }) => (
           <li key={words} className="flex items-center gap-3">
-            <Icon name={done ? 'ready' : 'missing'} className="size-5" />
-            <span className={done ? '' : 'underline decoration-dotted underline-offset-4'}>{words}</span>
+            {done === null ? <span className="size-5" /> : <Icon name={done ? 'ready' : 'missing'} className="size-5" />}
+            <span className={done !== false ? '' : 'underline decoration-dotted underline-offset-4'}>{words}</span>
           </li>
         ))}
       </ul>

@@ -29,7 +29,8 @@ export type NextAct =
 
 export interface Readiness {
   readonly words: string;
-  readonly done: boolean;
+  /** Null for what is only to be known. */
+  readonly done: boolean | null;
 }
 
 export interface NextThing {
@@ -65,7 +66,7 @@ export function nextThing({ event, entry, attempt }: PlacedAttempt, pack: PackOn
     },
     { words: packWords(attempt, pack, event.timeZone), done: pack !== null && !isStale(attempt, pack) },
     { words: `set-up ${entry.car.wheelSetup}`, done: true },
-    { words: `${cautions} cautions`, done: true },
+    { words: `${cautions} cautions`, done: null },
   ];
   return { readiness, ...chooseAct(attempt, pack) };
 }

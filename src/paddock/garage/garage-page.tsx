@@ -67,17 +67,15 @@ function SetupSection({ setup }: { readonly setup: Setup }) {
         <DataTable
           caption={`wheel scales of ${setup.name}, newest first`}
           head={[
+            { name: 'from' },
             { name: 'wheel scale', unit: 'mm a pulse', figures: true },
             { name: 'sure to', unit: '± %', figures: true },
-            { name: 'from' },
             { name: 'recorded' },
             { name: 'note' },
           ]}
         >
           {setup.scales.map((scale) => (
             <Row key={scale.id}>
-              <FigureCell>{roundedDigits(scale.mmPerPulse, 3)}</FigureCell>
-              <FigureCell>{roundedDigits(scale.scaleSigma * 100, 2)}</FigureCell>
               <RowHead>
                 {scale.runId === null ? (
                   scale.source
@@ -88,6 +86,8 @@ function SetupSection({ setup }: { readonly setup: Setup }) {
                 )}
                 {scale.id === inUse.id ? <span className="font-bold">, in use</span> : null}
               </RowHead>
+              <FigureCell>{roundedDigits(scale.mmPerPulse, 3)}</FigureCell>
+              <FigureCell>{roundedDigits(scale.scaleSigma * 100, 2)}</FigureCell>
               <Cell className="whitespace-nowrap">{formatDay(scale.recordedMs, deviceZone())}</Cell>
               <Cell>{scale.note}</Cell>
             </Row>

@@ -57,7 +57,8 @@ function evenRange(_plot: uPlot, low: number | null, high: number | null): uPlot
 
 function timeErrorTick(seconds: number, ticks: readonly number[]): string {
   const step = Math.abs((ticks[1] ?? 1) - (ticks[0] ?? 0));
-  const { magnitude, word } = formatTimeError(seconds, step < 1 ? (step < 0.1 ? 2 : 1) : 0);
+  const decimals = Number.isInteger(step) ? 0 : Number.isInteger(step * 10) ? 1 : 2;
+  const { magnitude, word } = formatTimeError(seconds, decimals);
   return word === 'level' ? '0' : `${magnitude} ${word}`;
 }
 

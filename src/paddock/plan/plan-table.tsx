@@ -1,6 +1,6 @@
 import { formatClock, formatDuration, formatSpeed } from '#shared/course/format.ts';
 import type { Pack } from '#shared/course/pack.ts';
-import { Cell, DataTable, FigureCell, Row, RowHead } from '#src/paddock/parts/data-table.tsx';
+import { DataTable, FigureCell, Row, RowHead } from '#src/paddock/parts/data-table.tsx';
 import { timeErrorText } from '#src/paddock/parts/time-error.tsx';
 import type { PackPlan } from './pack-plan.ts';
 
@@ -13,7 +13,6 @@ export function PlanTable({ pack, plan, releaseMs }: { readonly pack: Pack; read
       caption="plan by checkpoint"
       head={[
         { name: 'place' },
-        { name: 'what to look for' },
         { name: 'distance', unit, figures: true },
         { name: 'target time', unit: 'elapsed', figures: true },
         { name: 'target clock', unit: pack.event.timeZone, figures: true },
@@ -28,12 +27,10 @@ export function PlanTable({ pack, plan, releaseMs }: { readonly pack: Pack; read
             <span className="text-quiet block text-sm">
               {checkpoint.duty}
               {checkpoint.source === 'own' ? ', your own' : ''}
+              {checkpoint.side === null ? '' : `, ${checkpoint.side}`}
+              {checkpoint.note === '' ? '' : `: ${checkpoint.note}`}
             </span>
           </RowHead>
-          <Cell className="text-sm">
-            {checkpoint.side === null ? '' : `${checkpoint.side}${checkpoint.note === '' ? '' : ': '}`}
-            {checkpoint.note}
-          </Cell>
           <FigureCell>{checkpoint.at.text}</FigureCell>
           <FigureCell>{formatDuration(targetS, 1)}</FigureCell>
           <FigureCell>{releaseMs === null ? '__:__:__' : formatClock(releaseMs + targetS * 1000, pack.event.timeZone, 1)}</FigureCell>

@@ -1,5 +1,5 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
-import { useNavigate } from 'react-router';
+import { Link, useNavigate } from 'react-router';
 import { signOut } from '#src/api/auth/sign-out.ts';
 import { teamQuery } from '#src/api/teams/get-team.ts';
 import { Button } from '#src/components/button.tsx';
@@ -41,7 +41,10 @@ export function TeamPage() {
         <p>
           Signed in as {user.name}, {user.email}.
         </p>
-        <div className="md:hidden">
+        <div className="grid gap-4 md:hidden">
+          <Link to="/device" className="underline underline-offset-4">
+            runs and packs on this device
+          </Link>
           <ThemeChoice />
         </div>
         <SignOut />
