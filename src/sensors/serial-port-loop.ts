@@ -68,7 +68,7 @@ async function readStreams(port: WebSerialPort, loop: PortLoop, stop: AbortSigna
     const end = await readOneStream(port.readable, loop, stop);
     if (end === 'lost') return;
     if (end === 'cut') loop.cut();
-    if (end === 'empty') await wait(PAUSE_MS);
+    if (end === 'empty' && !stop.aborted) await wait(PAUSE_MS);
   }
 }
 
