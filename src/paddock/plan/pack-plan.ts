@@ -1,8 +1,9 @@
-import { printedMetres, printedSpeed } from '#shared/course/convert.ts';
+import { printedMetres } from '#shared/course/convert.ts';
 import type { Checkpoint, Zone } from '#shared/course/course-book.ts';
 import type { Pack } from '#shared/course/pack.ts';
-import { makePlan, type Plan } from '#shared/pace/plan.ts';
-import { makeSchedule, type Schedule, targetTimeAt } from '#shared/pace/schedule.ts';
+import { buildCourseModel, makeChanges } from '#shared/pace/course-model.ts';
+import type { Plan } from '#shared/pace/plan.ts';
+import { type Schedule, targetTimeAt } from '#shared/pace/schedule.ts';
 
 /** The plan of a pack as a person reads it: by checkpoint, and as a profile to draw. SI; time errors positive = late. */
 export interface PackPlan {
@@ -25,23 +26,11 @@ export interface PlanPlace {
 
 const PROFILE_POINTS = 600;
 
+/** The engine's own course model, before anything is changed on the grid: what the cockpit will follow. */
 export function planOfPack(pack: Pack): PackPlan {
-  const { raceClass, courseBook, plan: settings } = pack;
-  const schedule = makeSchedule(courseBook, raceClass);
-  const zones = [...courseBook.zones, ...pack.crewZones];
-  const top = raceClass.cap === null ? null : printedSpeed(raceClass.cap) * (1 - settings.capMargin);
-  const plan = makePlan({
-    schedule,
-    zones: zones.map(({ from, to, limit }) => ({ from: printedMetres(from), to: printedMetres(to), limit: printedSpeed(limit) })),
-    top,
-    floor: raceClass.floor === null ? null : printedSpeed(raceClass.floor),
-    acceleration: settings.acceleration,
-    deceleration: settings.deceleration,
-    from: { x: schedule.start, v: 0, t: 0 },
-    mode: 'finish',
-  });
+  const { schedule, plan, top } = buildCourseModel(pack, makeChanges(pack));
   const highest = profile(schedule, (x) => plan.speedAt(x)).reduce((most, [, speed]) => Math.max(most, speed), 0);
-  return { schedule, plan, zones, top, highest, places: placesOf(pack, schedule, plan) };
+  return { schedule, plan, zones: [...pack.courseBook.zones, ...pack.crewZones], top, highest, places: placesOf(pack, schedule, plan) };
 }
 
 function placesOf(pack: Pack, schedule: Schedule, plan: Plan): PlanPlace[] {
