@@ -36,6 +36,12 @@ export function startTick(pid) {
   return isAlive(pid) ? (processStat(pid)?.[19] ?? null) : null;
 }
 
+/** @param {number} pid @returns {number | null} the parent (field 4) */
+export function parentOf(pid) {
+  const parent = processStat(pid)?.[1];
+  return parent === undefined ? null : Number(parent);
+}
+
 /** @param {number} pid @returns {string | null} */
 export function workingFolder(pid) {
   try {

@@ -22,7 +22,11 @@ export async function ensureBuild(root, signal) {
     if (readStamp(stampFile) === stamp) return;
     await step('Building the pages', async () => {
       const vite = join(root, 'node_modules/vite/bin/vite.js');
-      const { code, output } = await runCommand(process.execPath, [vite, 'build'], { cwd: root, signal });
+      const { code, output } = await runCommand(process.execPath, [vite, 'build'], {
+        cwd: root,
+        signal,
+        env: { ...process.env, NO_COLOR: '1' },
+      });
       if (code !== 0) throw new SetupError(`${output}\nThe build failed. Try \`npm run check\`: it says where.`);
     });
     writeFileSync(stampFile, `${stamp}\n`);
