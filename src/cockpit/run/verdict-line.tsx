@@ -11,7 +11,7 @@ export function VerdictLine() {
   const { lastTap, next, warnings } = useStructure();
   // Touches made before this screen came (the button tried on the grid) are no news here.
   const [seen] = useState(lastTap?.verdict === 'no place near' ? lastTap.seq : null);
-  const act = session.role === 'reader' ? () => undefined : session.act;
+  const { act } = session;
   if (next !== null && warnings.some((warning) => warning.code === 'checkpoint-missed')) {
     const { id, name } = next.checkpoint;
     return (
@@ -35,11 +35,12 @@ export function VerdictLine() {
 }
 
 function Line({ words, label, act }: { readonly words: string; readonly label?: string; readonly act?: () => unknown }) {
+  const { session } = useRunSettings();
   return (
     <div className="verdict" role="status">
       <span className="verdict-words">{words}</span>
       {label === undefined ? null : (
-        <button type="button" className="key" onClick={act}>
+        <button type="button" className="key" disabled={session.role === 'reader'} onClick={act}>
           {label === 'undo' ? <Icon name="undo" /> : null}
           {label}
         </button>

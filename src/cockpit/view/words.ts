@@ -84,6 +84,7 @@ export function verdictWords(tap: TapVerdict): string {
 function scaleWords(tap: TapVerdict): string {
   if (tap.scaleKept !== null || tap.scaleAfter === tap.scaleBefore) return 'scale kept';
   const percent = (tap.scaleAfter / tap.scaleBefore - 1) * 100;
+  if (roundedDigits(percent, 2) === '0.00') return 'scale holds';
   return `scale ${percent < 0 ? 'down' : 'up'} ${roundedDigits(percent, 2)}\u00a0%`;
 }
 

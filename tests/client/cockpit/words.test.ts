@@ -56,6 +56,7 @@ describe('words of the cockpit', () => {
     expect(verdictWords(tap({}))).toBe('moved 11 m; scale kept');
     expect(verdictWords(tap({ scaleKept: null, scaleAfter: 480.144 }))).toBe('moved 11 m; scale up 0.03\u00a0%');
     expect(verdictWords(tap({ scaleKept: null, scaleAfter: 479.856 }))).toBe('moved 11 m; scale down 0.03\u00a0%');
+    expect(verdictWords(tap({ scaleKept: null, scaleAfter: 480.001 }))).toBe('moved 11 m; scale holds');
     expect(verdictWords(tap({ verdict: 'doubted', moved: metres(-12.3) }))).toBe('12 m odd, not used; use it?');
     expect(verdictWords(tap({ verdict: 'voided' }))).toBe('undone');
   });
