@@ -62,7 +62,14 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     cancelSettling = null;
     put(gap.settle());
   };
+  /** Before anything else is numbered: after a sleep the instants of what follows are wrong until the box is heard. */
+  const watch = (): void => {
+    const { pair, apart } = device.look();
+    if (apart) gap.arm(false);
+    if (pair !== null) put([pair]);
+  };
   const act: RunWriter['act'] = (make) => {
+    watch();
     settle();
     const seq = run.nextSeq;
     put([make()]);
@@ -70,9 +77,7 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     return seq;
   };
   const tick = (): void => {
-    const { pair, apart } = device.look();
-    if (apart) gap.arm(false);
-    if (pair !== null) put([pair]);
+    watch();
     const now = clock.now();
     const shown = finishShown(run.state, readout(run.state, now), now);
     if (shown !== null) act(() => shown);
@@ -93,6 +98,7 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     act,
     uncommitted,
     observe(observations) {
+      watch();
       if (!gap.hold(observations)) return put(observations);
       cancelSettling ??= after(SETTLE_MS, settle);
     },

@@ -1,7 +1,7 @@
 import type { Pack } from '#shared/course/pack.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 
-/** A short invented course: 6 km at 90 km/h, one scale place, 240 s. */
+/** A short invented course: 2 km at 90 km/h, one scale place, 80 s. */
 export const PACK: Pack = {
   format: 1,
   event: {
@@ -21,9 +21,9 @@ export const PACK: Pack = {
     unit: 'km',
     checkpoints: [
       place('start', 'Start', 'start', '0.000'),
-      place('barn', 'Red barn', 'settle', '1.500'),
-      place('bridge', 'Stone bridge', 'scale', '4.000'),
-      place('finish', 'Finish', 'finish', '6.000'),
+      place('barn', 'Red barn', 'settle', '0.500'),
+      place('bridge', 'Stone bridge', 'scale', '1.400'),
+      place('finish', 'Finish', 'finish', '2.000'),
     ],
     zones: [],
     slowDownLimit: null,
@@ -32,8 +32,8 @@ export const PACK: Pack = {
   raceClass: {
     id: 'class-1',
     name: 'Ninety',
-    targetTimeMs: 240_000,
-    sections: [{ kind: 'average', to: { text: '6.000', unit: 'km' }, average: { text: '90', unit: 'km/h' } }],
+    targetTimeMs: 80_000,
+    sections: [{ kind: 'average', to: { text: '2.000', unit: 'km' }, average: { text: '90', unit: 'km/h' } }],
     cap: { text: '130', unit: 'km/h' },
     floor: null,
     aids: { wheel: true, gnssSpeed: true, gnssPosition: false, dataLink: false },
