@@ -10,6 +10,7 @@ import { createJournalWriter } from './journal-writer.ts';
 export interface DriveScript {
   readonly pack: Pack;
   readonly seed: number;
+  /** Typed in on the grid where the pack has another or none. */
   readonly releaseMs: number;
   /** A checkpoint whose touch the navigator forgets. */
   readonly forgets: string | null;
@@ -38,6 +39,7 @@ export function driveRun(script: DriveScript): readonly Buffer[] {
   };
 
   journal(openingActs(wallAtZero));
+  if (script.pack.attempt.releaseMs !== script.releaseMs) journal([{ type: 'release-set.v1', at: 0, releaseMs: script.releaseMs }]);
   let flagged = false;
   let shown: Readout | null = null;
   let stoodSince: number | null = null;

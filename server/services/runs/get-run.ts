@@ -3,15 +3,22 @@ import { packs } from '#server/db/schema/packs.ts';
 import { runResults } from '#server/db/schema/run-results.ts';
 import { runs } from '#server/db/schema/runs.ts';
 import { requireRun } from '#server/services/access/require-run.ts';
-import type { ServiceContext } from '#server/services/context.ts';
+import { type ServiceContext, within } from '#server/services/context.ts';
 import { packSchema } from '#shared/api/pack.ts';
 import { runSheetSchema } from '#shared/api/run-sheet.ts';
 import type { RunResponse } from '#shared/api/runs.ts';
 import { heldOf } from './held.ts';
 import { runSummaries } from './run-summaries.ts';
 
+/** One moment's view: a replay that ends meanwhile is not seen half. */
+const SNAPSHOT = { isolationLevel: 'repeatable read', accessMode: 'read only' } as const;
+
 /** A run, how much of it is held, and its newest run sheet if there is one. */
 export async function getRun(ctx: ServiceContext, runId: string): Promise<RunResponse> {
+  return ctx.db.transaction((tx) => read(within(ctx, tx), runId), SNAPSHOT);
+}
+
+async function read(ctx: ServiceContext, runId: string): Promise<RunResponse> {
   const row = await requireRun(ctx, runId, 'runs.read');
   const [run] = await runSummaries(ctx, eq(runs.id, runId));
   if (!run) throw new Error('a run without its entry');

@@ -26,13 +26,15 @@ export interface HouseOptions {
   readonly settings?: Readonly<Record<string, string>>;
   readonly poolMax?: number;
   readonly dist?: string;
+  /** Without the limits a request works under. */
+  readonly patient?: boolean;
 }
 
 export async function openHouse(options: HouseOptions = {}): Promise<House> {
   const database = await createTestDatabase();
   const config = readConfig({ DATABASE_URL: database.url, PORT: '0', LOG_LEVEL: 'silent', ...options.settings });
   const logger = createLogger(config.logLevel);
-  const connection = connect(database.url, { max: options.poolMax ?? 6 });
+  const connection = connect(database.url, { max: options.poolMax ?? 6, patient: options.patient ?? false });
   let aheadMs = 0;
   const now = () => Date.now() + aheadMs;
   const queue = await startReplayQueue({ databaseUrl: database.url, db: connection.db, now, logger });
