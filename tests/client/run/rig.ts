@@ -1,5 +1,5 @@
-import type { Pack } from '#shared/course/pack.ts';
 import { vi } from 'vitest';
+import type { Pack } from '#shared/course/pack.ts';
 import { decodeBlock, type Journalled } from '#shared/journal/block.ts';
 import type { OpenRunOptions } from '#src/run/open-run.ts';
 import { openRunSession } from '#src/run/run-session.ts';
