@@ -89,6 +89,11 @@ export function takeRecord(c: WheelChannel, o: PulseV1, metresPerPulse: number):
     return believe(c, o, wrappedDifference(o.count, c.count));
   }
   const suspect = c.suspect;
+  // the same record again proves nothing: a living box's clock goes on
+  if (suspect !== null && o.boxUs === suspect.boxUs) {
+    c.wild++;
+    return 'held';
+  }
   if (suspect === null || o.at < suspect.at || !follows(suspect, o, metresPerPulse)) {
     if (suspect !== null) c.wild++;
     c.suspect = { at: o.at, count: o.count, boxUs: o.boxUs };

@@ -35,7 +35,7 @@ export interface DriveOptions {
 
 /** Polled records of one channel: the count is whole, the instant is the poll's. */
 export function pulses(motion: Motion, options: DriveOptions): NewObservation[] {
-  const { hz = 100, until, from = -10, metresPerPulse = 0.25, firstCount = 0, channel = 0 } = options;
+  const { hz = 20, until, from = -10, metresPerPulse = 0.25, firstCount = 0, channel = 0 } = options;
   const list: NewObservation[] = [];
   for (let i = Math.ceil(from * hz); i <= until * hz; i++) {
     const t = i / hz;
