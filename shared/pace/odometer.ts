@@ -128,7 +128,7 @@ function rateNow(track: Track): number {
   return us > 0 ? (((w[last] as number) - (w[i] as number)) * 1e6) / us : 0;
 }
 
-/** The box restarted between two records: GNSS may know the gap, else nothing is invented. */
+/** The box restarted between two records: GNSS may know the gap, else only what it has counted since is known. */
 function restart(o: Odometer, before: number, metresPerPulse: number): OdometerChange {
   const { wheel, gnss } = o;
   const gap = (wheel.at - before) / 1e6;
@@ -138,8 +138,9 @@ function restart(o: Odometer, before: number, metresPerPulse: number): OdometerC
   const metres = covered ? Math.max(0, g1 - g0) : 0;
   if (covered) noteGnss(o);
   else o.losses.push({ at: wheel.at, sigma: Math.abs(o.rate) * metresPerPulse * gap });
+  const w = covered ? o.w : o.w + (wheel.total - o.wheelKnot.total);
   o.wheelKnot = { at: wheel.at, total: wheel.total };
-  return knot(o, wheel.at, o.w, o.g + metres, metresPerPulse);
+  return knot(o, wheel.at, w, o.g + metres, metresPerPulse);
 }
 
 /** The wheel speaks again after GNSS carried on. If its count went on, the count decides; else the bridged metres stand. */

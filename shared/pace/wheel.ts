@@ -32,7 +32,7 @@ export const makeWheelChannel = (): WheelChannel => ({
   restarts: 0,
 });
 
-/** first: baseline; moved: the total changed; same: alive, unchanged; restarted: new baseline, the total stands; held: not believed yet. */
+/** first: baseline; moved: the total changed; same: alive, unchanged; restarted: new baseline, the gap is lost; held: not believed yet. */
 export type WheelVerdict = 'first' | 'moved' | 'same' | 'restarted' | 'held' | 'stale';
 
 /** No car on a closed road is faster; one going backwards is far slower. m/s */
@@ -110,6 +110,7 @@ function settle(c: WheelChannel, suspect: Mark, o: Mark, metresPerPulse: number)
   const young = suspect.boxUs <= gap + CLOCKS_APART_US && plausible(suspect.count, suspect.boxUs, metresPerPulse);
   if (!young && plausible(pulses, gap, metresPerPulse)) return believe(c, o, pulses + wrappedDifference(o.count, suspect.count));
   c.restarts++;
-  believe(c, o, wrappedDifference(o.count, suspect.count));
+  // what a restarted box has counted since is measured; what went by before is lost
+  believe(c, o, (young ? suspect.count : 0) + wrappedDifference(o.count, suspect.count));
   return 'restarted';
 }

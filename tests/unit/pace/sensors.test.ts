@@ -123,8 +123,9 @@ describe('the wheel falls silent', () => {
     const list = journal(clock, between(pulses(motion, { until: 300 }), -20, 180), back);
     const [before, after] = look(pack, list, [179, 200]);
     const off = motion.metresAt(200) - (after?.distance as number);
-    expect(off).toBeGreaterThan(75);
-    expect(off).toBeLessThan(82);
+    // the last record lies at most a poll before 180 s; from 181.5 s the box counts again
+    expect(off).toBeGreaterThan(58);
+    expect(off).toBeLessThan(64);
     expect((after?.sigma as number) - (before?.sigma as number)).toBeGreaterThan(1);
     expect(sheetOf(pack, list).warnings.join()).toContain('nothing measured it');
   });
