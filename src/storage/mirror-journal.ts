@@ -5,6 +5,7 @@ import type { MirrorFile, MirrorFolder } from './mirror-file.ts';
 import { blockFrame, chunkFrame, headerFrame, type MirrorContent, readMirror } from './mirror-frames.ts';
 
 const SUFFIX = '.journal';
+const AGAIN_MS = 50;
 
 /** Mirrors of this device's runs. A file stays open from its first use until `release`, because only one window may hold it. */
 export class MirrorJournal {
@@ -20,11 +21,15 @@ export class MirrorJournal {
     return this.open.has(runId);
   }
 
-  /** Null while another window holds the file. */
-  async of(runId: string): Promise<OpenMirror | null> {
+  /** Null while another window holds the file; a window that just died may hold it for a moment, so it may be waited for. */
+  async of(runId: string, patienceMs = 0): Promise<OpenMirror | null> {
     const known = this.open.get(runId);
     if (known !== undefined) return known;
-    const file = await this.folder.open(runId + SUFFIX);
+    let file = await this.folder.open(runId + SUFFIX);
+    for (let waited = 0; file === null && waited < patienceMs; waited += AGAIN_MS) {
+      await new Promise((resume) => setTimeout(resume, AGAIN_MS));
+      file = await this.folder.open(runId + SUFFIX);
+    }
     if (file === null) return null;
     const mirror = new OpenMirror(file);
     this.open.set(runId, mirror);

@@ -5,6 +5,11 @@ import type { StoredBlock, StoredRun } from './journal-store.ts';
 import type { MirrorFolder } from './mirror-file.ts';
 import { MirrorJournal, type OpenMirror } from './mirror-journal.ts';
 
+/** A reloaded page is back before the browser has freed the files of its former self. */
+const PATIENCE_MS = 300;
+/** Worth waiting for: the mirror is all that is left of the run. */
+const PATIENCE_WHEN_LOST_MS = 2000;
+
 /**
  * The second copy, kept level with the database. It never stands in the way: whatever goes wrong with it is remembered as a
  * warning, and the database goes on alone.
@@ -28,7 +33,7 @@ export class Mirrors {
 
   /** Makes database and mirror of a run alike; the longer valid one wins. Null for a run nobody holds. */
   level(runId: string): Promise<StoredRun | null> {
-    return this.borrowing(runId, async (mirror) => {
+    return this.borrowing(runId, PATIENCE_MS, async (mirror) => {
       const copy = await this.quietly(async () => mirror?.content() ?? null);
       const run = await healDatabase(this.db, runId, copy);
       if (run?.recovered === 'mirror') this.mended.add(runId);
@@ -56,7 +61,7 @@ export class Mirrors {
   }
 
   async keepChunks(runId: string, chunks: readonly KeptChunk[]): Promise<void> {
-    await this.borrowing(runId, async (mirror) => void (await this.quietly(async () => mirror?.keepChunks(chunks))));
+    await this.borrowing(runId, 0, async (mirror) => void (await this.quietly(async () => mirror?.keepChunks(chunks))));
   }
 
   /** At the start: runs that the database lost, or holds less of, come back from their mirrors. Sealed ones are left alone. */
@@ -70,7 +75,7 @@ export class Mirrors {
   }
 
   private adoptRun(runId: string, lost: boolean): Promise<void> {
-    return this.borrowing(runId, async (mirror) => {
+    return this.borrowing(runId, lost ? PATIENCE_WHEN_LOST_MS : PATIENCE_MS, async (mirror) => {
       if (mirror !== null && (lost || mirror.end > (await this.db.nextSeq(runId)))) await this.level(runId);
     });
   }
@@ -84,9 +89,9 @@ export class Mirrors {
   }
 
   /** Another window may record this run: a file that was not open before does not stay in this one's hands. */
-  private async borrowing<T>(runId: string, work: (mirror: OpenMirror | null) => Promise<T>): Promise<T> {
+  private async borrowing<T>(runId: string, patienceMs: number, work: (mirror: OpenMirror | null) => Promise<T>): Promise<T> {
     const mine = this.journal?.holds(runId) === true;
-    const mirror = await this.file(runId);
+    const mirror = await this.file(runId, patienceMs);
     try {
       return await work(mirror);
     } finally {
@@ -94,8 +99,8 @@ export class Mirrors {
     }
   }
 
-  private async file(runId: string): Promise<OpenMirror | null> {
-    return (await this.quietly(async () => (await this.journal?.of(runId)) ?? null)) ?? null;
+  private async file(runId: string, patienceMs = 0): Promise<OpenMirror | null> {
+    return (await this.quietly(async () => (await this.journal?.of(runId, patienceMs)) ?? null)) ?? null;
   }
 
   private async quietly<T>(work: () => Promise<T>): Promise<T | null> {

@@ -13,7 +13,8 @@ export class Device {
   readonly disk = new MemoryDisk();
 
   async window(): Promise<DeviceWindow> {
-    const db = new JournalDatabase({ indexedDB: this.indexedDB, IDBKeyRange });
+    const life = { over: false };
+    const db = new JournalDatabase({ indexedDB: untilOver(this.indexedDB, life), IDBKeyRange });
     const folder = this.disk.window();
     const store = await createJournalBackend({ db, folder, database: 'own bucket' });
     return {
@@ -21,6 +22,7 @@ export class Device {
       db,
       folder,
       kill: () => {
+        life.over = true;
         folder.kill();
         db.close();
       },
@@ -41,6 +43,17 @@ export class Device {
       db.close();
     }
   }
+}
+
+/** The database as a window has it that may be killed: then nothing it still wants to do opens it again. */
+function untilOver(factory: IDBFactory, life: { readonly over: boolean }): IDBFactory {
+  return new Proxy(factory, {
+    get: (target, name) => {
+      if (life.over) throw new DOMException('this window was killed', 'AbortError');
+      const value: unknown = Reflect.get(target, name);
+      return typeof value === 'function' ? value.bind(target) : value;
+    },
+  });
 }
 
 export interface DeviceWindow {
