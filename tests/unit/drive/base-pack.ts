@@ -81,3 +81,22 @@ export const SHORT_PACK: Pack = {
   raceClass: { ...BASE_PACK.raceClass, targetTimeMs: 240_000, sections: [{ kind: 'average', to: km(12), average: kmh(180) }] },
   ownCheckpoints: [2, 3.5, 5, 6.5, 8, 9.5, 11].map((at, i) => checkpoint(`place-${i + 1}`, i === 0 ? 'settle' : 'scale', at)),
 };
+
+/** Forty kilometres at 40 m/s with three places and one limit, wheel only: the setting of which simulations of the ratio rule are known. */
+export const FORTY_PACK: Pack = {
+  ...BASE_PACK,
+  courseBook: {
+    ...BASE_PACK.courseBook,
+    checkpoints: [checkpoint('start', 'start', 0), checkpoint('finish', 'finish', 40), checkpoint('stop', 'stop board', 41)],
+    zones: [zone('z1', 18, 19, 25)],
+  },
+  raceClass: {
+    ...BASE_PACK.raceClass,
+    targetTimeMs: 1_000_000,
+    sections: [{ kind: 'average', to: km(40), average: kmh(144) }],
+    cap: kmh(48 * 3.6),
+    aids: { wheel: true, gnssSpeed: false, gnssPosition: false, dataLink: false },
+  },
+  ownCheckpoints: [10, 20, 30].map((at, i) => checkpoint(`place-${i + 1}`, i === 0 ? 'settle' : 'scale', at)),
+  settings: { ...BASE_PACK.settings, scaleRule: 'ratio' },
+};
