@@ -28,7 +28,8 @@ export function RequireSignIn({ children }: { readonly children: ReactNode }) {
   const { pathname } = useLocation();
   if (me.data === null || (me.data === undefined && isSignedOut(me.error)))
     return <Navigate to="/sign-in" replace state={{ from: pathname }} />;
-  return <Loaded query={me}>{(data) => (data === null ? null : <WithTeam me={data}>{children}</WithTeam>)}</Loaded>;
+  if (!me.data) return <Loaded query={me}>{() => null}</Loaded>;
+  return <WithTeam me={me.data}>{children}</WithTeam>;
 }
 
 const isSignedOut = (error: Error | null): boolean => error !== null && 'code' in error && error.code === 'SIGN_IN_REQUIRED';

@@ -27,9 +27,12 @@ export function AttemptSection({
   const { courseBook } = attempt;
   return (
     <section className="mb-10" aria-label={`attempt ${attempt.number} of number ${entry.number}`}>
-      <h3 className="text-xl font-bold">
-        Attempt {attempt.number}: {courseBook.name}
-      </h3>
+      <h2 className="text-xl font-bold">
+        Number {entry.number}, attempt {attempt.number}: {courseBook.name}
+      </h2>
+      <p className="text-quiet mb-2">
+        {entry.car.name}; {entry.crew.map(({ name, role }) => `${name}, ${role}`).join('; ')}
+      </p>
       <dl>
         <FigureRow label="course">
           <Right>
@@ -49,21 +52,18 @@ export function AttemptSection({
         </FigureRow>
         <RunRows placed={placed} />
       </dl>
-      <div className="mt-4 flex flex-wrap gap-3">
-        {pack === null ? null : (
-          <>
+      {isDone(attempt) && entry.mayPrepare ? (
+        <div className="mt-4 flex flex-wrap gap-3">
+          {pack === null ? null : (
             <a className={PLAIN_LINK} href={`/cockpit/${attempt.id}`}>
-              {isDone(attempt) ? 'open cockpit for a rerun' : 'open cockpit'}
+              open cockpit for a rerun
             </a>
-            <Link className={PLAIN_LINK} to={`/plan/${attempt.id}`}>
-              plan
-            </Link>
-          </>
-        )}
-        {entry.mayPrepare && attempt.packFault === null && (pack === null || isStale(attempt, pack)) ? (
-          <StorePackButton attemptId={attempt.id} again={pack !== null} kind="plain" />
-        ) : null}
-      </div>
+          )}
+          {attempt.packFault === null && (pack === null || isStale(attempt, pack)) ? (
+            <StorePackButton attemptId={attempt.id} again={pack !== null} kind="plain" />
+          ) : null}
+        </div>
+      ) : null}
     </section>
   );
 }
@@ -95,10 +95,10 @@ function ClassRow({ raceClass }: { readonly raceClass: RaceClass }) {
     section.kind === 'average' ? [`${section.average.text} ${section.average.unit}`] : ['neutral'],
   );
   return (
-    <FigureRow label={`class ${raceClass.name}`}>
+    <FigureRow label="class">
       <Right>{formatDuration(raceClass.targetTimeMs / 1000, 3)}</Right>
       <Quiet>
-        average {averages.join(', ')}
+        {raceClass.name}; average {averages.join(', ')}
         {cap === null ? '' : `; cap ${cap.text} ${cap.unit}`}
         {floor === null ? '' : `; floor ${floor.text} ${floor.unit}`}
       </Quiet>

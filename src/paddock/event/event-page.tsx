@@ -1,6 +1,6 @@
 import { useQuery } from '@tanstack/react-query';
 import { useState } from 'react';
-import { Link, useParams } from 'react-router';
+import { Link, useParams, useSearchParams } from 'react-router';
 import type { EventsResponse } from '#shared/api/events.ts';
 import { eventsQuery } from '#src/api/events/get-events.ts';
 import { Cautions } from '#src/components/cautions.tsx';
@@ -11,7 +11,8 @@ import { Loaded } from '#src/paddock/parts/loaded.tsx';
 import { formatDate } from '#src/paddock/parts/when.ts';
 import { useSignedIn } from '#src/paddock/signed-in.tsx';
 import { AttemptSection } from './attempt-section.tsx';
-import { attemptToPrepare, type EntryData, type EventData } from './next-thing.ts';
+import { AttemptTable } from './attempt-table.tsx';
+import { attemptToPrepare, type EventData, placedAttempts } from './next-thing.ts';
 import { NextThingField } from './next-thing-field.tsx';
 import { PracticeEventButton } from './practice-event-button.tsx';
 
@@ -35,51 +36,41 @@ function Events({ data }: { readonly data: EventsResponse }) {
         {event.endsOn === event.startsOn ? '' : ` to ${formatDate(event.endsOn)}`}. Clock times are {event.timeZone}.
         {event.practice ? ' Made for practice: nothing of it is official.' : ''}
       </p>
-      <Entries key={event.id} event={event} entries={event.entries.filter((entry) => entry.team.id === team.id)} />
+      <Attempts key={event.id} event={event} />
       <OtherEvents events={data.events.filter(({ id }) => id !== event.id)} />
     </>
   );
 }
 
-function Entries({ event, entries }: { readonly event: EventData; readonly entries: readonly EntryData[] }) {
+function Attempts({ event }: { readonly event: EventData }) {
   const { team } = useSignedIn();
+  const [search] = useSearchParams();
   const [editing, setEditing] = useState<string | null>(null);
   const packs = usePacks();
   const packOf = (attemptId: string) => packs?.find((pack) => pack.attemptId === attemptId) ?? null;
-  const next = attemptToPrepare([event], team.id);
-  if (next === null) return <EmptyState>Your entries to this event will stand here, with their releases and packs.</EmptyState>;
+  const attempts = placedAttempts([event], team.id);
+  const placed = attempts.find(({ attempt }) => attempt.id === search.get('attempt')) ?? attemptToPrepare([event], team.id);
+  if (placed === null) return <EmptyState>Your entries to this event will stand here, with their releases and packs.</EmptyState>;
+  const { attempt } = placed;
   return (
     <>
-      <NextThingField placed={next} pack={packOf(next.attempt.id)} editRelease={() => setEditing(next.attempt.id)} />
+      <NextThingField placed={placed} pack={packOf(attempt.id)} editRelease={() => setEditing(attempt.id)} />
       <div className="grid gap-x-12 lg:grid-cols-[2fr_1fr]">
-        <div>
-          {entries.map((entry) => (
-            <section key={entry.id} aria-label={`entry ${entry.number}`} className="mb-4">
-              <h2 className="mb-4 text-2xl font-bold">
-                Number {entry.number}: {entry.car.name}
-                <span className="text-quiet block text-base font-normal">
-                  {entry.crew.map(({ name, role }) => `${name}, ${role}`).join(' · ')}
-                </span>
-              </h2>
-              {entry.attempts.map((attempt) => (
-                <AttemptSection
-                  key={attempt.id}
-                  placed={{ event, entry, attempt }}
-                  pack={packOf(attempt.id)}
-                  editing={editing === attempt.id}
-                  setEditing={(on) => setEditing(on ? attempt.id : null)}
-                />
-              ))}
-            </section>
-          ))}
-        </div>
-        <aside aria-labelledby="event-cautions">
+        <AttemptSection
+          placed={placed}
+          pack={packOf(attempt.id)}
+          editing={editing === attempt.id}
+          setEditing={(on) => setEditing(on ? attempt.id : null)}
+        />
+        <aside aria-labelledby="event-cautions" className="mb-10">
           <h2 id="event-cautions" className="mb-2 text-xl font-bold">
             Cautions
           </h2>
           <Cautions />
         </aside>
       </div>
+      <h2 className="mb-2 text-xl font-bold">All attempts</h2>
+      <AttemptTable attempts={attempts} chosen={attempt.id} packOf={packOf} />
     </>
   );
 }

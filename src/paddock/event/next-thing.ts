@@ -41,13 +41,21 @@ export interface NextThing {
   readonly why: string;
 }
 
+/** Every attempt of the team's own entries, in the order of their releases. */
+export function placedAttempts(events: readonly EventData[], teamId: string): readonly PlacedAttempt[] {
+  return events
+    .flatMap((event) =>
+      event.entries
+        .filter(({ team }) => team.id === teamId)
+        .flatMap((entry) => entry.attempts.map((attempt) => ({ event, entry, attempt }))),
+    )
+    .sort(byTurn);
+}
+
 /** The attempt to prepare: the first that has no finished run, else the last one. Practice comes after the real thing. */
 export function attemptToPrepare(events: readonly EventData[], teamId: string): PlacedAttempt | null {
-  const all = events.flatMap((event) =>
-    event.entries.filter(({ team }) => team.id === teamId).flatMap((entry) => entry.attempts.map((attempt) => ({ event, entry, attempt }))),
-  );
-  const open = all.filter(({ attempt }) => !isDone(attempt)).sort(byTurn);
-  return open[0] ?? all.at(-1) ?? null;
+  const all = placedAttempts(events, teamId);
+  return all.find(({ attempt }) => !isDone(attempt)) ?? all.at(-1) ?? null;
 }
 
 export const isDone = (attempt: AttemptData): boolean =>

@@ -87,8 +87,8 @@ function Plan({ stored }: { readonly stored: StoredPack }) {
         Plan
       </PageTitle>
       <p className="text-quiet -mt-3 mb-6">
-        {pack.event.name}, number {pack.entry.number}, attempt {pack.attempt.number}: {pack.courseBook.name}, class {pack.raceClass.name}.
-        Pack {stored.digest.slice(0, 8)}.
+        {pack.event.name}, number {pack.entry.number}, attempt {pack.attempt.number}: {pack.courseBook.name}, {pack.raceClass.name}. Pack{' '}
+        {stored.digest.slice(0, 8)}.
       </p>
       <p className="font-figure flex flex-wrap gap-x-6 gap-y-1 text-lg font-extrabold md:text-xl">
         <span>release {release === null ? '____:____:____' : dayAndClock(release, pack.event.timeZone)}</span>

@@ -35,7 +35,7 @@ export function PlanTable({ pack, plan, releaseMs }: { readonly pack: Pack; read
           <FigureCell>{formatDuration(targetS, 1)}</FigureCell>
           <FigureCell>{releaseMs === null ? '__:__:__' : formatClock(releaseMs + targetS * 1000, pack.event.timeZone, 1)}</FigureCell>
           <FigureCell>{at <= plan.schedule.start ? null : timeErrorText(plannedErrorS, 1)}</FigureCell>
-          <FigureCell>{formatSpeed(speed, speedUnit)}</FigureCell>
+          <FigureCell>{at <= plan.schedule.start ? null : formatSpeed(speed, speedUnit)}</FigureCell>
         </Row>
       ))}
     </DataTable>

@@ -39,7 +39,7 @@ function Leg({ leg, unit }: { readonly leg: LegRow; readonly unit: DistanceUnit 
       </RowHead>
       <FigureCell>{leg.elapsedS === null ? null : formatDuration(leg.elapsedS, 2)}</FigureCell>
       <FigureCell>{leg.timeErrorS === null ? null : timeErrorText(leg.timeErrorS, 2)}</FigureCell>
-      <FigureCell>{leg.duty === 'start' ? null : timeErrorText(leg.plannedS, 2)}</FigureCell>
+      <FigureCell>{leg.duty === 'start' || leg.duty === 'stop board' ? null : timeErrorText(leg.plannedS, 2)}</FigureCell>
       <FigureCell>{formatDistance(leg.officialM, unit, 3)}</FigureCell>
       <FigureCell>{leg.measuredM === null ? null : formatDistance(leg.measuredM, unit, 3)}</FigureCell>
       <FigureCell>{movedText(leg.movedM)}</FigureCell>

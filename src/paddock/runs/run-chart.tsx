@@ -26,7 +26,9 @@ export function RunChart({
   }, [sheet, unit]);
   const options = useCallback<ChartOptions>(
     (ink, width) => {
-      const dots = sheet.legs.map(({ officialM, by }) => ({ at: officialM, filled: by === 'tap' }));
+      const dots = sheet.legs
+        .filter(({ duty }) => duty !== 'stop board')
+        .map(({ officialM, by }) => ({ at: officialM, filled: by === 'tap' }));
       return courseOptions(ink, width, HEIGHT, { unit, zones, dots }, [planSeries(ink), ownSeries(ink)]);
     },
     [sheet, unit, zones],

@@ -55,7 +55,7 @@ function ServerRun({ data, local }: { readonly data: RunResponse; readonly local
         Run sheet
       </PageTitle>
       <p className="text-quiet -mt-3 mb-4">
-        {runTitle(pack)}: {run.courseBookName}, class {run.raceClassName}, {run.carName}
+        {runTitle(pack)}: {run.courseBookName}, {run.raceClassName}, {run.carName}
         {run.practice ? '; practice' : ''}.
       </p>
       <div className="mb-6">
