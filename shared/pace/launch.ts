@@ -38,6 +38,7 @@ export const makeLaunchWatch = (): LaunchWatch => ({ cell: null, current: null, 
 /** A car that stayed within this for this long stood still. A standing encoder dithers by a count or two. */
 const STILL_M = 0.02;
 const STILL_US = 700_000;
+const STEP_M = 1;
 /** Further than a shuffle on the grid. */
 const LAUNCH_M = 6;
 const APART_US = 20_000;
@@ -47,8 +48,20 @@ export type LaunchEvent = 'none' | 'moved' | 'complete';
 /** True while the first metres are being driven. */
 export const isLaunching = (watch: LaunchWatch): boolean => watch.current !== null;
 
-/** Takes a knot: `r` raw metres by the nominal scale, `pulseMetres` one pulse of the source (0 for GNSS). */
-export function watchLaunch(watch: LaunchWatch, at: number, r: number, w: number, g: number, pulseMetres: number): LaunchEvent {
+export interface LaunchKnot {
+  readonly at: number;
+  /** Raw metres by the nominal scale, counts, metres by GNSS. */
+  readonly r: number;
+  readonly w: number;
+  readonly g: number;
+  /** Last record that showed no movement. */
+  readonly stillAt: number;
+  /** One pulse of the source, metres; 0 for GNSS. */
+  readonly pulseMetres: number;
+}
+
+/** Takes a knot. */
+export function watchLaunch(watch: LaunchWatch, { at, r, w, g, stillAt, pulseMetres }: LaunchKnot): LaunchEvent {
   const { cell, current } = watch;
   if (cell === null) {
     watch.cell = { at, r, w, g };
@@ -56,7 +69,8 @@ export function watchLaunch(watch: LaunchWatch, at: number, r: number, w: number
   }
   if (Math.abs(r - cell.r) <= STILL_M) return 'none';
   watch.cell = { at, r, w, g };
-  if (at - cell.at >= STILL_US) {
+  // either records said so, or a box that only speaks when the wheel turns was silent and then a step or two further
+  if (stillAt - cell.at >= STILL_US || (at - cell.at >= STILL_US && Math.abs(r - cell.r) <= STEP_M)) {
     watch.current = { r: cell.r, w: cell.w, g: cell.g, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - cell.r] };
     return 'moved';
   }

@@ -20,6 +20,8 @@ export interface Odometer {
   g: number;
   /** Last knot by the wheel, and the count that stood there. */
   wheelKnot: { at: number; total: number };
+  /** Last record of the source that showed no movement since the last knot. */
+  stillAt: number;
   /** Speed of the wheel, counts per second over the last knots. */
   rate: number;
   /** Where the wheel was left for GNSS: gMetres is GNSS's own reading there. Null when GNSS has been the source from the start. */
@@ -54,6 +56,7 @@ export const makeOdometer = (): Odometer => ({
   w: 0,
   g: 0,
   wheelKnot: { at: 0, total: 0 },
+  stillAt: 0,
   rate: 0,
   bridge: null,
   gnssZero: 0,
@@ -70,6 +73,8 @@ const SILENT_US = 1_000_000;
 const SURELY_MOVING = 3;
 /** Below this share of the bridged metres the count had stood still, not gone on. */
 const COUNT_WENT_ON = 0.8;
+/** Unchanged for longer than this is a rest. */
+const RESTED_US = 700_000;
 /** Speed is read over at least this long. */
 const RATE_US = 250_000;
 
@@ -85,7 +90,14 @@ function knot(
 ): OdometerChange {
   o.w = w;
   o.g = g;
-  const launch = watchLaunch(o.launches, at, w * metresPerPulse + g, w, g, o.mode === 'wheel' ? metresPerPulse : 0);
+  const launch = watchLaunch(o.launches, {
+    at,
+    r: w * metresPerPulse + g,
+    w,
+    g,
+    stillAt: o.stillAt,
+    pulseMetres: o.mode === 'wheel' ? metresPerPulse : 0,
+  });
   const traced = addKnot(o.track, at, w, g, isLaunching(o.launches) || launch !== 'none');
   return { moved: true, traced, launch, rewritten };
 }
@@ -100,6 +112,7 @@ export function takePulse(o: Odometer, pulse: PulseV1, channel: number, aids: Ai
   const { wheel } = o;
   const before = wheel.at;
   const verdict = takeRecord(wheel, pulse, metresPerPulse);
+  if (verdict === 'same' && o.mode === 'wheel') o.stillAt = wheel.at;
   if (verdict === 'held' || verdict === 'stale' || verdict === 'same') return UNCHANGED;
   o.usedWheel = true;
   if (o.mode === 'gnss') return handBack(o, verdict, metresPerPulse);
@@ -109,12 +122,20 @@ export function takePulse(o: Odometer, pulse: PulseV1, channel: number, aids: Ai
     o.wheelKnot = { at: wheel.at, total: wheel.total };
     return knot(o, wheel.at, o.w, o.g, metresPerPulse);
   }
-  const w = o.w + (wheel.total - o.wheelKnot.total);
+  const pulses = wheel.total - o.wheelKnot.total;
+  // one pulse more may have been on its way all the time; several were not, and neither was one after a rest
+  if (Math.abs(pulses) > 1 || o.stillAt - o.wheelKnot.at > RESTED_US) keepStill(o);
   o.wheelKnot.at = wheel.at;
   o.wheelKnot.total = wheel.total;
-  const change = knot(o, wheel.at, w, o.g, metresPerPulse);
+  const change = knot(o, wheel.at, o.w + pulses, o.g, metresPerPulse);
   o.rate = rateNow(o.track);
   return change;
+}
+
+/** The end of a standstill becomes a knot, or a straight line would have the car creep all the while. */
+function keepStill(o: Odometer): void {
+  const last = o.track.recent.at[o.track.recent.at.length - 1];
+  if (last !== undefined && o.stillAt > last) addKnot(o.track, o.stillAt, o.w, o.g, false);
 }
 
 /** Counts per second over the last knots, at least a quarter of a second apart where they are that close. */
@@ -192,8 +213,10 @@ export function takeGnss(o: Odometer, fix: FixV1, aids: Aids, now: number, metre
   }
   const lastAt = o.track.recent.at[o.track.recent.at.length - 1] ?? fix.at;
   const g = gnss.metres - o.gnssZero;
+  if (fix.at >= lastAt && g <= o.g) o.stillAt = fix.at;
   if (fix.at < lastAt || g <= o.g) return UNCHANGED;
   noteGnss(o);
+  keepStill(o);
   return knot(o, fix.at, o.w, g, metresPerPulse);
 }
 

@@ -48,7 +48,7 @@ describe('first movement', () => {
       const motion = fromRest(2.5, 40, 0.4);
       const shifted: Motion = { metresAt: (t) => motion.metresAt(t) + part * metresPerPulse };
       const p = { ...pack, wheel: { ...pack.wheel, mmPerPulse: metresPerPulse * 1000 } };
-      const sheet = sheetOf(p, journal(...drive(shifted, 60, metresPerPulse, 500)));
+      const sheet = sheetOf(p, journal(...drive(shifted, 8, metresPerPulse, 500)));
       expect(Math.abs((sheet.reactionS as number) - 0.4)).toBeLessThan(0.03);
     }
   });
