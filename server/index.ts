@@ -3,6 +3,7 @@ import { fileURLToPath } from 'node:url';
 import { connect } from '#server/db/connect.ts';
 import { migrate } from '#server/db/migrate.ts';
 import { startReplayQueue } from '#server/jobs/replay-queue.ts';
+import { sweep } from '#server/services/house/sweep.ts';
 import { createApp } from './app.ts';
 import { type Config, ConfigError, readConfig, servesSecurely } from './config.ts';
 import { closeServer, listen } from './listen.ts';
@@ -13,6 +14,7 @@ import { serviceDeps } from './service-deps.ts';
 
 const DIST = fileURLToPath(new URL('../dist', import.meta.url));
 const GRACE_MS = 5000;
+const SWEEP_MS = 3600 * 1000;
 
 async function start(config: Config): Promise<() => Promise<void>> {
   const logger = createLogger(config.logLevel);
@@ -22,9 +24,13 @@ async function start(config: Config): Promise<() => Promise<void>> {
   const deps = serviceDeps(connection, (runId) => queue.ask(runId));
   const app = createApp({ config, deps, logger, dist: existsSync(DIST) ? DIST : null });
   const server = await listen(app, config);
+  const sweepNow = () => sweep(deps).catch((error: unknown) => logger.error({ err: error }, 'sweeping'));
+  await sweepNow();
+  const sweeping = setInterval(sweepNow, SWEEP_MS).unref();
   const outdated = await queue.askOutdated();
   logger.info({ host: config.host, port: config.port, secure: servesSecurely(config), outdated }, 'listening');
   return async () => {
+    clearInterval(sweeping);
     await closeServer(server, GRACE_MS);
     await queue.stop();
     await connection.close();

@@ -16,6 +16,8 @@ export interface AuthSessions {
   check(token: string): Promise<{ readonly userId: string } | null>;
   end(token: string): Promise<void>;
   endAll(userId: string): Promise<void>;
+  /** Removes those that were idle too long. */
+  sweep(): Promise<void>;
 }
 
 declare module 'lucia' {
@@ -53,5 +55,6 @@ export function createAuthSessions(db: Connection['db'], now: () => number): Aut
     },
     end: (token) => lucia.invalidateSession(sha256Hex(token)),
     endAll: (userId) => lucia.invalidateUserSessions(userId),
+    sweep: () => lucia.deleteExpiredSessions(),
   };
 }

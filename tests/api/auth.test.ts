@@ -2,7 +2,9 @@ import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { ABSOLUTE_MS } from '#server/auth/auth-sessions.ts';
 import { authSessions } from '#server/db/schema/auth-sessions.ts';
+import { signInFailures } from '#server/db/schema/sign-in-failures.ts';
 import { users } from '#server/db/schema/users.ts';
+import { sweep } from '#server/services/house/sweep.ts';
 import { callerOf } from './support/caller.ts';
 import { type House, openHouse } from './support/house.ts';
 import { newManager, PASSWORD, someEmail } from './support/people.ts';
@@ -163,5 +165,23 @@ describe('failed sign-ins', () => {
     await callerOf(house).post('/api/auth/sign-in', { email: other.email, password: PASSWORD }).expect(200);
     await callerOf(house).post('/api/auth/sign-in', { email: one.email, password: PASSWORD }).expect(200);
     for (let i = 0; i < 5; i++) await fail(one.email).expect(401);
+  });
+
+  it('of one address are limited over all accounts, and forgotten after an hour', async () => {
+    const own = await openHouse();
+    try {
+      const person = await newManager(own);
+      const failedAt = new Date();
+      const row = (i: number) => ({ accountKey: `account ${i}`, address: '127.0.0.1', failedAt });
+      await own.connection.db.insert(signInFailures).values(Array.from({ length: 300 }, (_, i) => row(i)));
+      const right = { email: person.email, password: PASSWORD };
+      await callerOf(own).post('/api/auth/sign-in', right).expect(429);
+      own.advance(61 * 60_000);
+      await callerOf(own).post('/api/auth/sign-in', right).expect(200);
+      await sweep(own.deps);
+      expect(await own.connection.db.select().from(signInFailures)).toEqual([]);
+    } finally {
+      await own.close();
+    }
   });
 });
