@@ -52,10 +52,10 @@ export function CheckpointPanel() {
   );
 }
 
-/** Two short lines: which of the places it is, and the side to look at. */
+/** Two short lines beside the red-flag key: the side to look at, and which of the places it is. */
 function countText(next: NextCheckpoint): string {
-  const side = next.checkpoint.side === null ? '' : `, ${next.checkpoint.side}`;
-  return `checkpoint\n${next.index} of ${next.of}${side}`;
+  const { side } = next.checkpoint;
+  return `${side === null ? 'checkpoint' : `on the ${side}`}\n${next.index} of ${next.of}`;
 }
 
 function Row({ label, of }: { readonly label: string; readonly of: Parameters<typeof LiveText>[0]['of'] }) {
