@@ -1,7 +1,7 @@
 /**
  * A scripted `navigator.serial` for page and worker alike: one USB device whose bytes, errors, plugging and unplugging come
- * as commands over a channel. `installFakeSerial` is self-contained, so that its source can be put in front of a worker's
- * script (fake-serial-script.ts); nothing from outside may be used within it.
+ * as commands over a channel. This file imports nothing, so that its source can be put in front of a worker's script
+ * (fake-serial-script.ts).
  */
 
 export type FakeSerialCommand =
@@ -36,95 +36,113 @@ export interface FakeSerial extends EventTarget {
   requestPort(): Promise<FakePort>;
 }
 
-export function installFakeSerial(channel: FakeSerialChannel, memory: FakeSerialMemory): FakeSerial {
-  let plugged = true;
-  let taken = false;
+interface Device {
+  plugged: boolean;
+  taken: boolean;
+}
 
-  class Port extends EventTarget implements FakePort {
-    opened: { readonly baudRate: number; readonly bufferSize: number } | null = null;
-    #stream: ReadableStream<Uint8Array> | null = null;
-    #controller: ReadableStreamDefaultController<Uint8Array> | null = null;
-    #fatal = false;
+class ScriptedPort extends EventTarget implements FakePort {
+  opened: { readonly baudRate: number; readonly bufferSize: number } | null = null;
+  readonly #device: Device;
+  #stream: ReadableStream<Uint8Array> | null = null;
+  #controller: ReadableStreamDefaultController<Uint8Array> | null = null;
+  #fatal = false;
 
-    getInfo(): { usbVendorId: number; usbProductId: number } {
-      return { usbVendorId: 0x1209, usbProductId: 0x0001 };
-    }
+  constructor(device: Device) {
+    super();
+    this.#device = device;
+  }
 
-    async open({ baudRate, bufferSize = 255 }: { baudRate: number; bufferSize?: number }): Promise<void> {
-      if (this.opened !== null) throw new DOMException('The port is already open.', 'InvalidStateError');
-      if (!plugged || taken) throw new DOMException('Failed to open serial port.', 'NetworkError');
-      this.opened = { baudRate, bufferSize };
-      this.#fatal = false;
-    }
+  getInfo(): { usbVendorId: number; usbProductId: number } {
+    return { usbVendorId: 0x1209, usbProductId: 0x0001 };
+  }
 
-    /** As the specification has it: a new stream after each non-fatal error, null once closed or lost. */
-    get readable(): ReadableStream<Uint8Array> | null {
-      if (this.opened === null || this.#fatal) return null;
-      this.#stream ??= new ReadableStream<Uint8Array>(
-        {
-          start: (controller) => {
-            this.#controller = controller;
-          },
-          cancel: () => this.#drop(),
+  async open({ baudRate, bufferSize = 255 }: { baudRate: number; bufferSize?: number }): Promise<void> {
+    if (this.opened !== null) throw new DOMException('The port is already open.', 'InvalidStateError');
+    if (!this.#device.plugged || this.#device.taken) throw new DOMException('Failed to open serial port.', 'NetworkError');
+    this.opened = { baudRate, bufferSize };
+    this.#fatal = false;
+  }
+
+  /** As the specification has it: a new stream after each non-fatal error, null once closed or lost. */
+  get readable(): ReadableStream<Uint8Array> | null {
+    if (this.opened === null || this.#fatal) return null;
+    this.#stream ??= new ReadableStream<Uint8Array>(
+      {
+        start: (controller) => {
+          this.#controller = controller;
         },
-        new ByteLengthQueuingStrategy({ highWaterMark: this.opened.bufferSize }),
-      );
-      return this.#stream;
-    }
-
-    async close(): Promise<void> {
-      if (this.#stream?.locked === true) throw new TypeError('Cannot close a locked stream.');
-      this.opened = null;
-      this.#drop();
-    }
-
-    take(bytes: Uint8Array): void {
-      // Bytes that nobody takes up are lost, as they are with a device.
-      if (this.readable === null || this.#controller === null) return;
-      if ((this.#controller.desiredSize ?? 0) < bytes.length) this.fail('BufferOverrunError');
-      else this.#controller.enqueue(bytes);
-    }
-
-    fail(name: string): void {
-      if (this.readable === null) return;
-      const controller = this.#controller;
-      this.#drop();
-      if (name === 'NetworkError') this.#fatal = true;
-      controller?.error(new DOMException(`The device reported ${name}.`, name));
-    }
-
-    #drop(): void {
-      this.#stream = null;
-      this.#controller = null;
-    }
+        cancel: () => this.#drop(),
+      },
+      new ByteLengthQueuingStrategy({ highWaterMark: this.opened.bufferSize }),
+    );
+    return this.#stream;
   }
 
-  class Serial extends EventTarget implements FakeSerial {
-    async getPorts(): Promise<FakePort[]> {
-      return plugged && memory.get() ? [port] : [];
-    }
-
-    async requestPort(): Promise<FakePort> {
-      if (!plugged) throw new DOMException('No port selected by the user.', 'NotFoundError');
-      memory.grant();
-      return port;
-    }
+  async close(): Promise<void> {
+    if (this.#stream?.locked === true) throw new TypeError('Cannot close a locked stream.');
+    this.opened = null;
+    this.#drop();
   }
 
-  const port = new Port();
-  const serial = new Serial();
+  /** Bytes that nobody takes up are lost, as they are with a device. */
+  take(bytes: Uint8Array): void {
+    if (this.readable === null || this.#controller === null) return;
+    if ((this.#controller.desiredSize ?? 0) < bytes.length) this.fail('BufferOverrunError');
+    else this.#controller.enqueue(bytes);
+  }
+
+  fail(name: string): void {
+    if (this.readable === null) return;
+    const controller = this.#controller;
+    this.#drop();
+    if (name === 'NetworkError') this.#fatal = true;
+    controller?.error(new DOMException(`The device reported ${name}.`, name));
+  }
+
+  #drop(): void {
+    this.#stream = null;
+    this.#controller = null;
+  }
+}
+
+class ScriptedSerial extends EventTarget implements FakeSerial {
+  readonly #device: Device;
+  readonly #port: ScriptedPort;
+  readonly #memory: FakeSerialMemory;
+
+  constructor(device: Device, port: ScriptedPort, memory: FakeSerialMemory) {
+    super();
+    this.#device = device;
+    this.#port = port;
+    this.#memory = memory;
+  }
+
+  async getPorts(): Promise<FakePort[]> {
+    return this.#device.plugged && this.#memory.get() ? [this.#port] : [];
+  }
+
+  async requestPort(): Promise<FakePort> {
+    if (!this.#device.plugged) throw new DOMException('No port selected by the user.', 'NotFoundError');
+    this.#memory.grant();
+    return this.#port;
+  }
+}
+
+export function installFakeSerial(channel: FakeSerialChannel, memory: FakeSerialMemory): FakeSerial {
+  const device: Device = { plugged: true, taken: false };
+  const port = new ScriptedPort(device);
+  const serial = new ScriptedSerial(device, port, memory);
+  const plug = (plugged: boolean): void => {
+    device.plugged = plugged;
+    if (!plugged) port.fail('NetworkError');
+    serial.dispatchEvent(new Event(plugged ? 'connect' : 'disconnect'));
+  };
   channel.listen((command) => {
     if (command.kind === 'bytes') port.take(command.bytes);
     else if (command.kind === 'error') port.fail(command.name);
-    else if (command.kind === 'taken') taken = command.taken;
-    else if (command.kind === 'plug') {
-      plugged = true;
-      serial.dispatchEvent(new Event('connect'));
-    } else {
-      plugged = false;
-      port.fail('NetworkError');
-      serial.dispatchEvent(new Event('disconnect'));
-    }
+    else if (command.kind === 'taken') device.taken = command.taken;
+    else plug(command.kind === 'plug');
   });
   return serial;
 }

@@ -1,8 +1,11 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { createDrive, type DriveOptions } from '#shared/drive/drive-model.ts';
 import type { NewObservation } from '#shared/journal/observation.ts';
 import { BASE_PACK, SHORT_PACK } from '#tests/unit/drive/base-pack.ts';
 import { type OfType, ofType } from '#tests/unit/sensor/reading.ts';
+
+/** Whole drives are many steps; a busy machine needs its time. */
+vi.setConfig({ testTimeout: 60_000 });
 
 const RELEASE = 5e6;
 const WHOLE_RUN = 2600e6;
@@ -97,12 +100,12 @@ describe('drive model', () => {
   it('reports whole pulses with the instant of the newest, by a box clock that wraps', () => {
     const { model, observations } = drive(5, {}, 200e6);
     const pulses = ofType(observations, 'pulse.v1');
-    for (const [i, to] of pulses.slice(1).entries()) {
-      const from = pulses[i] ?? expect.fail();
-      expect(to.at).toBeGreaterThan(from.at);
-      expect(turned(from, to)).toBeLessThan(20);
-      expect(Math.abs(((to.boxUs - from.boxUs + WRAP) % WRAP) - (to.at - from.at))).toBeLessThan(200);
-    }
+    const odd = pulses.slice(1).filter((to, i) => {
+      const from = pulses[i] ?? to;
+      const boxStep = (to.boxUs - from.boxUs + WRAP) % WRAP;
+      return !(to.at > from.at && turned(from, to) < 20 && Math.abs(boxStep - (to.at - from.at)) < 200);
+    });
+    expect(odd).toEqual([]);
     const moving = pulses.filter((p) => p.at > 100e6 && p.at < 101e6);
     expect(moving.length).toBeGreaterThanOrEqual(48);
     // Between two edges of the wheel lie whole pulses: distance by count is exact at each, not a pulse too short.

@@ -3,7 +3,7 @@ import type { NewObservation, Observation } from '#shared/journal/observation.ts
 import { begin, type RunState, readout, step } from '#shared/pace/run.ts';
 import { createSentenceReader, type SentenceReader } from '#shared/sensor/sentence-reader.ts';
 import { micros } from '#shared/units.ts';
-import type { HighwayRun } from '#tests/e2e/support/highway-course.ts';
+import type { PlayedDrive, PlayedInstant } from '#tests/e2e/support/highway-drive.ts';
 import type { TimedText } from '#tests/e2e/support/timed-text.ts';
 import { bytesOf } from '#tests/unit/sensor/reading.ts';
 
@@ -33,44 +33,44 @@ export interface HighwayReplay {
 export interface HighwayInput {
   readonly pack: Pack;
   readonly arrived: readonly Arrived[];
-  /** Recording computer's time at which the stream, and the session clock, begin. */
-  readonly fromS: number;
-  readonly run: HighwayRun;
-  readonly taps: readonly { readonly checkpoint: string; readonly hostS: number }[];
+  readonly drive: PlayedDrive;
+  readonly taps: readonly PlayedInstant[];
 }
 
-export function replayHighway({ pack, arrived, fromS, run, taps }: HighwayInput): HighwayReplay {
+export function replayHighway({ pack, arrived, drive, taps }: HighwayInput): HighwayReplay {
   const state = begin(pack);
-  const sessionUs = (hostS: number): number => Math.round((hostS - fromS) * 1e6);
+  const micro = (ms: number): number => Math.round(ms * 1000);
   let seq = 0;
   const take = (o: NewObservation): void => step(state, { ...o, seq: seq++ } as Observation);
   // A clock check on the grid, as every start has.
-  const officialMs = run.releaseUtcMs - sessionUs(run.releaseHostS) / 1000;
-  take({ type: 'clock.v1', at: 0, source: 'exchange', officialMs, uncertaintyMs: 5 });
+  take({
+    type: 'clock.v1',
+    at: 0,
+    source: 'exchange',
+    officialMs: (pack.attempt.releaseMs ?? Number.NaN) - drive.releaseAfterMs,
+    uncertaintyMs: 5,
+  });
 
   const errors: { checkpoint: string; printed: number; error: number }[] = [];
-  const look = (checkpoint: string, at: number): void => {
+  const look = ({ checkpoint, afterMs }: PlayedInstant): void => {
     const row = pack.courseBook.checkpoints.find((c) => c.id === checkpoint);
     const printed = Number(row?.at.text) * 1000;
-    errors.push({ checkpoint, printed, error: readout(state, micros(at)).distance - printed });
+    errors.push({ checkpoint, printed, error: readout(state, micros(micro(afterMs))).distance - printed });
   };
-  const due = [
-    ...run.passings.map((p) => ({ hostS: p.hostS, act: () => look(p.checkpoint, sessionUs(p.hostS)) })),
-    ...taps.map((t) => ({
-      hostS: t.hostS,
-      act: () => take({ type: 'tap.v1', at: sessionUs(t.hostS), input: 'glass', checkpoint: t.checkpoint }),
-    })),
-  ].sort((a, b) => a.hostS - b.hostS);
+  const touch = ({ checkpoint, afterMs }: PlayedInstant): void => take({ type: 'tap.v1', at: micro(afterMs), input: 'glass', checkpoint });
+  const due = [...drive.passings.map((p) => ({ ...p, act: look })), ...taps.map((t) => ({ ...t, act: touch }))].sort(
+    (a, b) => a.afterMs - b.afterMs,
+  );
 
   for (const { arrivalUs, observation } of arrived) {
-    for (let next = due[0]; next !== undefined && sessionUs(next.hostS) <= arrivalUs; next = due[0]) {
+    for (let next = due[0]; next !== undefined && micro(next.afterMs) <= arrivalUs; next = due[0]) {
       due.shift();
-      next.act();
+      next.act(next);
     }
     take(observation);
   }
   const { finish } = readout(state, micros(arrived.at(-1)?.arrivalUs ?? 0));
-  const line = run.passings.find((p) => p.checkpoint === 'finish');
+  const line = drive.passings.find((p) => p.checkpoint === 'finish');
   return {
     state,
     errors,
@@ -78,7 +78,7 @@ export function replayHighway({ pack, arrived, fromS, run, taps }: HighwayInput)
       shown: finish?.elapsed ?? Number.NaN,
       timeError: finish?.timeError ?? Number.NaN,
       sigma: finish?.sigma ?? Number.NaN,
-      truth: (line?.hostS ?? Number.NaN) - run.releaseHostS,
+      truth: ((line?.afterMs ?? Number.NaN) - drive.releaseAfterMs) / 1000,
     },
   };
 }
