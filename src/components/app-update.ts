@@ -1,4 +1,4 @@
-import { Workbox } from 'workbox-window';
+import type { Workbox } from 'workbox-window';
 
 /**
  * A newer Evenline waits until a person asks for it, and never while a run is open in any window of this device.
@@ -74,11 +74,17 @@ export function registerServiceWorker(): void {
     void workbox?.update();
   });
   if (!import.meta.env.PROD || !isSecureContext) return;
-  workbox = new Workbox('/sw.js');
+  // Refused registration (private window, storage off) leaves a page that works online; the grid check reports storage.
+  register().catch((reason: unknown) => console.warn('service worker not registered', reason));
+}
+
+/** Fetched after the page's own parts: nothing on the first screen waits for it. */
+async function register(): Promise<void> {
+  const parts = await import('workbox-window');
+  workbox = new parts.Workbox('/sw.js');
   workbox.addEventListener('waiting', () => become('waiting'));
   workbox.addEventListener('controlling', (event) => {
     if (event.isUpdate === true && runsOpenHere === 0) location.reload();
   });
-  // Refused registration (private window, storage off) leaves a page that works online; the grid check reports storage.
-  workbox.register().catch((reason: unknown) => console.warn('service worker not registered', reason));
+  await workbox.register();
 }

@@ -5,7 +5,6 @@ import type { RunSession } from '#src/run/run-session-contract.ts';
 import { createGeolocationSource } from '#src/sensors/geolocation-source.ts';
 import type { SensorFailure, SensorSource } from '#src/sensors/sensor-source.ts';
 import { createSerialSource } from '#src/sensors/serial-source.ts';
-import { createPracticeSource } from './simulator.ts';
 
 export type SourceName = SensorSource['name'];
 
@@ -47,6 +46,7 @@ async function createSource(session: RunSession, name: SourceName): Promise<Sens
     case 'geolocation':
       return createGeolocationSource({ clock });
     case 'simulator':
-      return createPracticeSource(session);
+      // Practice alone needs a drive and a replay; a run in the car does not wait for them. Precached like everything else.
+      return (await import('./simulator.ts')).createPracticeSource(session);
   }
 }
