@@ -1,5 +1,5 @@
-import type { Plan } from '#shared/pace/plan.ts';
-import { makePlan } from '#shared/pace/plan.ts';
+import { rememberBand } from '#shared/pace/band.ts';
+import { makePlan, type Plan, piecesFrom } from '#shared/pace/plan.ts';
 import type { HoldMemory, RunState } from '#shared/pace/run-state.ts';
 import { type Situation, situationAt } from '#shared/pace/situation.ts';
 import { metresPerSecondPer, type SpeedUnit } from '#shared/units.ts';
@@ -41,21 +41,25 @@ export function isAdviceDue(state: RunState): boolean {
   return advisedAt === null || state.now - advisedAt >= ADVISE_US;
 }
 
-/** Part of the fold: brings the shown hold speed up to date. */
+/** Part of the fold: brings the shown hold speed, and what the band remembers, up to date. */
 export function advise(state: RunState): void {
   const { shown, now } = state;
   shown.advisedAt = now;
   const s = situationAt(state, now);
+  rememberBand(state, s);
   if (s.phase !== 'running' && s.phase !== 'countdown' && s.phase !== 'grid' && s.phase !== 'held') shown.hold = null;
   else if (state.acts.escort || s.distance >= s.model.finish) shown.hold = null;
   else shown.hold = nextHold(shown.hold, freshHold(state, s), s);
 }
 
+function planFrom({ model, distance, speed }: Situation, t: number): Plan {
+  const pieces = piecesFrom(model.pieces, distance);
+  return makePlan({ ...model.request, from: { x: distance, v: Math.max(0, speed ?? 0), t } }, pieces);
+}
+
 function freshHold(state: RunState, s: Situation): HoldMemory {
   const waiting = s.phase !== 'running' || s.elapsed === null;
-  const plan: Plan = waiting
-    ? s.model.plan
-    : makePlan({ ...s.model.request, from: { x: s.distance, v: Math.max(0, s.speed ?? 0), t: s.elapsed } });
+  const plan: Plan = waiting ? s.model.plan : planFrom(s, s.elapsed);
   let stretch = plan.stretchAt(s.distance);
   const { brakingFrom } = stretch;
   const ahead = s.distance + LEAD_S * (s.speed ?? 0);

@@ -1,7 +1,8 @@
 import { printedFineness, readPrintedMetres, readPrintedSpeed } from '#shared/course/convert.ts';
 import type { Checkpoint, PrintedDistance, PrintedSpeed, Zone } from '#shared/course/course-book.ts';
 import type { Pack } from '#shared/course/pack.ts';
-import { makePlan, type Plan, type PlanRequest } from '#shared/pace/plan.ts';
+import { makePlan, type Plan, type PlanRequest, planPieces } from '#shared/pace/plan.ts';
+import type { Piece } from '#shared/pace/plan-solver.ts';
 import { surveySigma } from '#shared/pace/scale.ts';
 import { makeSchedule, type Schedule } from '#shared/pace/schedule.ts';
 
@@ -48,6 +49,8 @@ export interface CourseModel {
   readonly floor: number | null;
   readonly plan: Plan;
   readonly request: Omit<PlanRequest, 'from'>;
+  /** The whole course cut at every limit, from the place on the grid. */
+  readonly pieces: readonly Piece[];
 }
 
 export const makeChanges = (pack: Pack): Changes => ({
@@ -78,6 +81,7 @@ export function buildCourseModel(pack: Pack, changes: Changes): CourseModel {
   const zones = buildZones(pack, changes);
   const mode = schedule.sections.length > 1 ? 'sections' : 'finish';
   const request = { schedule, zones, top, floor, acceleration: plan.acceleration, deceleration: plan.deceleration, mode } as const;
+  const from = planStart(pack, changes, startPlace.d);
   return {
     version: changes.version,
     start: startPlace.d,
@@ -90,8 +94,9 @@ export function buildCourseModel(pack: Pack, changes: Changes): CourseModel {
     cap,
     top,
     floor,
-    plan: makePlan({ ...request, from: planStart(pack, changes, startPlace.d) }),
+    plan: makePlan({ ...request, from }),
     request,
+    pieces: planPieces({ ...request, from: { ...from, x: Math.min(from.x, startPlace.d - Math.max(0, changes.stagedBehindM)) } }),
   };
 }
 

@@ -68,10 +68,15 @@ export function watchLaunch(watch: LaunchWatch, { at, r, w, g, stillAt, pulseMet
     return 'none';
   }
   if (Math.abs(r - cell.r) <= STILL_M) return 'none';
-  watch.cell = { at, r, w, g };
+  const [restedAt, restR, restW, restG] = [cell.at, cell.r, cell.w, cell.g];
+  cell.at = at;
+  cell.r = r;
+  cell.w = w;
+  cell.g = g;
   // either records said so, or a box that only speaks when the wheel turns was silent and then a step or two further
-  if (stillAt - cell.at >= STILL_US || (at - cell.at >= STILL_US && Math.abs(r - cell.r) <= STEP_M)) {
-    watch.current = { r: cell.r, w: cell.w, g: cell.g, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - cell.r] };
+  const rested = stillAt - restedAt >= STILL_US || (at - restedAt >= STILL_US && Math.abs(r - restR) <= STEP_M);
+  if (rested) {
+    watch.current = { r: restR, w: restW, g: restG, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - restR] };
     return 'moved';
   }
   if (current === null) return 'none';

@@ -99,11 +99,21 @@ const carOf = (request: PlanRequest): CarLimits => ({
   floor: Math.min(request.floor ?? 0, request.top ?? TOP_WITHOUT_CAP),
 });
 
-/** Solves from the present state to a finish on zero. Total: an impossible wish gives the nearest possible profile and `by`. */
-export function makePlan(request: PlanRequest): Plan {
+/** What is left of pieces from x on: passed ones dropped, the first cut. Same as cutting the course anew, and much cheaper. */
+export function piecesFrom(pieces: readonly Piece[], x: number): readonly Piece[] {
+  const first = pieces.findIndex((piece) => piece.to > x);
+  if (first < 0) return [];
+  const piece = pieces[first] as Piece;
+  return piece.from >= x ? pieces.slice(first) : [{ ...piece, from: x }, ...pieces.slice(first + 1)];
+}
+
+/**
+ * Solves from the present state to a finish on zero. Total: an impossible wish gives the nearest possible profile and `by`.
+ * `pieces` may be given where they were cut before.
+ */
+export function makePlan(request: PlanRequest, pieces: readonly Piece[] = planPieces(request)): Plan {
   const { schedule, from } = request;
   const car = carOf(request);
-  const pieces = planPieces(request);
   if (pieces.length === 0) return finishedPlan(request);
   const solution = solve(pieces, car, from.v, schedule.targetTime - from.t);
   const profile = profileOf(pieces, car, from, solution.evaluation);

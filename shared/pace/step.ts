@@ -1,6 +1,5 @@
 import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
 import { advise, isAdviceDue } from '#shared/pace/advice.ts';
-import { rememberBand } from '#shared/pace/band.ts';
 import { offerClock, takeClockPair, takeEpoch } from '#shared/pace/clock.ts';
 import { derive } from '#shared/pace/derive.ts';
 import { rolledThrough, startGate } from '#shared/pace/derive-start.ts';
@@ -8,7 +7,6 @@ import { distanceOf } from '#shared/pace/distance.ts';
 import { changeCourse } from '#shared/pace/grid-changes.ts';
 import { type OdometerChange, takeGnss, takePulse } from '#shared/pace/odometer.ts';
 import { modelOf, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
-import { situationAt } from '#shared/pace/situation.ts';
 import { soundness } from '#shared/pace/sound.ts';
 import { addTap, pressButton, rewriteTaps, settleTaps } from '#shared/pace/taps.ts';
 import { never } from '#shared/result.ts';
@@ -144,7 +142,6 @@ function takeChange(state: RunState, change: OdometerChange): boolean {
   if (change.rewritten !== null) rewriteTaps(state, change.rewritten);
   const stale = change.rewritten !== null || change.launch !== 'none';
   if (!change.traced) return stale;
-  rememberBand(state, situationAt(state, state.now));
   return stale || passesNext(state) || rollsThrough(state);
 }
 
