@@ -45,13 +45,13 @@ export function createAuthSessions(db: Connection['db'], now: () => number): Aut
     },
     async check(token) {
       const id = sha256Hex(token);
-      const { session } = await lucia.validateSession(id);
-      if (!session) return null;
-      if (session.absoluteExpiresAt.getTime() <= now()) {
+      const { session: authSession } = await lucia.validateSession(id);
+      if (!authSession) return null;
+      if (authSession.absoluteExpiresAt.getTime() <= now()) {
         await lucia.invalidateSession(id);
         return null;
       }
-      return { userId: session.userId };
+      return { userId: authSession.userId };
     },
     end: (token) => lucia.invalidateSession(sha256Hex(token)),
     endAll: (userId) => lucia.invalidateUserSessions(userId),
