@@ -1,5 +1,12 @@
 import type { Pack } from '#shared/course/pack.ts';
-import { type HighwayCourse, highwayCourse, highwayPack, highwayRun, highwayTaps } from '#tests/e2e/support/highway-course.ts';
+import {
+  type HighwayCourse,
+  type HighwayRun,
+  highwayCourse,
+  highwayPack,
+  highwayRun,
+  highwayTaps,
+} from '#tests/e2e/support/highway-course.ts';
 import { HIGHWAY_DRIVES, type HighwayRecording, readHighway } from '#tests/e2e/support/highway-recording.ts';
 import { highwayTrack } from '#tests/e2e/support/highway-track.ts';
 import { recordingToSentences } from '#tests/e2e/support/recording-to-sentences.ts';
@@ -55,11 +62,17 @@ export function playedDrives(): readonly [PlayedDrive, PlayedDrive] {
   const run = highwayRun(first, survey, course, PARTS[0].restUtcS);
   const count = (id: string): number => countAt(first, run.passings.find((p) => p.checkpoint === id)?.hostS ?? Number.NaN);
   const mmPerPulse = (CALIBRATED.metres * 1000) / (count(CALIBRATED.to) - count(CALIBRATED.from));
-  return [played(first, PARTS[0], course, mmPerPulse), played(second, PARTS[1], course, mmPerPulse)];
+  const secondRun = highwayRun(second, highwayTrack(second), course, PARTS[1].restUtcS);
+  return [played(first, PARTS[0], course, run, mmPerPulse), played(second, PARTS[1], course, secondRun, mmPerPulse)];
 }
 
-function played(recording: HighwayRecording, part: (typeof PARTS)[number], course: HighwayCourse, mmPerPulse: number): PlayedDrive {
-  const run = highwayRun(recording, highwayTrack(recording), course, part.restUtcS);
+function played(
+  recording: HighwayRecording,
+  part: (typeof PARTS)[number],
+  course: HighwayCourse,
+  run: HighwayRun,
+  mmPerPulse: number,
+): PlayedDrive {
   const afterMs = (hostS: number): number => (hostS - part.fromS) * 1000;
   const instant = (p: { checkpoint: string; hostS: number }): PlayedInstant => ({ checkpoint: p.checkpoint, afterMs: afterMs(p.hostS) });
   return {

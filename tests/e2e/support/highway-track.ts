@@ -97,8 +97,11 @@ export function passingTime(track: HighwayTrack, gate: { lat: number; lon: numbe
     const { s12 = 0, azi1 = 0 } = WGS84.Inverse(gate.lat, gate.lon, p.lat, p.lon);
     return { ahead: s12 * Math.cos(((azi1 - gate.azimuth) * Math.PI) / 180), off: s12 };
   };
+  // A thousandth of a degree is 111 m of latitude: far more than `nearM`, and quicker than a geodesic.
+  const isFar = (p: TrackPoint): boolean => Math.abs(p.lat - gate.lat) > 0.001 || Math.abs(p.lon - gate.lon) > 0.002;
   for (let i = 1; i < track.points.length; i += 1) {
     const [before, after] = [track.points[i - 1] as TrackPoint, track.points[i] as TrackPoint];
+    if (isFar(after)) continue;
     const b = along(after);
     if (b.off > nearM || b.ahead < 0) continue;
     const a = along(before);

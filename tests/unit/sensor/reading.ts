@@ -2,7 +2,7 @@ import type { NewObservation } from '#shared/journal/observation.ts';
 import { createSentenceReader, type SentenceReader, type SentenceReaderOptions } from '#shared/sensor/sentence-reader.ts';
 
 /** Text of a serial line to bytes, one byte a character. */
-export const bytesOf = (text: string): Uint8Array => Uint8Array.from(text, (c) => c.charCodeAt(0));
+export const bytesOf = (text: string): Uint8Array => Buffer.from(text, 'latin1');
 
 export type OfType<T extends NewObservation['type']> = Extract<NewObservation, { type: T }>;
 export const ofType = <T extends NewObservation['type']>(list: readonly NewObservation[], type: T): OfType<T>[] =>
