@@ -44,7 +44,7 @@ function Events({ data }: { readonly data: EventsResponse }) {
 
 function Attempts({ event }: { readonly event: EventData }) {
   const { team } = useSignedIn();
-  const [search] = useSearchParams();
+  const [search, setSearch] = useSearchParams();
   const [editing, setEditing] = useState<string | null>(null);
   const packs = usePacks();
   const packOf = (attemptId: string) => packs?.find((pack) => pack.attemptId === attemptId) ?? null;
@@ -52,16 +52,16 @@ function Attempts({ event }: { readonly event: EventData }) {
   const placed = attempts.find(({ attempt }) => attempt.id === search.get('attempt')) ?? attemptToPrepare([event], team.id);
   if (placed === null) return <EmptyState>Your entries to this event will stand here, with their releases and packs.</EmptyState>;
   const { attempt } = placed;
+  // A new release may change which attempt comes next; the one in hand stays.
+  const edit = (on: boolean) => {
+    setSearch({ attempt: attempt.id }, { replace: true });
+    setEditing(on ? attempt.id : null);
+  };
   return (
     <>
-      <NextThingField placed={placed} pack={packOf(attempt.id)} editRelease={() => setEditing(attempt.id)} />
+      <NextThingField placed={placed} pack={packOf(attempt.id)} editRelease={() => edit(true)} />
       <div className="grid gap-x-12 lg:grid-cols-[2fr_1fr]">
-        <AttemptSection
-          placed={placed}
-          pack={packOf(attempt.id)}
-          editing={editing === attempt.id}
-          setEditing={(on) => setEditing(on ? attempt.id : null)}
-        />
+        <AttemptSection placed={placed} pack={packOf(attempt.id)} editing={editing === attempt.id} setEditing={edit} />
         <aside aria-labelledby="event-cautions" className="mb-10">
           <h2 id="event-cautions" className="mb-2 text-xl font-bold">
             Cautions

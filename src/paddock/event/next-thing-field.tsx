@@ -35,7 +35,7 @@ export function NextThingField({
         ))}
       </ul>
       <p className="max-w-prose">{next.why}</p>
-      <Act next={next} placed={placed} editRelease={editRelease} />
+      <Act next={next} placed={placed} packHere={pack !== null} editRelease={editRelease} />
     </section>
   );
 }
@@ -43,20 +43,23 @@ export function NextThingField({
 function Act({
   next,
   placed,
+  packHere,
   editRelease,
 }: {
   readonly next: NextThing;
   readonly placed: PlacedAttempt;
+  readonly packHere: boolean;
   readonly editRelease: () => void;
 }): ReactNode {
   const { attempt, entry } = placed;
   switch (next.act) {
     case 'set the release':
       return entry.mayPrepare ? (
-        <div>
+        <div className="flex flex-wrap gap-3">
           <Button kind="main" onClick={editRelease}>
             set the release
           </Button>
+          {packHere || attempt.packFault !== null ? null : <StorePackButton attemptId={attempt.id} again={false} kind="plain" />}
         </div>
       ) : (
         <p>The manager or the navigator sets it.</p>

@@ -76,7 +76,7 @@ export function nextThing({ event, entry, attempt }: PlacedAttempt, pack: PackOn
     { words: `set-up ${entry.car.wheelSetup}`, done: true },
     { words: `${cautions} cautions`, done: null },
   ];
-  return { readiness, ...chooseAct(attempt, pack) };
+  return { readiness, ...chooseAct(attempt, pack, event.practice) };
 }
 
 export function isStale(attempt: AttemptData, pack: PackOnDevice): boolean {
@@ -89,10 +89,11 @@ function packWords(attempt: AttemptData, pack: PackOnDevice | null, timeZone: st
   return `pack stored ${formatClock(pack.storedMs, timeZone).slice(0, 5)}`;
 }
 
-function chooseAct(attempt: AttemptData, pack: PackOnDevice | null): { act: NextAct; why: string } {
+/** On a practice grid any release will do; it is typed there. */
+function chooseAct(attempt: AttemptData, pack: PackOnDevice | null, practice: boolean): { act: NextAct; why: string } {
   if (isDone(attempt))
     return { act: 'read the run sheet', why: 'This attempt has been driven. Its run sheet tells what happened, leg by leg.' };
-  if (attempt.releaseMs === null)
+  if (attempt.releaseMs === null && !practice)
     return { act: 'set the release', why: 'The start order gives the release; it can still be changed on the grid.' };
   if (attempt.packFault !== null) return { act: 'mend the pack', why: attempt.packFault };
   if (pack === null) return { act: 'store the pack', why: 'With the pack on this tablet the cockpit needs no connection.' };
