@@ -22,8 +22,6 @@ export interface Odometer {
   wheelKnot: { at: number; total: number };
   /** Last record of the source that showed no movement since the last knot. */
   stillAt: number;
-  /** Speed of the wheel, counts per second over the last knots. */
-  rate: number;
   /** Where the wheel was left for GNSS: gMetres is GNSS's own reading there. Null when GNSS has been the source from the start. */
   bridge: { at: number; w: number; g: number; total: number } | null;
   /** GNSS's own reading less `g`, while GNSS is the source. */
@@ -39,12 +37,11 @@ export interface Odometer {
 }
 
 export interface OdometerChange {
-  /** The last knot's values changed. */
-  moved: boolean;
-  traced: boolean;
-  launch: LaunchEvent;
+  /** The trace grew. */
+  readonly traced: boolean;
+  readonly launch: LaunchEvent;
   /** Part of the past was told anew (bridged metres became counts). */
-  rewritten: { from: number; w: number; g: number; share: number } | null;
+  readonly rewritten: { readonly from: number; readonly w: number; readonly g: number; readonly share: number } | null;
 }
 
 export const makeOdometer = (): Odometer => ({
@@ -57,7 +54,6 @@ export const makeOdometer = (): Odometer => ({
   g: 0,
   wheelKnot: { at: 0, total: 0 },
   stillAt: 0,
-  rate: 0,
   bridge: null,
   gnssZero: 0,
   losses: [],
@@ -78,7 +74,8 @@ const RESTED_US = 700_000;
 /** Speed is read over at least this long. */
 const RATE_US = 250_000;
 
-const UNCHANGED: OdometerChange = { moved: false, traced: false, launch: 'none', rewritten: null };
+/** Nothing moved, or moved as it does a hundred times a second: one value for all, never written to. */
+const UNREMARKABLE: OdometerChange = { traced: false, launch: 'none', rewritten: null };
 
 function knot(
   o: Odometer,
@@ -99,21 +96,21 @@ function knot(
     pulseMetres: o.mode === 'wheel' ? metresPerPulse : 0,
   });
   const traced = addKnot(o.track, at, w, g, isLaunching(o.launches) || launch !== 'none');
-  return { moved: true, traced, launch, rewritten };
+  return traced || launch !== 'none' || rewritten !== null ? { traced, launch, rewritten } : UNREMARKABLE;
 }
 
 /** Takes a record of a wheel channel; only the measuring one counts. */
 export function takePulse(o: Odometer, pulse: PulseV1, channel: number, aids: Aids, metresPerPulse: number): OdometerChange {
-  if (!aids.wheel) return UNCHANGED;
+  if (!aids.wheel) return UNREMARKABLE;
   if (pulse.channel !== channel) {
     o.otherRecords++;
-    return UNCHANGED;
+    return UNREMARKABLE;
   }
   const { wheel } = o;
   const before = wheel.at;
   const verdict = takeRecord(wheel, pulse, metresPerPulse);
   if (verdict === 'same' && o.mode === 'wheel') o.stillAt = wheel.at;
-  if (verdict === 'held' || verdict === 'stale' || verdict === 'same') return UNCHANGED;
+  if (verdict === 'held' || verdict === 'stale' || verdict === 'same') return UNREMARKABLE;
   o.usedWheel = true;
   if (o.mode === 'gnss') return handBack(o, verdict, metresPerPulse);
   if (verdict === 'restarted') return restart(o, before, metresPerPulse);
@@ -127,9 +124,7 @@ export function takePulse(o: Odometer, pulse: PulseV1, channel: number, aids: Ai
   if (Math.abs(pulses) > 1 || o.stillAt - o.wheelKnot.at > RESTED_US) keepStill(o);
   o.wheelKnot.at = wheel.at;
   o.wheelKnot.total = wheel.total;
-  const change = knot(o, wheel.at, o.w + pulses, o.g, metresPerPulse);
-  o.rate = rateNow(o.track);
-  return change;
+  return knot(o, wheel.at, o.w + pulses, o.g, metresPerPulse);
 }
 
 /** The end of a standstill becomes a knot, or a straight line would have the car creep all the while. */
@@ -158,7 +153,7 @@ function restart(o: Odometer, before: number, metresPerPulse: number): OdometerC
   const covered = gnss.recent.length > 1 && (gnss.recent[0] as { at: number }).at <= from && g0 !== null && g1 !== null;
   const metres = covered ? Math.max(0, g1 - g0) : 0;
   if (covered) noteGnss(o);
-  else o.losses.push({ at: wheel.at, sigma: Math.abs(o.rate) * metresPerPulse * gap });
+  else o.losses.push({ at: wheel.at, sigma: Math.abs(rateNow(o.track)) * metresPerPulse * gap });
   const w = covered ? o.w : o.w + (wheel.total - o.wheelKnot.total);
   o.wheelKnot = { at: wheel.at, total: wheel.total };
   return knot(o, wheel.at, w, o.g + metres, metresPerPulse);
@@ -183,9 +178,7 @@ function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', metresP
   bridgeToCounts(track, bridge, wheel.at, w, endG);
   const share = endG > bridge.g ? counts / (endG - bridge.g) : 0;
   rewriteLaunches(o.launches, bridge.at, bridge.w, bridge.g, share);
-  const change = knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
-  o.rate = rateNow(track);
-  return change;
+  return knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
 }
 
 const gnssAtRecord = (o: Odometer, at: number, fallback: number): number => {
@@ -201,20 +194,20 @@ function noteGnss(o: Odometer): void {
 /** Takes a fix. GNSS carries on from the instant at which the wheel was last heard. */
 export function takeGnss(o: Odometer, fix: FixV1, aids: Aids, now: number, metresPerPulse: number): OdometerChange {
   const { gnss } = o;
-  if (!takeFix(gnss, fix, aids, now)) return UNCHANGED;
+  if (!takeFix(gnss, fix, aids, now)) return UNREMARKABLE;
   if (o.mode === 'none') {
     o.mode = 'gnss';
     o.gnssZero = gnss.metres - o.g;
     return knot(o, fix.at, o.w, o.g, metresPerPulse);
   }
   if (o.mode === 'wheel') {
-    if (!wheelFellSilent(o, fix.at)) return UNCHANGED;
+    if (!wheelFellSilent(o, fix.at)) return UNREMARKABLE;
     beginBridge(o);
   }
   const lastAt = o.track.recent.at[o.track.recent.at.length - 1] ?? fix.at;
   const g = gnss.metres - o.gnssZero;
   if (fix.at >= lastAt && g <= o.g) o.stillAt = fix.at;
-  if (fix.at < lastAt || g <= o.g) return UNCHANGED;
+  if (fix.at < lastAt || g <= o.g) return UNREMARKABLE;
   noteGnss(o);
   keepStill(o);
   return knot(o, fix.at, o.w, g, metresPerPulse);
@@ -270,10 +263,11 @@ function gnssNow(o: Odometer, at: number, age: number): Now {
 }
 
 function wheelNow(o: Odometer, at: number, age: number, metresPerPulse: number): Now {
-  const { rate, wheel, g, w } = o;
+  const { wheel, g, w } = o;
+  const rate = rateNow(o.track);
   const speed = rate * metresPerPulse;
   const steps = (rate * age) / 1e6;
-  if (at - wheel.at > FRESH_US) return quietWheel(o, at, age, speed);
+  if (at - wheel.at > FRESH_US) return quietWheel(o, at, age, rate, speed);
   // alive and unchanged: the next pulse has not come, so the car is less than one pulse further
   if (wheel.at > o.wheelKnot.at) {
     const unchanged = (wheel.at - o.wheelKnot.at) / 1e6;
@@ -285,8 +279,8 @@ function wheelNow(o: Odometer, at: number, age: number, metresPerPulse: number):
 }
 
 /** No record for a second: a box that only speaks when the wheel turns is standing still, if it was slow or GNSS says so. */
-function quietWheel(o: Odometer, at: number, age: number, speed: number): Now {
-  const { g, w, rate, wheel, wheelKnot } = o;
+function quietWheel(o: Odometer, at: number, age: number, rate: number, speed: number): Now {
+  const { g, w, wheel, wheelKnot } = o;
   const standing: Now = { w: w + clampStep((rate * age) / 1e6), g, speed: 0, source: 'wheel' };
   if (Math.abs(speed) <= CARRY_SPEED || wheel.at - wheelKnot.at > FRESH_US) return standing;
   const fix = o.gnss.recent[o.gnss.recent.length - 1];

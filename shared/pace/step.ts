@@ -138,7 +138,6 @@ function isReleased(state: RunState): boolean {
 
 /** After a knot: does anything derived change? Places passed by distance, the start, taps in a rewritten stretch. */
 function takeChange(state: RunState, change: OdometerChange): boolean {
-  if (!change.moved) return false;
   if (change.rewritten !== null) rewriteTaps(state, change.rewritten);
   const stale = change.rewritten !== null || change.launch !== 'none';
   if (!change.traced) return stale;
