@@ -1,10 +1,13 @@
 import fc from 'fast-check';
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import type { NewObservation } from '#shared/journal/observation.ts';
 import { judgeSentence } from '#shared/sensor/checksum.ts';
 import { createSentenceReader } from '#shared/sensor/sentence-reader.ts';
 import { writeButton, writeGga, writePps, writeRmc, writeVtg, writeWheel, writeZda } from '#shared/sensor/sentence-writer.ts';
 import { bytesOf } from '#tests/unit/sensor/reading.ts';
+
+/** Many lines on a busy machine. */
+vi.setConfig({ testTimeout: 30_000 });
 
 const uint32 = fc.integer({ min: 0, max: 2 ** 32 - 1 });
 const receiver = fc.record({

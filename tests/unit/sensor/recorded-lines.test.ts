@@ -1,12 +1,15 @@
 import { readFileSync } from 'node:fs';
 import geographiclib from 'geographiclib-geodesic';
 import { parseNmeaSentence } from 'nmea-simple';
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { judgeSentence } from '#shared/sensor/checksum.ts';
 import { decodeNmea } from '#shared/sensor/nmea-sentence.ts';
 import { createSentenceReader } from '#shared/sensor/sentence-reader.ts';
 import { hasRecorded, recorded, recordedNote } from '#tests/e2e/support/recorded-data.ts';
 import { bytesOf, type OfType, ofType } from '#tests/unit/sensor/reading.ts';
+
+/** Many lines on a busy machine. */
+vi.setConfig({ testTimeout: 30_000 });
 
 type Fix = OfType<'fix.v1'>;
 const { WGS84 } = geographiclib.Geodesic;
