@@ -12,15 +12,13 @@ const WORDS: Readonly<Record<SourceName, string>> = { serial: 'pulse box', geolo
 /** Which source this device used last, so that a reloaded page finds it again without a touch. */
 const KEPT = 'evenline.source';
 
-/** The sources that this run may use on this device: practice drives by the simulator, a class may forbid the rest. */
+/** The sources that this run may use on this device: a class may forbid some; practice has the simulator as well. */
 export function sourcesFor(header: Pick<RunHeader, 'practice' | 'pack'>): readonly { readonly name: SourceName; readonly words: string }[] {
   const { aids } = header.pack.raceClass;
   const names: SourceName[] = [];
   if (header.practice) names.push('simulator');
-  else {
-    if (canReadSerial() && (aids.wheel || aids.gnssSpeed || aids.gnssPosition)) names.push('serial');
-    if (canReadLocation() && (aids.gnssSpeed || aids.gnssPosition)) names.push('geolocation');
-  }
+  if (canReadSerial() && (aids.wheel || aids.gnssSpeed || aids.gnssPosition)) names.push('serial');
+  if (canReadLocation() && (aids.gnssSpeed || aids.gnssPosition)) names.push('geolocation');
   return names.map((name) => ({ name, words: WORDS[name] }));
 }
 
@@ -34,7 +32,7 @@ export async function attachSource(session: RunSession, name: SourceName, ask: b
 export async function attachAgain(session: RunSession): Promise<void> {
   if (session.role === 'reader') return;
   const kept = localStorage.getItem(KEPT);
-  const again = sourcesFor(session.header).find(({ name }) => session.header.practice || name === kept);
+  const again = sourcesFor(session.header).find(({ name }) => name === kept);
   if (again !== undefined) await attachSource(session, again.name, false);
 }
 

@@ -16,10 +16,17 @@ const CLOCK_AGE_S = 3600;
 /** Room for ten runs of an hour: less and no run should start here. */
 const ROOM_HOURS = 10;
 
+const CLOCK_WORDS: Readonly<Record<string, string>> = {
+  exchange: 'server',
+  nmea: 'receiver',
+  pps: 'receiver’s second',
+  tap: 'touch',
+};
+
 export function clockItem(official: Readout['official']): GridItem {
   if (official === null) return { ready: false, words: 'not checked against the official clock' };
   const ready = official.sigma <= CLOCK_SIGMA_S && official.age <= CLOCK_AGE_S && official.source !== 'wall';
-  const source = official.source === 'wall' ? 'only this tablet’s own clock' : `by ${official.source}`;
+  const source = official.source === 'wall' ? 'only this tablet’s own clock' : `by ${CLOCK_WORDS[official.source] ?? official.source}`;
   return { ready, words: `${source}, ±${Math.ceil(official.sigma * 2000)} ms, ${formatDuration(Math.floor(official.age))} ago` };
 }
 

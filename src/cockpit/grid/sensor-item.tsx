@@ -16,7 +16,9 @@ export function SensorItem() {
     setTrouble(attached.ok ? null : attached.error.message);
   };
   const sources = sourcesFor(session.header);
-  const acts = item.ready || session.role === 'reader' ? [] : sources.map(({ name, words }) => ({ words, run: () => void connect(name) }));
+  // practice begins with the simulator, and may go over to what the car really has
+  const offered = session.header.practice ? sources.filter(({ name }) => name !== status.sensor?.name) : item.ready ? [] : sources;
+  const acts = session.role === 'reader' ? [] : offered.map(({ name, words }) => ({ words, run: () => void connect(name) }));
   const live = trouble !== null && !item.ready ? trouble : <LiveText of={() => sensorItem(session.status().sensor).words} />;
   return <ItemRow name="sensor" item={item} acts={acts} live={live} />;
 }

@@ -3,14 +3,21 @@ import { zoneShown } from '#src/cockpit/view/zone-shown.ts';
 import type { RunSession } from '#src/run/run-session-contract.ts';
 
 /**
+ * How often a painter is called: heights and fills every frame, figures as often as an eye can read them. Text laid out
+ * anew sixty times a second is what a slow tablet has no time for.
+ */
+export type Pace = 'every frame' | 'figures';
+const FIGURES_EVERY_MS = 80;
+
+/**
  * One loop a frame: asks the session what to show and hands it to painters, which write text nodes and transforms.
  * React hears of it only when the structure of the screen changes, so that the feed costs no commit.
  */
 export type Painter = (readout: Readout) => void;
 
 export interface LiveModel {
-  /** Paints at once with the latest readout, then every frame until released. */
-  addPainter(painter: Painter): () => void;
+  /** Paints at once with the latest readout, then at its pace, and whenever the structure changes, until released. */
+  addPainter(painter: Painter, pace: Pace): () => void;
   /** For `useSyncExternalStore`: the readout as it stood when the structure last changed. */
   structure(): Readout;
   subscribe(listener: () => void): () => void;
@@ -18,18 +25,24 @@ export interface LiveModel {
 }
 
 export function createLiveModel(session: Pick<RunSession, 'readout' | 'subscribe'>): LiveModel {
-  const painters = new Set<Painter>();
+  const painters: Readonly<Record<Pace, Set<Painter>>> = { 'every frame': new Set(), figures: new Set() };
   const listeners = new Set<() => void>();
   let latest = session.readout();
   let structural = latest;
   let key = structureKey(latest);
   let told = false;
+  let figuresDue = 0;
 
-  const frame = (): void => {
+  const frame = (time: number): void => {
     latest = session.readout();
-    for (const paint of painters) paint(latest);
     const nextKey = structureKey(latest);
-    if (nextKey === key && !told) return;
+    const changed = told || nextKey !== key;
+    for (const paint of painters['every frame']) paint(latest);
+    if (changed || time >= figuresDue) {
+      figuresDue = time + FIGURES_EVERY_MS;
+      for (const paint of painters.figures) paint(latest);
+    }
+    if (!changed) return;
     key = nextKey;
     told = false;
     structural = latest;
@@ -37,10 +50,10 @@ export function createLiveModel(session: Pick<RunSession, 'readout' | 'subscribe
   };
 
   return {
-    addPainter(painter) {
-      painters.add(painter);
+    addPainter(painter, pace) {
+      painters[pace].add(painter);
       painter(latest);
-      return () => painters.delete(painter);
+      return () => painters[pace].delete(painter);
     },
     structure: () => structural,
     subscribe(listener) {
@@ -51,8 +64,8 @@ export function createLiveModel(session: Pick<RunSession, 'readout' | 'subscribe
       const release = session.subscribe(() => {
         told = true;
       });
-      let handle = requestAnimationFrame(function loop() {
-        frame();
+      let handle = requestAnimationFrame(function loop(time) {
+        frame(time);
         handle = requestAnimationFrame(loop);
       });
       return () => {

@@ -1,6 +1,6 @@
 import { createContext, use, useEffect, useLayoutEffect, useRef, useSyncExternalStore } from 'react';
 import type { Readout } from '#shared/pace/readout.ts';
-import type { LiveModel, Painter } from './live-model.ts';
+import type { LiveModel, Pace, Painter } from './live-model.ts';
 
 export const LiveContext = createContext<LiveModel | null>(null);
 
@@ -16,14 +16,14 @@ export function useStructure(): Readout {
   return useSyncExternalStore(model.subscribe, model.structure);
 }
 
-/** Calls `paint` every frame while mounted; the newest closure is used, and the first call is before the first paint. */
-export function usePainter(paint: Painter): void {
+/** Calls `paint` at its pace while mounted; the newest closure is used, and the first call is before the first paint. */
+export function usePainter(pace: Pace, paint: Painter): void {
   const model = useLiveModel();
   const newest = useRef(paint);
   useLayoutEffect(() => {
     newest.current = paint;
   });
-  useLayoutEffect(() => model.addPainter((readout) => newest.current(readout)), [model]);
+  useLayoutEffect(() => model.addPainter((readout) => newest.current(readout), pace), [model, pace]);
 }
 
 export function useLiveLoop(model: LiveModel): void {

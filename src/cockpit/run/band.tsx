@@ -25,7 +25,7 @@ export function Band() {
   const lastTap = useRef<string>('');
   const model = useLiveModel();
 
-  usePainter((readout) => {
+  usePainter('figures', (readout) => {
     const band = readout.band;
     const side = band?.side ?? 'level';
     write(root.current, 'data-side', side);
@@ -36,8 +36,10 @@ export function Band() {
       writeText(figure.current, stepsAsText(steps, band.decimals));
     }
     lastTap.current = tap;
-    const toFinish = readout.targetTime - (readout.elapsed ?? 0);
-    const share = band === null || side === 'level' ? 0 : poolShare(signed(band), openness(toFinish));
+  });
+  usePainter('every frame', ({ band, targetTime, elapsed }) => {
+    const open = openness(targetTime - (elapsed ?? 0));
+    const share = band === null || band.side === 'level' ? 0 : poolShare(signed(band), open);
     moveTo(late.current, Math.max(0, share) - 1);
     moveTo(pool.current, Math.max(0, share));
     moveTo(early.current, 1 + Math.min(0, share));

@@ -22,7 +22,7 @@ export function CheckpointButton({ trial }: { readonly trial?: { readonly name: 
   const checkpoint = trial === undefined ? (next?.checkpoint ?? null) : null;
   useTouch(button, (timeStamp) => session.act({ type: 'tap.v1', input: 'glass', checkpoint: checkpoint?.id ?? null }, timeStamp).ok);
 
-  usePainter((readout) => {
+  usePainter('every frame', (readout) => {
     const nearness = readout.next === null || trial !== undefined ? 0 : readout.next.inReach ? 1 : readout.next.nearness;
     const clip = `inset(${((1 - nearness) * 100).toFixed(1)}% 0 0 0)`;
     if (full.current !== null && full.current.style.clipPath !== clip) full.current.style.clipPath = clip;

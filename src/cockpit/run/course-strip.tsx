@@ -108,7 +108,7 @@ function OwnTrace({ course, size }: Drawn) {
     session.runSheet().trace.map((point) => ({ d: point.d, errorS: point.timeErrorS })),
   );
   const drawnFor = useRef<StripSize | null>(null);
-  usePainter((readout) => {
+  usePainter('figures', (readout) => {
     if (readout.timeError === null || trace.current === null) return;
     const point = { d: readout.distance, errorS: readout.timeError };
     const changed = trace.current.add(point);

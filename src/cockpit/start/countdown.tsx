@@ -17,7 +17,7 @@ export function Countdown() {
   const [muted, setMuted] = useState(false);
   const [typing, setTyping] = useState(false);
   const ticked = useRef<number | null>(null);
-  usePainter((readout) => {
+  usePainter('every frame', (readout) => {
     const due = readout.toRelease === null ? null : tickAt(readout.toRelease);
     if (due !== null && due !== ticked.current && !muted) tick(due === 0);
     ticked.current = due;
@@ -31,7 +31,7 @@ export function Countdown() {
         </span>
         <LiveText of={(r) => (r.official === null ? 'clock unchecked' : `official ${formatClock(r.official.now, timeZone)}`)} />
       </p>
-      <LiveText className="start-figure" of={(r) => (r.toRelease === null ? '' : countdownText(r.toRelease))} />
+      <LiveText className="start-figure" pace="every frame" of={(r) => (r.toRelease === null ? '' : countdownText(r.toRelease))} />
       <p className="start-words">
         <strong>the starter outranks this screen</strong>
         <LiveText className="quiet" of={(r) => firstSpeed(r, (mps) => `${formatSpeed(mps, speedUnit)} ${speedUnit}`)} />

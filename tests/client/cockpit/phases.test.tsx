@@ -42,7 +42,7 @@ describe('start', () => {
 });
 
 describe('red flag', () => {
-  it('tells the radio who and where, shows no advice, and goes on only by a held touch', async () => {
+  it('tells the radio who and where, shows no advice, and goes on only by a held touch', { timeout: 20_000 }, async () => {
     const screen = await drawScreen({ screen: <StoppedScreen />, drivenS: 60 });
     act(() => void screen.opened.session.act({ type: 'run-stopped.v1' }));
     await screen.pass(100);
@@ -57,7 +57,7 @@ describe('red flag', () => {
 });
 
 describe('finish', () => {
-  it('says slow first, then the own error with its ± and the word unofficial, and ends by a held touch', async () => {
+  it('says slow first, then the own error with its ± and the word unofficial, and ends by a held touch', { timeout: 20_000 }, async () => {
     const screen = await drawScreen({ screen: <FinishScreen />, drivenS: 115 });
     const { finish, phase } = screen.opened.session.readout();
     expect(phase).toBe('finished');

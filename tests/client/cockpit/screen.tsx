@@ -87,6 +87,7 @@ function around({ session }: OpenedWindow, model: LiveModel, screen: ReactNode):
 /** Frames come when the test says so: the loop's own request is kept and called. */
 function handDrivenFrames(): { run<T>(start: () => T): T; paint(): void } {
   let due: FrameRequestCallback | null = null;
+  let time = 0;
   const patched = (callback: FrameRequestCallback): number => {
     due = callback;
     return 1;
@@ -105,7 +106,8 @@ function handDrivenFrames(): { run<T>(start: () => T): T; paint(): void } {
     paint: () => {
       const call = due;
       due = null;
-      withPatch(() => call?.(0));
+      time += 100;
+      withPatch(() => call?.(time));
     },
   };
 }
