@@ -56,7 +56,8 @@ function createSession(options: OpenRunOptions, environment: RunEnvironment, fou
       const writer = roles.writer();
       if (closing !== null) return fail(CLOSED);
       if (writer === null) return fail(READ_ONLY);
-      return ok({ seq: writer.act(() => ({ ...act, at: clock.at(stampOf(eventTimeStamp, environment)) })) });
+      const seq = writer.act(() => ({ ...act, at: clock.at(stampOf(eventTimeStamp, environment)) }));
+      return seq === null ? fail(ENDED) : ok({ seq });
     },
     attach: (source: SensorSource, how) => roles.attach(source, how),
     detach: () => roles.detach(),
@@ -90,4 +91,5 @@ const READ_ONLY: RunFailure = {
   code: 'read-only',
   message: 'Another window of this tablet records this run. Use that one, or close it: this one then goes on.',
 };
+const ENDED: RunFailure = { code: 'closed', message: 'This run has ended, and its journal with it. Begin another run of the attempt.' };
 const CLOSED: RunFailure = { code: 'closed', message: 'This run was closed here. Open it again.' };

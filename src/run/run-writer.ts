@@ -19,8 +19,11 @@ import { createSnapshotSaver } from './snapshot-saver.ts';
 export interface RunWriter {
   /** From sensors, in order of arrival. */
   observe(observations: readonly NewObservation[]): void;
-  /** An act of a person or of the page: journalled at once. `make` is asked when the clock is as right as it can be. @returns Its seq. */
-  act(make: () => NewObservation): number;
+  /**
+   * An act of a person or of the page: journalled at once. `make` is asked when the clock is as right as it can be.
+   * @returns Its seq; null once the run has ended, for a journal that was closed may already be sealed.
+   */
+  act(make: () => NewObservation): number | null;
   readonly queue: JournalQueue;
   /** Everything numbered that storage has not acknowledged, for a window that begins to follow. */
   uncommitted(): readonly Journalled[];
@@ -51,7 +54,11 @@ export function createRunWriter(options: WriterOptions): RunWriter {
   const from = leftOver[0]?.seq ?? run.nextSeq;
   const queue = createJournalQueue({ runId, store: creating(store, run.header), environment, from, changed });
   const blocks = createBlockMaker((block) => queue.push(block), environment);
-  const { put, putAgain, uncommitted } = createNumbering(run, blocks, queue, numbered);
+  const { put: number, putAgain, uncommitted } = createNumbering(run, blocks, queue, numbered);
+  const over = (): boolean => run.state.acts.ended !== null;
+  const put: typeof number = (observations) => {
+    if (!over()) number(observations);
+  };
   const gap = createGapWatch(clock, run.box, () => run.life.n);
   const device = createDeviceWatch(clock);
   const snapshots = createSnapshotSaver({ run, store, queue, flush: blocks.flush, clocks });
@@ -68,19 +75,26 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     if (apart) gap.arm(false);
     if (pair !== null) put([pair]);
   };
+  /** Before the run can be ended: what the crew was shown at the line. */
+  const noteFinish = (): void => {
+    const now = clock.now();
+    const shown = finishShown(run.state, readout(run.state, now), now);
+    if (shown !== null) put([shown]);
+  };
   const act: RunWriter['act'] = (make) => {
+    if (over()) return null;
     watch();
     settle();
+    noteFinish();
     const seq = run.nextSeq;
     put([make()]);
     changed();
     return seq;
   };
   const tick = (): void => {
+    if (over()) return;
     watch();
-    const now = clock.now();
-    const shown = finishShown(run.state, readout(run.state, now), now);
-    if (shown !== null) act(() => shown);
+    noteFinish();
     snapshots.look();
     changed();
   };
@@ -98,6 +112,7 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     act,
     uncommitted,
     observe(observations) {
+      if (over()) return;
       watch();
       if (!gap.hold(observations)) return put(observations);
       cancelSettling ??= after(SETTLE_MS, settle);

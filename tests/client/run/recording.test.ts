@@ -110,6 +110,18 @@ describe('recording', () => {
     expect(session.runSheet()).toMatchObject({ outcome: 'finished', shown: { agrees: true } });
   });
 
+  it('takes nothing more once the run has ended: its journal may be sealed', async () => {
+    const { rig, opened } = await driven(60);
+    const { session } = opened;
+    const ended = must(session.act({ type: 'run-ended.v1', outcome: 'retired' }));
+    await rig.world.pass(12_000);
+    expect(session.act({ type: 'note.v1', text: 'too late' })).toMatchObject({ ok: false, error: { code: 'closed' } });
+    await session.close();
+    const journal = await rig.journal(session.header.runId);
+    expect(journal.at(-1)).toMatchObject({ seq: ended.seq, type: 'run-ended.v1' });
+    expect(session.runSheet().observations).toBe(journal.length);
+  });
+
   it('writes the pair of clocks every ten seconds', async () => {
     const { opened } = await driven(35);
     const journal = must(fromNdjson(await opened.session.exportJournal())).observations;
