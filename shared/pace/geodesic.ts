@@ -9,7 +9,7 @@ const RADIANS = Math.PI / 180;
  *
  * Gauss's mid-latitude formula, leading term: the meridian and the prime-vertical radius of curvature at the middle latitude
  * turn the differences of latitude and longitude into lengths (formula and name from memory; the checks compare it with
- * GeodSolve). Its relative error grows with the square of length over earth radius: below 1e-8 up to 1 km.
+ * GeodSolve). Its relative error grows with the square of length over earth radius: below 1e-8 up to 1 km and latitude 66°.
  */
 export function shortLine(lat1: number, lon1: number, lat2: number, lon2: number): number {
   const middle = ((lat1 + lat2) / 2) * RADIANS;

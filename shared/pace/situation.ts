@@ -2,7 +2,7 @@ import { clockSigmaMs } from '#shared/pace/clock.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { startGate } from '#shared/pace/derive-start.ts';
 import { anchorAt, distanceAt, distanceOf, distanceVariance } from '#shared/pace/distance.ts';
-import { odometerNow } from '#shared/pace/odometer.ts';
+import { odometerNow } from '#shared/pace/odometer-now.ts';
 import type { Phase } from '#shared/pace/readout.ts';
 import { modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
 import { targetSpeedAt, targetTimeAt } from '#shared/pace/schedule.ts';

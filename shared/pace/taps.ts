@@ -1,5 +1,6 @@
 import type { ButtonV1 } from '#shared/journal/observation.ts';
-import { type OdometerChange, odometerNow } from '#shared/pace/odometer.ts';
+import type { OdometerChange } from '#shared/pace/odometer.ts';
+import { odometerNow } from '#shared/pace/odometer-now.ts';
 import { nominalMetres, type RunState, type TapAct } from '#shared/pace/run-state.ts';
 import { lastKnotAt, rawAt } from '#shared/pace/track.ts';
 import { wrappedDifference } from '#shared/pace/wheel.ts';

@@ -112,3 +112,17 @@ export function bridgeToCounts(track: Track, from: { at: number; w: number; g: n
     }
   }
 }
+
+/** Speed is read over at least this long. */
+const RATE_US = 250_000;
+
+/** Counts per second over the last knots, at least a quarter of a second apart where they are that close. */
+export function rateNow(track: Track): number {
+  const { at, w, head } = track.recent;
+  const last = at.length - 1;
+  let i = last - 1;
+  while (i > head && (at[last] as number) - (at[i] as number) < RATE_US) i--;
+  if (i < head) return 0;
+  const us = (at[last] as number) - (at[i] as number);
+  return us > 0 ? (((w[last] as number) - (w[i] as number)) * 1e6) / us : 0;
+}

@@ -29,6 +29,6 @@ describe('short line on WGS84', () => {
         }
       }
     }
-    expect(worst).toBeLessThan(3e-7);
+    expect(worst).toBeLessThan(5e-8);
   });
 });
