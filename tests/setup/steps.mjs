@@ -71,7 +71,10 @@ const types = {
 };
 
 /** @type {Step} */
-const lint = { name: 'lint', run: async (signal) => oneTest(await node([join(BIN, '@biomejs/biome/bin/biome'), 'check', '.'], signal)) };
+const lint = {
+  name: 'lint',
+  run: async (signal) => oneTest(await node([join(BIN, '@biomejs/biome/bin/biome'), 'check', '--error-on-warnings', '.'], signal)),
+};
 
 /** @type {Step} */
 const build = { name: 'build', run: async (signal) => oneTest(await node([join(BIN, 'vite/bin/vite.js'), 'build'], signal)) };
