@@ -24,9 +24,10 @@ function workerPath(): string {
   return `/assets/${file}`;
 }
 
-/** A window with a journal worker of its own. */
+/** A window with a journal worker of its own, at a page of this origin that has none: the application's would be first to heal. */
 async function openWindow(page: Page): Promise<void> {
-  await page.goto('/');
+  await page.route('**/bare', (route) => route.fulfill({ contentType: 'text/html', body: '<link rel="icon" href="/favicon.svg">' }));
+  await page.goto('/bare');
   await page.evaluate((path) => {
     const worker = new Worker(path, { type: 'module' });
     const waiting = new Map<number, (answer: { value?: unknown; error?: string }) => void>();
