@@ -1,11 +1,21 @@
 import type { NewObservation } from '#shared/journal/observation.ts';
-import type { Readout } from '#shared/pace/readout.ts';
-import { ENGINE_VERSION, type RunState } from '#shared/pace/run.ts';
+import { ENGINE_VERSION, type RunState, readout } from '#shared/pace/run.ts';
+import type { Micros } from '#shared/units.ts';
 
-/** What the cockpit shows at the finish, journalled once, so that a later engine's difference is seen and not hidden. */
-export function finishShown(state: RunState, shown: Readout, at: number): NewObservation | null {
-  if (shown.finish === null || shown.phase !== 'finished' || state.acts.finishShown !== null) return null;
-  const { elapsed, timeError, sigma } = shown.finish;
+/** What the cockpit shows at the finish, once, so that a later engine's difference is seen and not hidden; else nothing. */
+export function finishShown(state: RunState, at: Micros): NewObservation[] {
+  if (state.acts.finishShown !== null) return [];
+  const { finish, phase } = readout(state, at);
+  if (finish === null || phase !== 'finished') return [];
   const ms = (seconds: number): number => Math.round(seconds * 1e6) / 1e3;
-  return { type: 'finish-shown.v1', at, engine: ENGINE_VERSION, elapsedMs: ms(elapsed), timeErrorMs: ms(timeError), sigmaMs: ms(sigma) };
+  return [
+    {
+      type: 'finish-shown.v1',
+      at,
+      engine: ENGINE_VERSION,
+      elapsedMs: ms(finish.elapsed),
+      timeErrorMs: ms(finish.timeError),
+      sigmaMs: ms(finish.sigma),
+    },
+  ];
 }

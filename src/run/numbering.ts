@@ -7,6 +7,7 @@ import { type KnownRun, takeObservation } from './known-run.ts';
 
 /** Gives out seq, and keeps what was numbered until storage has acknowledged it. */
 export interface Numbering {
+  /** Takes nothing once the run has ended. */
   put(observations: readonly NewObservation[]): void;
   /** Numbered by an earlier life, already in the state, not yet in the journal. */
   putAgain(observations: readonly Journalled[]): void;
@@ -30,7 +31,7 @@ export function createNumbering(
   };
   return {
     put(observations) {
-      if (observations.length === 0) return;
+      if (observations.length === 0 || run.state.acts.ended !== null) return;
       trim();
       const all = observations.map((o, i) => ({ ...o, at: micros(o.at), seq: run.nextSeq + i }) as Observation);
       for (const observation of all) {

@@ -1,7 +1,6 @@
 import type { Journalled } from '#shared/journal/block.ts';
 import type { NewObservation } from '#shared/journal/observation.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
-import { readout } from '#shared/pace/run.ts';
 import type { JournalStore } from '#src/storage/journal-store.ts';
 import { createBlockMaker } from './block-maker.ts';
 import type { SessionClock } from './clock.ts';
@@ -54,11 +53,7 @@ export function createRunWriter(options: WriterOptions): RunWriter {
   const from = leftOver[0]?.seq ?? run.nextSeq;
   const queue = createJournalQueue({ runId, store: creating(store, run.header), environment, from, changed });
   const blocks = createBlockMaker((block) => queue.push(block), environment);
-  const { put: number, putAgain, uncommitted } = createNumbering(run, blocks, queue, numbered);
-  const over = (): boolean => run.state.acts.ended !== null;
-  const put: typeof number = (observations) => {
-    if (!over()) number(observations);
-  };
+  const { put, putAgain, uncommitted } = createNumbering(run, blocks, queue, numbered);
   const gap = createGapWatch(clock, run.box, () => run.life.n);
   const device = createDeviceWatch(clock);
   const snapshots = createSnapshotSaver({ run, store, queue, flush: blocks.flush, clocks });
@@ -76,13 +71,9 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     if (pair !== null) put([pair]);
   };
   /** Before the run can be ended: what the crew was shown at the line. */
-  const noteFinish = (): void => {
-    const now = clock.now();
-    const shown = finishShown(run.state, readout(run.state, now), now);
-    if (shown !== null) put([shown]);
-  };
+  const noteFinish = (): void => put(finishShown(run.state, clock.now()));
   const act: RunWriter['act'] = (make) => {
-    if (over()) return null;
+    if (run.state.acts.ended !== null) return null;
     watch();
     settle();
     noteFinish();
@@ -92,7 +83,6 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     return seq;
   };
   const tick = (): void => {
-    if (over()) return;
     watch();
     noteFinish();
     snapshots.look();
@@ -112,7 +102,6 @@ export function createRunWriter(options: WriterOptions): RunWriter {
     act,
     uncommitted,
     observe(observations) {
-      if (over()) return;
       watch();
       if (!gap.hold(observations)) return put(observations);
       cancelSettling ??= after(SETTLE_MS, settle);
