@@ -41,6 +41,8 @@ export interface DemoCar {
   readonly navigator: string;
   readonly dialReadsHighPercent: number;
   readonly tyre: string;
+  /** One crew trusts the plain ratio, the other the gain ratio: both can be seen on their run sheets. */
+  readonly scaleRule: 'ratio' | 'gain';
   readonly nominal: number;
   readonly measured: number;
 }
@@ -53,6 +55,7 @@ export const CARS: readonly DemoCar[] = [
     navigator: 'navigator',
     dialReadsHighPercent: 4,
     tyre: '265/35 R18',
+    scaleRule: 'gain',
     nominal: 84.9,
     measured: 85.31,
   },
@@ -63,6 +66,7 @@ export const CARS: readonly DemoCar[] = [
     navigator: 'navigator2',
     dialReadsHighPercent: 3,
     tyre: '255/40 R17',
+    scaleRule: 'ratio',
     nominal: 81.7,
     measured: 82.06,
   },

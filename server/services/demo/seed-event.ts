@@ -52,7 +52,7 @@ export async function seedEvent(ctx: ServiceContext, people: DemoPeople): Promis
       raceClassId: raceClassIds[0] ?? '',
       number: car.number,
       planSettings: { acceleration: 2.8, deceleration: 4.5, capMargin: 0.02 },
-      cockpitSettings: USUAL_COCKPIT,
+      cockpitSettings: { ...USUAL_COCKPIT, scaleRule: car.scaleRule, tapLeadMs: { glass: 60, wired: 40 }, tapScatterMs: 90 },
       crew: [
         { userId: people.userId(car.driver), role: 'driver' },
         { userId: people.userId(car.navigator), role: 'navigator' },
