@@ -95,7 +95,7 @@ class Wheel:
 
 
 def journal(name, p, wheel, until, acts=(), every=2, first=0, box=0, wild=()):
-    """Pulses every few seconds, acts by (second, observation); a callable observation is given its own seq's journal so far."""
+    """Pulses every few seconds and acts by (second, observation); an act `of` a tap is given that tap's seq."""
     rows = [(us(-50), {'type': 'epoch.v1', 'n': 0, 'mono': 1000, 'wall': RELEASE_MS - 50_400, 'bridgedBy': 'first', 'uncertaintyMs': 0}),
             (us(-40), {'type': 'clock.v1', 'source': 'exchange', 'officialMs': RELEASE_MS - 40_000, 'uncertaintyMs': 4})]
     for t in range(-20, until + 1, every):
@@ -257,7 +257,7 @@ def voided_tap():
     legs.append(row('tarn', 'tap', tarn, aim(22000), movedM=float(19000 - measured), scaleBefore=mm, scaleAfter=float(k2), scaleKept=None))
     legs.append(row('finish', 'distance', wheel.instant(wheel.count(tarn) + 3000 * 1000 / k2), aim(25000), scaleAfter=float(k2)))
     return {'reactionS': 2, 'legs': legs, 'finish': {'elapsedS': legs[-1]['elapsedS'], 'timeErrorS': legs[-1]['timeErrorS']},
-            'verdicts': ['used', 'voided', 'used', 'repeated']}
+            'verdicts': 'used voided used repeated'}
 
 
 def box_wrap():
