@@ -1,4 +1,5 @@
 import { useEffect, useMemo } from 'react';
+import { wakeSound } from '#src/cockpit/devices/tick.ts';
 import { useWakeLock } from '#src/cockpit/devices/use-wake-lock.ts';
 import { EndedScreen } from '#src/cockpit/finish/ended-screen.tsx';
 import { FinishScreen } from '#src/cockpit/finish/finish-screen.tsx';
@@ -52,6 +53,11 @@ function OpenRun() {
   const structure = useStructure();
   useWakeLock();
   useEffect(holdUpdates, []);
+  // After a reload the countdown is silent until a touch anywhere lets it sound.
+  useEffect(() => {
+    addEventListener('pointerdown', wakeSound);
+    return () => removeEventListener('pointerdown', wakeSound);
+  }, []);
   const { buttonSide } = session.header.pack.settings;
   switch (structure.phase) {
     case 'grid':

@@ -36,7 +36,7 @@ export function GridItems() {
       <SensorItem />
       <ItemRow name="button" item={buttonItem(lastTap)} />
       <ItemRow name="screen" item={wakeItem(wake)} />
-      <ItemRow name="address" item={{ ready: true, words: location.host }} />
+      <ItemRow name="address" item={{ ready: true, words: `${location.host} owns these journals` }} />
     </section>
   );
 }

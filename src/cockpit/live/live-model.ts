@@ -86,6 +86,7 @@ export function structureKey(readout: Readout): string {
   return JSON.stringify([
     readout.phase,
     readout.release,
+    readout.elapsed === null,
     readout.targetTime,
     readout.band?.side,
     readout.hold.kind,

@@ -8,7 +8,8 @@ import { useRunSettings } from './run-context.ts';
 
 /** On the pool's floor: the speed to hold, the limit where one is near, and the schedule when the band speaks of the plan. */
 export function BandFloor() {
-  const { speedUnit, distanceUnit } = useRunSettings();
+  const { session, speedUnit, distanceUnit } = useRunSettings();
+  const { practice, clockRate } = session.header;
   const structure = useStructure();
   const zone = zoneShown(structure);
   const over = structure.warnings.some((warning) => warning.code === 'over-limit' || warning.code === 'over-cap');
@@ -36,6 +37,7 @@ export function BandFloor() {
         </div>
       )}
       <div className="floor-schedule quiet">
+        {practice ? `practice ${clockRate}×\n` : null}
         <LiveText of={scheduleText} />
       </div>
     </div>

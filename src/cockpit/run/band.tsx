@@ -4,7 +4,7 @@ import { useLiveModel, usePainter } from '#src/cockpit/live/use-live.ts';
 import { ThemeKey } from '#src/cockpit/theme-key.tsx';
 import { openness, poolShare } from '#src/cockpit/view/band-geometry.ts';
 import { createSteadyFigure } from '#src/cockpit/view/steady-figure.ts';
-import { sideWord, stepsAsText } from '#src/cockpit/view/words.ts';
+import { isEscorted, sideWord, stepsAsText } from '#src/cockpit/view/words.ts';
 import { BandFloor } from './band-floor.tsx';
 
 /** Signed by the side, so that the slab stands where the word says: late and below sink the pool. */
@@ -29,7 +29,7 @@ export function Band() {
     const band = readout.band;
     const side = band?.side ?? 'level';
     write(root.current, 'data-side', side);
-    writeText(word.current, band === null ? '' : sideWord(side));
+    writeText(word.current, band === null ? (isEscorted(readout) ? 'escort' : '') : sideWord(side));
     const tap = tapKey(readout);
     if (band !== null && side !== 'level') {
       const steps = steady.current.show(band.magnitude, band.decimals === 1 ? 10 : 100, tap !== lastTap.current);

@@ -13,7 +13,7 @@ import { FlagKey } from './flag-key.tsx';
 
 /** The last minute: seconds and nothing else, with a tick from ten on. The starter outranks it. */
 export function Countdown() {
-  const { timeZone, speedUnit } = useRunSettings();
+  const { session, timeZone, speedUnit } = useRunSettings();
   const [muted, setMuted] = useState(false);
   const [typing, setTyping] = useState(false);
   const ticked = useRef<number | null>(null);
@@ -37,7 +37,7 @@ export function Countdown() {
         <LiveText className="quiet" of={(r) => firstSpeed(r, (mps) => `${formatSpeed(mps, speedUnit)} ${speedUnit}`)} />
       </p>
       <div className="start-keys">
-        <button type="button" className="key" onClick={() => setTyping(true)}>
+        <button type="button" className="key" disabled={session.role === 'reader'} onClick={() => setTyping(true)}>
           new release
         </button>
         <FlagKey />
@@ -55,7 +55,7 @@ const firstSpeed = (readout: Readout, words: (mps: number) => string): string =>
 
 /** Released, and the car does not roll: time runs on and is kept; a new release may be typed in. */
 export function Held() {
-  const { timeZone } = useRunSettings();
+  const { session, timeZone } = useRunSettings();
   const [typing, setTyping] = useState(false);
   if (typing) return <ReleaseEntry done={() => setTyping(false)} />;
   return (
@@ -72,7 +72,7 @@ export function Held() {
         <span className="quiet">the run begins by itself when the car rolls</span>
       </p>
       <div className="start-keys">
-        <button type="button" className="key" onClick={() => setTyping(true)}>
+        <button type="button" className="key" disabled={session.role === 'reader'} onClick={() => setTyping(true)}>
           new release
         </button>
         <FlagKey />

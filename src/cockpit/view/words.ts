@@ -48,6 +48,10 @@ export const distanceText = (m: number, unit: DistanceUnit): string => `${format
 /** `0:56`, `12:05`, `1:02:05`; whole seconds, cut. */
 export const durationText = (seconds: number): string => formatDuration(Math.floor(Math.max(0, seconds)));
 
+/** The run goes on and the band is silent: the engine gives no advice behind an escort. */
+export const isEscorted = ({ phase, timeError, band }: Pick<Readout, 'phase' | 'timeError' | 'band'>): boolean =>
+  phase === 'running' && timeError !== null && band === null;
+
 /** What stands beside the hold speed. */
 export function holdWords(hold: Hold): readonly string[] {
   switch (hold.kind) {

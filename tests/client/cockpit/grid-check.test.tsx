@@ -79,23 +79,23 @@ describe('grid check', () => {
     expect(course.places.find((p) => p.checkpoint.duty === 'finish')?.atM).toBeCloseTo(Number(movedKm) * 1000, 6);
   });
 
-  it('adds a limit, and refuses one that ends before it begins', async () => {
+  it('adds a limit on the course, and refuses one that ends before it begins', async () => {
     const screen = await onGrid();
     const before = screen.opened.session.course().zones.length;
     fireEvent.click(page.getByRole('button', { name: /^limits/ }));
     fireEvent.click(page.getByRole('button', { name: 'a new zone' }));
     type('60');
     fireEvent.click(page.getByRole('button', { name: /^from/ }));
-    type('5');
+    type('0.5');
     fireEvent.click(page.getByRole('button', { name: /^to/ }));
-    type('4');
+    type('0.4');
     expect(page.getByRole('status').textContent).toBe('the zone must end after it begins');
     fireEvent.click(page.getByRole('button', { name: 'delete last' }));
-    type('6.5');
+    type('95');
     fireEvent.click(page.getByRole('button', { name: 'set' }));
     await screen.pass(100);
     const zones = screen.opened.session.course().zones;
     expect(zones).toHaveLength(before + 1);
-    expect(zones.find((zone) => zone.fromM === 5000)).toMatchObject({ toM: 6500, limit: expect.closeTo(60 / 3.6, 9) });
+    expect(zones.find((zone) => zone.fromM === 500)).toMatchObject({ toM: 950, limit: expect.closeTo(60 / 3.6, 9) });
   });
 });
