@@ -9,7 +9,7 @@ const wheelSchema = z.strictObject({
   setupId: idSchema,
   setupName: nameSchema,
   channel: z.number().int().min(0).max(15),
-  pulsesPerTurn: z.number().int().min(1).max(1000),
+  pulsesPerTurn: z.number().int().min(1).max(100_000),
   mmPerPulse: z.number().positive().max(5000),
   scaleSigma: z.number().min(0).max(0.2),
   scaleSource: z.enum(['nominal', 'measured distance', 'run']),

@@ -24,6 +24,6 @@ export const wheelSetups = pgTable(
     // Lets an entry's foreign key demand that its set-up belongs to its car.
     unique('wheel_setups_id_car_id_key').on(t.id, t.carId),
     check('wheel_setups_channel_range', sql`${t.channel} between 0 and 15`),
-    check('wheel_setups_pulses_range', sql`${t.pulsesPerTurn} between 1 and 1000`),
+    check('wheel_setups_pulses_range', sql`${t.pulsesPerTurn} between 1 and 100000`),
   ],
 );

@@ -1,0 +1,2 @@
+ALTER TABLE "wheel_setups" DROP CONSTRAINT "wheel_setups_pulses_range";--> statement-breakpoint
+ALTER TABLE "wheel_setups" ADD CONSTRAINT "wheel_setups_pulses_range" CHECK ("wheel_setups"."pulses_per_turn" between 1 and 100000);
