@@ -1,23 +1,22 @@
 import { fail, ok, type Result } from '#shared/result.ts';
 import type { ChunkStore, KeptChunk, OutboxRun } from '#src/storage/chunk-store.ts';
 import type { StorageFailure } from '#src/storage/journal-store.ts';
+import type { UploadProgress } from '#src/storage/upload-progress.ts';
 import { bytesOfCut, cutChunks } from './chunk-cutter.ts';
 import { chainDigest, FIRST_DIGEST, type Sha256 } from './digest-chain.ts';
 import type { UploadFailureCode } from './retry-policy.ts';
 import type { UploadClient, UploadFailure } from './upload-client.ts';
 
 /**
- * One pass over one run: announce, ask what is held, send what is not, seal, look for the result. May be cut at any
- * await and begun again: what the server holds is always asked, never remembered.
+ * One pass over one run: announce, ask what is held, send what is not, seal. May be cut at any await and begun again: what
+ * the server holds is always asked, never remembered.
  */
-
-/** `idle`: nothing more to send now. `waiting`: sealed, the result is still being derived. `complete`: derived. */
-export type PushOutcome = 'idle' | 'waiting' | 'complete';
-
 export interface PushDeps {
   readonly store: ChunkStore;
   readonly client: UploadClient;
   readonly sha256: Sha256;
+  /** Writes down how far the run has come. */
+  readonly say: (change: Partial<UploadProgress>) => Promise<void>;
   /** Called whenever the server confirmed something new. */
   readonly progressed: () => void;
   readonly chunkLimit: number;
@@ -25,40 +24,28 @@ export interface PushDeps {
 
 type Push<T> = Promise<Result<T, UploadFailure>>;
 
-export async function pushRun(run: OutboxRun, deps: PushDeps): Push<PushOutcome> {
-  if (run.progress.state !== 'safe on server') {
-    const sent = await sendAndSeal(run, deps);
-    if (!sent.ok) return sent;
-    if (sent.value === 'idle') return ok('idle');
-  }
-  const status = await deps.client.status();
-  if (!status.ok) return status;
-  if (!status.value.derived) return ok('waiting');
-  await deps.store.progress(run.runId, { derived: true });
-  return ok('complete');
-}
-
-async function sendAndSeal(run: OutboxRun, deps: PushDeps): Push<'idle' | 'sealed'> {
-  const { store, client } = deps;
+/** `idle`: everything there is was sent, and more will come. `sealed`: the server has committed the whole run. */
+export async function pushRun(run: OutboxRun, deps: PushDeps): Push<'idle' | 'sealed'> {
+  const { client, say } = deps;
   const announced = await client.announce(run.header);
   if (!announced.ok) return announced;
   const held = await client.held();
   if (!held.ok) return held;
-  await store.progress(run.runId, { state: 'sending', blocked: null });
+  await say({ state: 'sending', blocked: null });
   const chunks = await cutAndKeep(run, deps);
   if (!chunks.ok) return chunks;
   const agreed = agreeOnHead(chunks.value, held.value.count, held.value.head);
   if (!agreed.ok) return agreed;
-  if (held.value.count > run.progress.confirmed) await confirm(run, held.value.count, deps);
+  if (held.value.count > run.progress.confirmed) await confirm(held.value.count, deps);
   const sent = await sendFrom(run, chunks.value, held.value.count, deps);
   if (!sent.ok) return sent;
   if (!run.ended) {
-    await store.progress(run.runId, { state: 'on this device' });
+    await say({ state: 'on this device' });
     return ok('idle');
   }
   const sealed = await client.seal({ count: chunks.value.length, head: headOf(chunks.value) });
   if (!sealed.ok) return sealed;
-  await store.progress(run.runId, { state: 'safe on server', blocked: null });
+  await say({ state: 'safe on server', blocked: null });
   deps.progressed();
   return ok('sealed');
 }
@@ -93,13 +80,13 @@ async function sendFrom(run: OutboxRun, chunks: readonly KeptChunk[], held: numb
     if (!bytes.ok) return fail(onDevice(bytes.error.code, bytes.error.message));
     const put = await deps.client.putChunk(chunk.n, bytes.value, chunk.digest);
     if (!put.ok) return put;
-    await confirm(run, chunk.n + 1, deps);
+    await confirm(chunk.n + 1, deps);
   }
   return ok(undefined);
 }
 
-async function confirm(run: OutboxRun, confirmed: number, deps: PushDeps): Promise<void> {
-  await deps.store.progress(run.runId, { confirmed });
+async function confirm(confirmed: number, deps: PushDeps): Promise<void> {
+  await deps.say({ confirmed });
   deps.progressed();
 }
 

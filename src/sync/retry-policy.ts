@@ -29,7 +29,7 @@ const PERMANENT: Readonly<Partial<Record<UploadFailureCode, string>>> = {
   PAYLOAD_TOO_LARGE: UNREADABLE,
   CORRUPT_CHUNK: UNREADABLE,
   SIGN_IN_REQUIRED: WHO,
-  CROSS_ORIGIN: WHO,
+  CROSS_ORIGIN: `The server does not take this address for its own. Open Evenline at the address it was set up for. ${KEEP}`,
   FORBIDDEN: WHO,
   GRANT_INVALID: WHO,
   NOT_FOUND: WHO,

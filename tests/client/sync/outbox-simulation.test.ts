@@ -1,6 +1,7 @@
+// @vitest-environment node
 import fc from 'fast-check';
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
-import { addRun, type Device } from './memory-outbox-store.ts';
+import { addRun, type Device, type DeviceRun } from './memory-outbox-store.ts';
 import { bytesOfBlocks, sampleBlocks, sampleHeader } from './sample-runs.ts';
 import { createServerDouble } from './server-double.ts';
 import { CHUNK_LIMIT, openPage, type Traffic, type Weather } from './simulated-client.ts';
@@ -34,6 +35,9 @@ async function simulate(seed: number, weather: Weather) {
   const live = addRun(device, sampleHeader('run-live', true), [], false);
   const runs = [...ended, live];
 
+  const signInAt = world.random() * 60_000;
+  server.signedIn = false;
+  const wasSafe = new Set<string>();
   let page = openPage(world, server, device, weather, traffic);
   const finished = await world.play(
     () => runs.every((run) => run.progress.derived) || world.now() > HOUR,
@@ -42,15 +46,23 @@ async function simulate(seed: number, weather: Weather) {
       const due = Math.min(journal.length, Math.floor(world.now() / 2_000));
       while (live.blocks.length < due) live.blocks.push(journal[live.blocks.length] as (typeof journal)[number]);
       live.ended = live.blocks.length === journal.length;
-      for (const run of device.runs.values()) expectNoLie(run.progress.state, server.sealed(run.header.runId));
+      if (!server.signedIn && world.now() >= signInAt) {
+        server.signedIn = true;
+        page.outbox.retryBlocked();
+      }
+      for (const run of device.runs.values()) expectNoLie(run, server.sealed(run.header.runId), wasSafe);
     },
   );
   return { finished, runs, server, traffic };
 }
 
-/** 'safe on server' may be said only after the server committed the seal. */
-function expectNoLie(state: string, sealed: boolean): void {
-  if (state === 'safe on server') expect(sealed).toBe(true);
+/** 'safe on server' may be said only after the server committed the seal, and is never taken back. */
+function expectNoLie({ header, progress }: DeviceRun, sealed: boolean, wasSafe: Set<string>): void {
+  if (progress.state === 'safe on server') {
+    expect(sealed).toBe(true);
+    wasSafe.add(header.runId);
+  }
+  expect(wasSafe.has(header.runId)).toBe(progress.state === 'safe on server');
 }
 
 describe('outbox under faults', () => {

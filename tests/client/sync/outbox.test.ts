@@ -1,3 +1,4 @@
+// @vitest-environment node
 import { describe, expect, it } from 'vitest';
 import { addRun, type Device } from './memory-outbox-store.ts';
 import { openHarness } from './outbox-harness.ts';
@@ -119,6 +120,44 @@ describe('outbox', () => {
     expect(await second.until(() => mine.progress.state === 'blocked')).toBe(true);
     expect(mine.progress.blocked?.code).toBe('DIGEST_MISMATCH');
     expect(server.bytesOf('r1').equals(held)).toBe(true);
+  });
+
+  it('keeps a sealed run safe when nobody is signed in to read its result', async () => {
+    const { server, device } = setUp();
+    server.signedIn = false;
+    const run = addRun(device, sampleHeader('r1'), sampleBlocks(5, random()), true);
+    const page = openHarness(server, device);
+    await page.until(() => false, 600_000);
+    expect(run.progress).toMatchObject({ state: 'safe on server', derived: false, blocked: null });
+    server.signedIn = true;
+    page.outbox.retryBlocked();
+    expect(await page.until(() => run.progress.derived, 60_000)).toBe(true);
+  });
+
+  it('goes on trying a blocked run that was asked for while the connection is away', async () => {
+    const { server, device } = setUp();
+    const run = addRun(device, sampleHeader('r1'), sampleBlocks(5, random()), true);
+    let weather: 'refused' | 'away' | 'fine' = 'refused';
+    const page = openHarness(server, device, () =>
+      weather === 'fine' ? null : weather === 'away' ? offline() : refusal(403, 'FORBIDDEN'),
+    );
+    expect(await page.until(() => run.progress.state === 'blocked')).toBe(true);
+    weather = 'away';
+    page.outbox.retryBlocked('r1');
+    await page.until(() => false, 60_000);
+    expect(run.progress.state).toBe('blocked');
+    weather = 'fine';
+    expect(await page.until(() => run.progress.derived, 120_000)).toBe(true);
+  });
+
+  it('stops saying sending when the connection breaks in the middle of a second try', async () => {
+    const { server, device } = setUp();
+    const run = addRun(device, sampleHeader('r1'), sampleBlocks(30, random()), true);
+    run.progress = { ...run.progress, state: 'blocked', blocked: { code: 'FORBIDDEN', message: 'x' } };
+    const page = openHarness(server, device, (_request, call) => (call > 4 ? offline() : null));
+    expect(await page.until(() => run.progress.confirmed === 2)).toBe(true);
+    await page.until(() => false, 500);
+    expect(run.progress).toMatchObject({ state: 'on this device', blocked: null });
   });
 
   it('takes a captive portal for no answer, not for a refusal', async () => {

@@ -11,8 +11,9 @@ export interface ServerDouble {
   sealed(runId: string): boolean;
   /** Chunks written, and chunk bytes that arrived although they were held already. */
   readonly counts: { written: number; repeatedBytes: number; runs: number };
-  /** The result of a sealed run is there from the third question on. */
-  grants: Set<string>;
+  readonly grants: Set<string>;
+  /** Whether somebody is signed in who may read results; a grant never may. */
+  signedIn: boolean;
 }
 
 export interface ServerRequest {
@@ -83,15 +84,17 @@ export function createServerDouble(): ServerDouble {
     return { status: 202, body: { runId, head: headOf(run), status: 'computing' } };
   }
 
+  /** The result of a sealed run is there from the third question on. */
   function status(run: HeldRun): ServerAnswer {
     if (!run.sealed) return { status: 200, body: { run: { status: 'receiving' } } };
     run.asked += 1;
     return { status: 200, body: { run: { status: run.asked > 2 ? 'ready' : 'computing' } } };
   }
 
-  return {
+  const server: ServerDouble = {
     counts,
     grants,
+    signedIn: true,
     bytesOf: (runId) => Buffer.concat(runs.get(runId)?.chunks.map((chunk) => chunk.bytes) ?? []),
     sealed: (runId) => runs.get(runId)?.sealed ?? false,
     handle: ({ method, url, headers, body }) => {
@@ -104,9 +107,11 @@ export function createServerDouble(): ServerDouble {
       if (method === 'GET' && part === 'chunks') return { status: 200, body: held(runId, run) };
       if (method === 'PUT') return append(runId, run, Number(n), Buffer.from(body as Uint8Array), headers['x-evenline-digest'] ?? '');
       if (method === 'POST' && part === 'seal') return seal(runId, run, String(body));
-      return status(run);
+      if (bearer !== undefined) return refusal(403, 'FORBIDDEN');
+      return server.signedIn ? status(run) : refusal(401, 'SIGN_IN_REQUIRED');
     },
   };
+  return server;
 }
 
 export function responseOf(answer: ServerAnswer): Awaited<ReturnType<UploadFetch>> {
