@@ -2,8 +2,6 @@ import { type DistanceUnit, metresPer, metresPerSecondPer, type SpeedUnit } from
 
 /** English text of quantities, for both worlds. Figures are rounded from integers, never by `toFixed` of a float. */
 
-const THIN = ' ';
-
 /** `|value|` rounded half away from zero to `decimals`, as digits. No sign: the caller has a word for it. */
 export function roundedDigits(value: number, decimals: number): string {
   const tenPower = 10 ** decimals;
@@ -67,6 +65,3 @@ function clockFormat(timeZone: string): Intl.DateTimeFormat {
   }
   return format;
 }
-
-/** A quantity and its unit, held together by a narrow no-break space. */
-export const withUnit = (text: string, unit: string): string => `${text}${THIN}${unit}`;

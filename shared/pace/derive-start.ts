@@ -14,8 +14,10 @@ export interface DerivedStart {
 
 /** A car that moved off this little before the release jumped the start; earlier movement is shuffling on the grid. */
 const JUMPED_US = 3_000_000;
+/** One that moved off earlier still, and never stood again, jumped it too; before that it was rolling through. */
+const JUMPED_EARLY_US = 10_000_000;
 /** A car that was this far from where it stands at the release had been rolling through. */
-export const ROLLING_M = 30;
+const ROLLING_M = 30;
 const START_VARIANCE = 0.09;
 const ROLLING_VARIANCE = 25;
 
@@ -42,6 +44,8 @@ export function startOf(state: RunState, model: CourseModel): DerivedStart {
   const d = model.start - Math.max(0, state.changes.stagedBehindM);
   if (launch !== null) return fromRest(state, standing.derived, launch, d);
   if (!rolledThrough(state, gate)) return standing;
+  const jumped = state.odometer.launches.done.findLast((l) => l.movedAt < gate);
+  if (jumped !== undefined && jumped.movedAt >= gate - JUMPED_EARLY_US) return fromRest(state, standing.derived, jumped, d);
   const raw = tracedAt(state.odometer.track, gate);
   if (raw === null) return standing;
   return {

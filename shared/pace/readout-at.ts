@@ -52,7 +52,7 @@ export function readoutAt(state: RunState, at: Micros): Readout {
 
 function holdOf(state: RunState, s: Situation): Hold {
   const { hold } = state.shown;
-  if (hold === null || hold.kind === 'none' || state.acts.escort) return { kind: 'none' };
+  if (hold === null || state.acts.escort) return { kind: 'none' };
   if (s.phase === 'stopped' || s.phase === 'finished' || s.phase === 'ended') return { kind: 'none' };
   const speed = metresPerSecond(hold.speed);
   if (hold.kind === 'hold') return { kind: 'hold', speed, frozen: hold.frozen };

@@ -15,6 +15,7 @@ export interface Readout {
   /** Official distance; negative while staged behind the line. */
   readonly distance: Metres;
   readonly speed: MetresPerSecond | null;
+  /** `changedBy`: present scale over the pack's, less one (0.004 = 0.4 % longer). */
   readonly scale: { readonly mmPerPulse: number; readonly changedBy: number };
   /** Positive = late, negative = early; against the schedule. Null before the start. */
   readonly timeError: Seconds | null;

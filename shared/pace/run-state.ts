@@ -15,6 +15,7 @@ export interface RunState {
   readonly engine: string;
   readonly pack: Pack;
   observations: number;
+  /** Of the last observation folded: what a snapshot reaches to. */
   lastSeq: number | null;
   /** Latest instant of any observation; the session clock begins at 0. */
   now: number;
@@ -50,6 +51,7 @@ export interface Acts {
   escort: boolean;
   ended: { at: number; outcome: RunEndedV1['outcome'] } | null;
   finishShown: { engine: FinishShownV1['engine']; elapsedMs: number; timeErrorMs: number } | null;
+  /** The port that carries the wheel was lost then. */
   sensorLostAt: number | null;
 }
 
@@ -84,7 +86,7 @@ export interface PlacePassing {
   /** Session-clock instant, whole microseconds. */
   at: number | null;
   tap: number | null;
-  /** Anchor in force just before; index into `anchors`. */
+  /** Distance shown at the touch, before it moved, and official less measured; metres. */
   measured: number | null;
   moved: number | null;
   scaleBefore: number;
@@ -125,12 +127,12 @@ export interface Shown {
 }
 
 export interface HoldMemory {
-  kind: 'hold' | 'cannot be made up' | 'cannot be given back' | 'none';
+  kind: 'hold' | 'cannot be made up' | 'cannot be given back';
   /** m/s as shown, already in the crew's steps. */
   speed: number;
   by: number;
   changedAt: number;
-  /** Index of the stretch (zone or open road) the speed belongs to, as its end in metres. */
+  /** The stretch under one limit that the speed belongs to, by its end in metres. */
   stretch: number;
   frozen: boolean;
 }

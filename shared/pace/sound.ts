@@ -4,7 +4,8 @@ import type { Observation, PulseV1, UnknownObservation } from '#shared/journal/o
 
 type Check = (value: unknown) => boolean;
 
-const number: Check = (v) => typeof v === 'number' && Number.isFinite(v);
+/** Beyond whole numbers that a float64 can tell apart nothing is an instant, a speed or a time. */
+const number: Check = (v) => typeof v === 'number' && Math.abs(v) <= Number.MAX_SAFE_INTEGER;
 const counter: Check = (v) => Number.isInteger(v) && (v as number) >= 0 && (v as number) < 2 ** 32;
 const text: Check = (v) => typeof v === 'string';
 const numberOrNull: Check = (v) => v === null || number(v);
@@ -21,8 +22,8 @@ const FIELDS: { readonly [T in Observation['type']]: Readonly<Record<string, Che
   'button.v1': { button: number, presses: counter },
   'pps.v1': {},
   'fix.v1': { via: oneOf('nmea', 'geolocation'), lat: numberOrNull, lon: numberOrNull, speed: numberOrNull },
-  'sensor-gained.v1': {},
-  'sensor-lost.v1': {},
+  'sensor-gained.v1': { sensor: text },
+  'sensor-lost.v1': { sensor: text },
   'epoch.v1': { mono: number, wall: number, bridgedBy: text, uncertaintyMs: number },
   'clock.v1': { source: oneOf('exchange', 'nmea', 'pps', 'tap', 'wall'), officialMs: number, uncertaintyMs: number },
   'clock-pair.v1': { mono: number, wall: number },

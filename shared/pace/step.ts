@@ -49,10 +49,10 @@ function take(state: RunState, o: Observation): boolean {
       takeClockPair(state.clock, o);
       return false;
     case 'sensor-lost.v1':
-      acts.sensorLostAt = o.at;
+      if (o.sensor !== 'geolocation') acts.sensorLostAt = o.at;
       return false;
     case 'sensor-gained.v1':
-      acts.sensorLostAt = null;
+      if (o.sensor !== 'geolocation') acts.sensorLostAt = null;
       return false;
     case 'pps.v1':
     case 'note.v1':

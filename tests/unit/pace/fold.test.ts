@@ -161,6 +161,13 @@ const anything = fc
 const rules = fc.constantFrom('scheduled' as const, 'beam' as const, 'flag' as const);
 const scaleRule = fc.constantFrom('ratio' as const, 'gain' as const, 'place only' as const);
 
+/** JSON knows no negative zero, and nothing here depends on one; everything else must be the same value. */
+function zeroes(value: unknown): unknown {
+  if (Array.isArray(value)) return value.map(zeroes);
+  if (typeof value === 'object' && value !== null) return Object.fromEntries(Object.entries(value).map(([k, v]) => [k, zeroes(v)]));
+  return value === 0 ? 0 : value;
+}
+
 describe('whatever a journal holds', () => {
   it('step never throws, readout and run sheet always answer, and two folds are one', () => {
     fc.assert(
@@ -187,7 +194,7 @@ describe('whatever a journal holds', () => {
         const straight = fold(observations);
         const half = fold(observations.slice(0, cut));
         const stored = JSON.parse(JSON.stringify(snapshot(half))) as RunState;
-        expect(fold(observations.slice(cut), stored)).toEqual(straight);
+        expect(zeroes(fold(observations.slice(cut), stored))).toEqual(zeroes(straight));
       }),
       { numRuns: 100 },
     );
