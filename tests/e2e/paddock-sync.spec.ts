@@ -96,7 +96,7 @@ test('the outbox brings a run to the real server by its grant alone, over a netw
     report: (error) => {
       throw error;
     },
-    chunkLimit: 4096,
+    chunkLimit: 2048,
   });
   const working = outbox.run();
   await expect.poll(() => run.progress, { timeout: 30_000 }).toMatchObject({ state: 'safe on server', blocked: null });
