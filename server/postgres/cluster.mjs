@@ -75,7 +75,7 @@ export async function openCluster(folder, { say, disposable = false }) {
       const running = await portOfRunning(folder.data);
       if (running === null) {
         if (dataVersion(folder.data) === null) {
-          say('Making the database …');
+          say(`Making the database in ${folder.base} …`);
           await createCluster(folder, binaries, disposable);
         }
         await clearRemains(folder.data);
