@@ -69,7 +69,7 @@ function SetupSection({ setup }: { readonly setup: Setup }) {
           head={[
             { name: 'from' },
             { name: 'wheel scale', unit: 'mm a pulse', figures: true },
-            { name: 'sure to', unit: '± %', figures: true },
+            { name: 'sure to', unit: '± %', figures: true, wide: true },
             { name: 'recorded' },
             { name: 'note' },
           ]}
@@ -87,7 +87,7 @@ function SetupSection({ setup }: { readonly setup: Setup }) {
                 {scale.id === inUse.id ? <span className="font-bold">, in use</span> : null}
               </RowHead>
               <FigureCell>{roundedDigits(scale.mmPerPulse, 3)}</FigureCell>
-              <FigureCell>{roundedDigits(scale.scaleSigma * 100, 2)}</FigureCell>
+              <FigureCell wide>{roundedDigits(scale.scaleSigma * 100, 2)}</FigureCell>
               <Cell className="whitespace-nowrap">{formatDay(scale.recordedMs, deviceZone())}</Cell>
               <Cell>{scale.note}</Cell>
             </Row>

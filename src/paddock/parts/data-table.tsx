@@ -21,7 +21,7 @@ export function DataTable({
               <th
                 key={column.name}
                 scope="col"
-                className={`text-quiet px-2 py-2 align-bottom font-normal first:pl-0 ${column.figures === true ? 'text-right' : 'text-left'}`}
+                className={`text-quiet px-2 py-2 align-bottom font-normal first:pl-0 whitespace-nowrap ${column.figures === true ? 'text-right' : 'text-left'} ${column.wide === true ? ONLY_WIDE : ''}`}
               >
                 {column.name}
                 {column.unit === undefined ? null : <span className="block text-sm">{column.unit}</span>}
@@ -39,10 +39,14 @@ export interface Column {
   readonly name: string;
   readonly unit?: string;
   readonly figures?: boolean;
+  /** Left out on a phone. */
+  readonly wide?: boolean;
 }
 
+const ONLY_WIDE = 'hidden md:table-cell';
+
 export function Row({ children, className = '' }: { readonly children: ReactNode; readonly className?: string }) {
-  return <tr className={`border-hair border-b align-baseline ${className}`}>{children}</tr>;
+  return <tr className={`border-hair border-b align-top ${className}`}>{children}</tr>;
 }
 
 export function RowHead({ children }: { readonly children: ReactNode }) {
@@ -54,12 +58,14 @@ export function RowHead({ children }: { readonly children: ReactNode }) {
 }
 
 export function Cell({ children, className = '' }: { readonly children: ReactNode; readonly className?: string }) {
-  return <td className={`px-2 py-2 first:pl-0 ${className}`}>{children}</td>;
+  return <td className={`min-w-36 px-2 py-2 first:pl-0 ${className}`}>{children}</td>;
 }
 
 /** A figure in its column; a dash where there is none. */
-export function FigureCell({ children }: { readonly children: string | null }) {
+export function FigureCell({ children, wide = false }: { readonly children: string | null; readonly wide?: boolean }) {
   return (
-    <td className="font-figure px-2 py-2 text-right whitespace-pre first:pl-0">{children ?? <span className="text-quiet">–</span>}</td>
+    <td className={`font-figure px-2 py-2 text-right whitespace-pre first:pl-0 ${wide ? ONLY_WIDE : ''}`}>
+      {children ?? <span className="text-quiet">–</span>}
+    </td>
   );
 }

@@ -11,11 +11,11 @@ export function LegTable({ legs, unit }: { readonly legs: readonly LegRow[]; rea
       caption="checkpoints"
       head={[
         { name: 'checkpoint' },
-        { name: 'elapsed', figures: true },
+        { name: 'elapsed', figures: true, wide: true },
         { name: 'time error', unit: 'seconds', figures: true },
         { name: 'planned', unit: 'seconds', figures: true },
-        { name: 'official', unit, figures: true },
-        { name: 'measured', unit, figures: true },
+        { name: 'official', unit, figures: true, wide: true },
+        { name: 'measured', unit, figures: true, wide: true },
         { name: 'moved', unit: 'm', figures: true },
         { name: 'wheel scale', unit: 'mm a pulse' },
       ]}
@@ -37,11 +37,11 @@ function Leg({ leg, unit }: { readonly leg: LegRow; readonly unit: DistanceUnit 
           {leg.duty === 'start' ? '' : `, ${BY_WORDS[leg.by]}`}
         </span>
       </RowHead>
-      <FigureCell>{leg.elapsedS === null ? null : formatDuration(leg.elapsedS, 2)}</FigureCell>
+      <FigureCell wide>{leg.elapsedS === null ? null : formatDuration(leg.elapsedS, 2)}</FigureCell>
       <FigureCell>{leg.timeErrorS === null ? null : timeErrorText(leg.timeErrorS, 2)}</FigureCell>
       <FigureCell>{leg.duty === 'start' || leg.duty === 'stop board' ? null : timeErrorText(leg.plannedS, 2)}</FigureCell>
-      <FigureCell>{formatDistance(leg.officialM, unit, 3)}</FigureCell>
-      <FigureCell>{leg.measuredM === null ? null : formatDistance(leg.measuredM, unit, 3)}</FigureCell>
+      <FigureCell wide>{formatDistance(leg.officialM, unit, 3)}</FigureCell>
+      <FigureCell wide>{leg.measuredM === null ? null : formatDistance(leg.measuredM, unit, 3)}</FigureCell>
       <FigureCell>{movedText(leg.movedM)}</FigureCell>
       <Cell>
         <Scale leg={leg} />

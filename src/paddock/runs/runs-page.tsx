@@ -49,7 +49,7 @@ function RunTable({ rows }: { readonly rows: readonly RunRow[] }) {
       head={[
         { name: 'run' },
         { name: 'finish', unit: 'seconds', figures: true },
-        { name: 'sure to', unit: '± s', figures: true },
+        { name: 'sure to', unit: '± s', figures: true, wide: true },
         { name: 'outcome' },
         { name: 'journal' },
       ]}
@@ -74,7 +74,7 @@ function Run({ row }: { readonly row: RunRow }) {
         </span>
       </RowHead>
       <FigureCell>{server?.finish ? timeErrorText(server.finish.timeErrorS, 2) : null}</FigureCell>
-      <FigureCell>{server?.finish ? roundedDigits(server.finish.sigmaS, 2) : null}</FigureCell>
+      <FigureCell wide>{server?.finish ? roundedDigits(server.finish.sigmaS, 2) : null}</FigureCell>
       <Cell>
         {outcomeWords(row)}
         {server?.counts === true ? <span className="block font-bold">this run counts</span> : null}
