@@ -30,7 +30,14 @@ interface Last {
   readonly arrival: number;
 }
 
-export function createBoxClock(): BoxClock {
+/** @param pace session microseconds in one of the wire's: delays of the path happen in the wire's time (1 on a real run). */
+export function createBoxClock(pace = 1): BoxClock {
+  const [backUs, aheadUs, staleUs, windowUs] = [BACK_US, AHEAD_US, STALE_US, STALE_WINDOW_US].map((us) => us * pace) as [
+    number,
+    number,
+    number,
+    number,
+  ];
   const envelope = createLowerEnvelope(ALLOWANCE);
   let last: Last | null = null;
   let restarts = 0;
@@ -38,14 +45,14 @@ export function createBoxClock(): BoxClock {
 
   const startAfresh = (arrival: number): void => {
     envelope.reset();
-    window = { until: arrival + STALE_WINDOW_US, least: Number.POSITIVE_INFINITY };
+    window = { until: arrival + windowUs, least: Number.POSITIVE_INFINITY };
   };
 
   const isStale = (arrival: number, lateness: number): boolean => {
     window.least = Math.min(window.least, lateness);
     if (arrival < window.until) return false;
-    const stale = window.least > STALE_US;
-    window = { until: arrival + STALE_WINDOW_US, least: Number.POSITIVE_INFINITY };
+    const stale = window.least > staleUs;
+    window = { until: arrival + windowUs, least: Number.POSITIVE_INFINITY };
     return stale;
   };
 
@@ -55,7 +62,7 @@ export function createBoxClock(): BoxClock {
       const offset = arrivalUs - total;
       const before = envelope.value;
       if (last === null || before === null) startAfresh(arrivalUs);
-      else if (total - last.total < -BACK_US || offset - before < -AHEAD_US || isStale(arrivalUs, offset - before)) {
+      else if (total - last.total < -backUs || offset - before < -aheadUs || isStale(arrivalUs, offset - before)) {
         restarts += 1;
         startAfresh(arrivalUs);
       }

@@ -34,11 +34,13 @@ export interface SentenceReader {
 export interface SentenceReaderOptions {
   /** An instant the present cannot precede, unix ms: dates over ten years older get the lost 1024 weeks back. */
   readonly dateFloorMs?: number | null;
+  /** Rate of the session clock, by which arrivals are stamped; 1 on a real run. */
+  readonly pace?: number;
 }
 
 export function createSentenceReader(options: SentenceReaderOptions = {}): SentenceReader {
   const lines = createLineAssembler();
-  const box = createBoxClock();
+  const box = createBoxClock(options.pace ?? 1);
   const decodeGnss = createGnssDecoder(options.dateFloorMs ?? null);
   let goodLines = 0;
   let garbledLines = 0;

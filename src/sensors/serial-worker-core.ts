@@ -60,7 +60,7 @@ async function readUntil(open: Open, scope: SerialWorkerScope, stop: AbortSignal
 
 /** One line's reader, batches and status, as the port loop drives them. */
 function createLine(open: Open, scope: SerialWorkerScope) {
-  const reader = createSentenceReader({ dateFloorMs: open.dateFloorMs });
+  const reader = createSentenceReader({ dateFloorMs: open.dateFloorMs, pace: open.rate });
   const outbox = createSerialOutbox((observations) => scope.post({ type: 'observations', observations }));
   const health = createSerialHealth();
   let reported: { readonly status: SensorStatus; readonly at: number } | null = null;

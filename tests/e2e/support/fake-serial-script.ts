@@ -21,9 +21,11 @@ async function installSource(): Promise<string> {
 /** A page remembers the grant as a browser does; a worker is only started once there is one. */
 const MEMORY = `
   const key = 'fake-serial-granted';
-  const memory = typeof localStorage === 'undefined'
+  // a worker has no such storage, a blank page may not reach it
+  const storage = (() => { try { return globalThis.localStorage; } catch { return undefined; } })();
+  const memory = storage === undefined
     ? { get: () => true, grant() {} }
-    : { get: () => localStorage.getItem(key) === 'yes', grant: () => localStorage.setItem(key, 'yes') };`;
+    : { get: () => storage.getItem(key) === 'yes', grant: () => storage.setItem(key, 'yes') };`;
 
 export async function fakeSerialScript(): Promise<string> {
   return `{

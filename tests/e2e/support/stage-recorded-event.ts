@@ -1,3 +1,4 @@
+import { randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { ANONYMOUS } from '#server/auth/actor.ts';
 import { connect } from '#server/db/connect.ts';
@@ -51,7 +52,7 @@ async function insertAll(ctx: ServiceContext, { userId, teamId }: { userId: stri
   const { courseBook } = await publishVersion(ctx, bookId, userId, content);
   const { wheel } = pack;
   const car = await insertCar(ctx, teamId, {
-    name: pack.car.name,
+    name: `${pack.car.name} ${randomUUID().slice(0, 8)}`,
     dialReadsHighPercent: pack.car.dialReadsHighPercent,
     setup: { name: wheel.setupName, tyre: '', channel: wheel.channel, pulsesPerTurn: wheel.pulsesPerTurn },
     scales: [{ mmPerPulse: wheel.mmPerPulse, scaleSigma: wheel.scaleSigma, source: 'nominal', note: '', recordedAt: new Date(ctx.now()) }],
