@@ -1,6 +1,6 @@
 import { encodeBlock, type Journalled } from '#shared/journal/block.ts';
 import { isSensorObservation } from '#shared/journal/observation.ts';
-import type { StoredBlock } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 import type { RunEnvironment } from './run-environment.ts';
 
 /** A crash may lose this much of the sensors' observations, and no act of a person. */

@@ -1,4 +1,5 @@
-import type { JournalStore, StoredBlock } from '#src/storage/journal-store.ts';
+import type { JournalStore } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 import type { RunEnvironment } from './run-environment.ts';
 import type { RunStatus } from './run-session-contract.ts';
 

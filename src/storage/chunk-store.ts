@@ -1,6 +1,6 @@
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { Result } from '#shared/result.ts';
-import type { StorageFailure, StoredBlock } from './journal-store.ts';
+import type { StorageFailure, StoredBlock } from './stored-block.ts';
 import type { UploadProgress } from './upload-progress.ts';
 
 /** What the outbox keeps on this device. Every write resolves only when it is committed. */

@@ -1,7 +1,7 @@
 import { ok, type Result } from '#shared/result.ts';
 import type { JournalDatabase } from './journal-database.ts';
-import type { StorageFailure } from './journal-store.ts';
 import { failureOf, isClosed } from './storage-fault.ts';
+import type { StorageFailure } from './stored-block.ts';
 
 /** Runs `work` and makes failures values. A database that the browser or another window closed is opened again, once. */
 export async function guarded<T>(db: JournalDatabase, work: () => Promise<T>): Promise<Result<T, StorageFailure>> {

@@ -2,10 +2,11 @@ import { checkBlock } from '#shared/journal/block.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { KeptChunk } from './chunk-store.ts';
 import type { BlockRow, JournalDatabase } from './journal-database.ts';
-import type { StoredBlock, StoredRun } from './journal-store.ts';
+import type { StoredRun } from './journal-store.ts';
 import type { MirrorContent } from './mirror-frames.ts';
 import type { OpenMirror } from './mirror-journal.ts';
 import { newRunRow } from './run-row.ts';
+import type { StoredBlock } from './stored-block.ts';
 
 /**
  * Two copies of one run, the database's and the mirror's: the longer valid one wins and the other is made like it. What is cut

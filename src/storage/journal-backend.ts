@@ -2,12 +2,13 @@ import { ok, type Result } from '#shared/result.ts';
 import { chunkOperations } from './chunk-operations.ts';
 import { guarded } from './guarded.ts';
 import type { JournalDatabase } from './journal-database.ts';
-import type { JournalStore, StorageFailure, StoredRun, StoredRunSummary, StoreFacts } from './journal-store.ts';
+import type { JournalStore, StoredRun, StoredRunSummary, StoreFacts } from './journal-store.ts';
 import type { MirrorFolder } from './mirror-file.ts';
 import { Mirrors } from './mirrors.ts';
 import { packOperations } from './pack-operations.ts';
 import { appendBlock, createRun } from './run-writer.ts';
 import { storageFail, valueOrThrow } from './storage-fault.ts';
+import type { StorageFailure } from './stored-block.ts';
 
 export interface BackendPlace {
   readonly db: JournalDatabase;

@@ -1,8 +1,9 @@
 import Dexie, { type EntityTable, type Table } from 'dexie';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { KeptChunk } from './chunk-store.ts';
-import type { Snapshot, StoredBlock } from './journal-store.ts';
+import type { Snapshot } from './journal-store.ts';
 import type { StoredPack } from './pack-store.ts';
+import type { StoredBlock } from './stored-block.ts';
 import type { UploadProgress } from './upload-progress.ts';
 
 export const DATABASE_NAME = 'evenline-journal';

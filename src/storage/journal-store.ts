@@ -2,6 +2,7 @@ import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { Result } from '#shared/result.ts';
 import type { ChunkStore } from './chunk-store.ts';
 import type { PackStore } from './pack-store.ts';
+import type { StorageFailure, StoredBlock } from './stored-block.ts';
 import type { UploadProgress } from './upload-progress.ts';
 
 /**
@@ -36,12 +37,6 @@ export interface Snapshot {
   readonly state: unknown;
 }
 
-export interface StoredBlock {
-  readonly firstSeq: number;
-  readonly count: number;
-  readonly bytes: Uint8Array;
-}
-
 export interface StoredRun {
   readonly header: RunHeader;
   readonly blocks: readonly StoredBlock[];
@@ -65,9 +60,4 @@ export interface StoreFacts {
   readonly warning: string | null;
   /** Runs whose database copy was mended from the mirror since this window opened. */
   readonly mendedRuns: readonly string[];
-}
-
-export interface StorageFailure {
-  readonly code: 'quota' | 'unavailable' | 'corrupt' | 'unknown-run' | 'out-of-order' | 'not-safe';
-  readonly message: string;
 }

@@ -4,7 +4,7 @@ import { crc32 } from '#shared/journal/crc32.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import { utf8Decode, utf8Encode } from '#shared/journal/utf8.ts';
 import type { KeptChunk } from './chunk-store.ts';
-import type { StoredBlock } from './journal-store.ts';
+import type { StoredBlock } from './stored-block.ts';
 
 /**
  * The mirror of one run: frames one behind the other, each length, CRC-32 of the payload (both little-endian, 4 bytes) and

@@ -1,8 +1,8 @@
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { KeptChunk } from './chunk-store.ts';
-import type { StoredBlock } from './journal-store.ts';
 import type { MirrorFile, MirrorFolder } from './mirror-file.ts';
 import { blockFrame, chunkFrame, headerFrame, type MirrorContent, readMirror } from './mirror-frames.ts';
+import type { StoredBlock } from './stored-block.ts';
 
 const SUFFIX = '.journal';
 const AGAIN_MS = 50;

@@ -1,9 +1,10 @@
 import type { KeptChunk } from './chunk-store.ts';
 import { healDatabase, healMirror } from './heal.ts';
 import type { JournalDatabase } from './journal-database.ts';
-import type { StoredBlock, StoredRun } from './journal-store.ts';
+import type { StoredRun } from './journal-store.ts';
 import type { MirrorFolder } from './mirror-file.ts';
 import { MirrorJournal, type OpenMirror } from './mirror-journal.ts';
+import type { StoredBlock } from './stored-block.ts';
 
 /** A reloaded page is back before the browser has freed the files of its former self. */
 const PATIENCE_MS = 300;

@@ -1,6 +1,6 @@
 import type { Pack } from '#shared/course/pack.ts';
 import type { Result } from '#shared/result.ts';
-import type { StorageFailure } from './journal-store.ts';
+import type { StorageFailure } from './stored-block.ts';
 
 /** Packs on this device: all that the cockpit needs for an attempt, with no connection. One pack an attempt, the newest. */
 export interface PackStore {

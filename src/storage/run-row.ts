@@ -1,7 +1,7 @@
 import { decodeBlock } from '#shared/journal/block.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { RunRow } from './journal-database.ts';
-import type { StoredBlock } from './journal-store.ts';
+import type { StoredBlock } from './stored-block.ts';
 import { NOTHING_SENT } from './upload-progress.ts';
 
 export function newRunRow(header: RunHeader, blocks: readonly StoredBlock[] = []): RunRow {

@@ -3,10 +3,10 @@ import type { RunHeader } from '#shared/journal/run-header.ts';
 import { ok, type Result } from '#shared/result.ts';
 import { guarded } from './guarded.ts';
 import type { JournalDatabase } from './journal-database.ts';
-import type { StorageFailure, StoredBlock } from './journal-store.ts';
 import type { Mirrors } from './mirrors.ts';
 import { endsRun, newRunRow } from './run-row.ts';
 import { storageFail } from './storage-fault.ts';
+import type { StorageFailure, StoredBlock } from './stored-block.ts';
 
 /** Writes of one journal: database first, strictly, then the mirror. One at a time and in order: the worker sees to that. */
 

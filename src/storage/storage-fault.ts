@@ -1,5 +1,5 @@
 import { fail, type Result } from '#shared/result.ts';
-import type { StorageFailure } from './journal-store.ts';
+import type { StorageFailure } from './stored-block.ts';
 
 const MESSAGES: Readonly<Record<StorageFailure['code'], string>> = {
   quota: 'This device has no room left. Free some space; the run goes on in memory and is written as soon as there is room.',

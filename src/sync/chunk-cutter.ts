@@ -1,5 +1,5 @@
 import { fail, ok, type Result } from '#shared/result.ts';
-import type { StoredBlock } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 
 /** Whole blocks up to this many bytes make a chunk. */
 export const CHUNK_LIMIT_BYTES = 256 * 1024;

@@ -1,6 +1,6 @@
 import { fail, ok, type Result } from '#shared/result.ts';
 import type { ChunkStore, KeptChunk, OutboxRun } from '#src/storage/chunk-store.ts';
-import type { StorageFailure } from '#src/storage/journal-store.ts';
+import type { StorageFailure } from '#src/storage/stored-block.ts';
 import type { UploadProgress } from '#src/storage/upload-progress.ts';
 import { bytesOfCut, cutChunks } from './chunk-cutter.ts';
 import { chainDigest, FIRST_DIGEST, type Sha256 } from './digest-chain.ts';

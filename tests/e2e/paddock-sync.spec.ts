@@ -7,7 +7,7 @@ import { encodeBlock } from '#shared/journal/block.ts';
 import { fromNdjson } from '#shared/journal/ndjson.ts';
 import type { Observation } from '#shared/journal/observation.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
-import type { StoredBlock } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 import { createOutbox } from '#src/sync/outbox.ts';
 import type { UploadFetch } from '#src/sync/upload-client.ts';
 import { addRun, type Device, memoryOutboxStore } from '#tests/client/sync/memory-outbox-store.ts';

@@ -1,7 +1,8 @@
 import { readdirSync } from 'node:fs';
 import type { Page } from 'playwright/test';
 import { decodeBlock, encodeBlock, type Journalled } from '#shared/journal/block.ts';
-import type { StoredBlock, StoredRun, StoreFacts } from '#src/storage/journal-store.ts';
+import type { StoredRun, StoreFacts } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 import { expect, test } from '#tests/e2e/fixtures.ts';
 import { HEADER } from '#tests/unit/journal/header.ts';
 

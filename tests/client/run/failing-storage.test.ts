@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { fail } from '#shared/result.ts';
-import type { JournalStore, StorageFailure } from '#src/storage/journal-store.ts';
+import type { JournalStore } from '#src/storage/journal-store.ts';
 import { storageFailure } from '#src/storage/storage-fault.ts';
+import type { StorageFailure } from '#src/storage/stored-block.ts';
 import { must } from '#tests/client/storage/device.ts';
 import { Car } from './car.ts';
 import { Rig, withCalls } from './rig.ts';

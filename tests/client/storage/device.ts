@@ -3,7 +3,8 @@ import { encodeBlock, type Journalled } from '#shared/journal/block.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import { createJournalBackend } from '#src/storage/journal-backend.ts';
 import { DATABASE_NAME, JournalDatabase } from '#src/storage/journal-database.ts';
-import type { JournalStore, StoredBlock } from '#src/storage/journal-store.ts';
+import type { JournalStore } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 import { HEADER } from '#tests/unit/journal/header.ts';
 import { MemoryDisk, type MemoryWindow } from './memory-disk.ts';
 

@@ -1,7 +1,7 @@
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import { ok } from '#shared/result.ts';
 import type { ChunkStore, KeptChunk } from '#src/storage/chunk-store.ts';
-import type { StoredBlock } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 import { NOTHING_SENT, type UploadProgress } from '#src/storage/upload-progress.ts';
 
 /** A device's storage that survives the lives of its pages. `step` stands for the disk: a page may die there. */

@@ -1,6 +1,6 @@
 import type { Pack } from '#shared/course/pack.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
-import type { StoredBlock } from '#src/storage/journal-store.ts';
+import type { StoredBlock } from '#src/storage/stored-block.ts';
 
 /** A header as far as the outbox reads one: it asks the class's aids, the rest travels unread. */
 export function sampleHeader(runId: string, dataLink = false): RunHeader {
