@@ -23,7 +23,12 @@ export interface SimulatorSourceDeps {
   readonly drive?: Omit<DriveOptions, 'pack' | 'seed'>;
 }
 
-const TICK_MS = 50;
+/**
+ * Session time between two deliveries, and the real time that it may take: the engine takes a wheel for quiet after a second
+ * of session time, and thirtyfold that is two frames of the screen.
+ */
+const DELIVER_MS = 240;
+const TICK_MS = { least: 8, most: 50 } as const;
 const REPORT_US = 1_000_000;
 /** Longest stretch driven on one reading of the display: late timers and fast clocks are caught up in such steps. */
 const SLICE_US = 500_000;
@@ -77,13 +82,14 @@ function run(drive: Drive, { clock, display, act }: SimulatorSourceDeps, listene
       if (o.type === 'tap.v1') act?.({ type: 'tap.v1', input: 'glass', checkpoint: o.checkpoint }, pageStamp(clock, o.at));
     }
   };
-  const timer = setInterval(() => {
+  const deliver = (): void => {
     const now = clock.now();
     while (open && driven < now) slice(Math.min(now, driven + SLICE_US));
     if (!open || now - told < REPORT_US * clock.rate) return;
     told = now;
     tell('live');
-  }, TICK_MS);
+  };
+  const timer = setInterval(deliver, Math.min(TICK_MS.most, Math.max(TICK_MS.least, DELIVER_MS / clock.rate)));
   tell('live');
   return () => {
     open = false;

@@ -25,6 +25,22 @@ describe('simulator source', () => {
     expect(runs[1]).toEqual(runs[0]);
   });
 
+  it.each([1, 10, 30])('never leaves the wheel unheard for half a second of the clock at %i×', async (rate) => {
+    const { source, clock, run } = makeSimulator({ granted: true, rate, deps: { drive: { releaseAt: RELEASE } } });
+    const heard = recordingListener();
+    await source.open(heard.listener, { ask: false });
+    await run(20_000 / rate);
+    const ages: number[] = [];
+    for (let ms = 0; ms < 20_000 / rate; ms++) {
+      await run(1);
+      const newest = heard.observations.findLast((o) => o.type === 'pulse.v1');
+      ages.push(clock.now() - (newest?.at ?? 0));
+    }
+    await source.close();
+    expect(Math.max(...ages)).toBeLessThan(500_000);
+    expect(Math.min(...ages)).toBeGreaterThanOrEqual(0);
+  });
+
   it('catches a late timer up by time', async () => {
     const { source, clock } = makeSimulator({ granted: true, rate: 20, deps: { drive: { releaseAt: RELEASE } } });
     const heard = recordingListener();
