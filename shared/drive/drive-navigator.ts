@@ -13,6 +13,8 @@ export interface NavigatorHabits {
   readonly missed: number;
   /** Share of touches that are 3 s late or at a wrong place. */
   readonly mistaken: number;
+  /** Checkpoints whose touch is so for certain. */
+  readonly mistakenAt: readonly string[];
 }
 
 export type Tap = Unnumbered<TapV1>;
@@ -34,7 +36,13 @@ const TOUCHED: ReadonlySet<string> = new Set(['settle', 'scale', 'place']);
 /** A navigator whose lead the pack knows to 50 ms. */
 export function usualHabits(pack: Pack, seed: number): NavigatorHabits {
   const { tapLeadMs, tapScatterMs } = pack.settings;
-  return { leadMs: tapLeadMs.glass + createRandom(seed, 'lead').gauss(LEAD_SIGMA_MS), scatterMs: tapScatterMs, missed: 0.05, mistaken: 0 };
+  return {
+    leadMs: tapLeadMs.glass + createRandom(seed, 'lead').gauss(LEAD_SIGMA_MS),
+    scatterMs: tapScatterMs,
+    missed: 0.05,
+    mistaken: 0,
+    mistakenAt: [],
+  };
 }
 
 export function createDriveNavigator(places: readonly DrivePlace[], habits: NavigatorHabits, seed: number): DriveNavigator {
@@ -43,7 +51,7 @@ export function createDriveNavigator(places: readonly DrivePlace[], habits: Navi
   const targets = places
     .filter(({ checkpoint }) => TOUCHED.has(checkpoint.duty) && random.unit() >= habits.missed)
     .map(({ checkpoint, at }) => {
-      const mistaken = random.unit() < habits.mistaken;
+      const mistaken = random.unit() < habits.mistaken || habits.mistakenAt.includes(checkpoint.id);
       const wrongPlace = mistaken && random.unit() < 0.5;
       if (mistaken && !wrongPlace) late.add(checkpoint.id);
       const off = wrongPlace ? random.range(WRONG_PLACE.low, WRONG_PLACE.high) * (random.unit() < 0.5 ? -1 : 1) : 0;

@@ -89,7 +89,18 @@ function fromRest(state: RunState, standing: StartPart, launch: Launch, d: numbe
 
 function firstAnchor(state: RunState, at: number, d: number, w: number, g: number): Anchor {
   const { mmPerPulse, scaleSigma } = state.pack.wheel;
-  return { at, d, w, g, mmPerPulse, scaleVariance: scaleSigma * scaleSigma, variance: START_VARIANCE };
+  return {
+    at,
+    d,
+    w,
+    g,
+    mmPerPulse,
+    scaleVariance: scaleSigma * scaleSigma,
+    variance: START_VARIANCE,
+    covariance: 0,
+    scaleFrom: { at, d, w, g },
+    cold: null,
+  };
 }
 
 /** Has the car moved well away from where it was at the gate? */

@@ -1,34 +1,54 @@
 import type { CourseModel, Place } from '#shared/pace/course-model.ts';
-import { correctScale, type ScaleOutcome } from '#shared/pace/derive-scale.ts';
-import { distanceOf, distanceVariance } from '#shared/pace/distance.ts';
-import type { Anchor, Derived, DerivedTap, PlacePassing, RunState, TapAct } from '#shared/pace/run-state.ts';
+import { correctScale } from '#shared/pace/derive-scale.ts';
+import { distanceOf, distanceVariance, lossVariance } from '#shared/pace/distance.ts';
+import type { Anchor, DerivedTap, PlacePassing, RunState, TapAct } from '#shared/pace/run-state.ts';
 import { placeSigma } from '#shared/pace/scale.ts';
 
-/** What becomes of one tap, given everything before it. */
+/** What becomes of one tap, given everything before it and what it is taken for. */
+
+/**
+ * plain: a touch at its place, which teaches the scale by its rule. rescale: the same, but the tyre had changed more than tyres
+ * do, so less is thought of the scale before it. jump: right, but the distance had jumped before it (counts lost or wrong), so
+ * it places and teaches nothing. mistaken: a touch too late or at another place.
+ */
+export type TakenFor = 'plain' | 'rescale' | 'jump' | 'mistaken';
 
 export interface TapContext {
   readonly state: RunState;
   readonly model: CourseModel;
-  readonly derived: Derived;
-  readonly firstLeg: boolean;
+  /** The first one stands at the start; empty before it. */
+  readonly anchors: readonly Anchor[];
+  /** Taps before this one by the instant that counts. */
+  readonly judged: readonly JudgedTap[];
+  /** Places, by index, that a tap before this one holds. */
+  readonly held: ReadonlySet<number>;
 }
 
 export interface JudgedTap {
+  readonly tap: TapAct;
   readonly verdict: DerivedTap;
-  /** The new anchor, where the tap is used. */
-  readonly anchor: Anchor | null;
-  readonly place: number;
+  /** Where the tap is used. */
+  readonly use: { readonly anchor: Anchor; readonly place: number; readonly passing: PlacePassing } | null;
+  /** Misfit² over its variance; null where there was nothing to compare, or where the navigator overrules. */
+  readonly strain: number | null;
+  /** −2 ln of how probable this is. */
+  readonly cost: number;
 }
 
 /** A second touch so soon is the same hand, not another place. */
 const DOUBLE_TOUCH_US = 2_000_000;
-/** Beyond this many sigmas a tap is doubted: not used, offered. */
+/** Beyond this many sigmas a tap that the navigator insists on tells of a wrong touch or a lost count. */
 const GATE_SIGMAS = 3.5;
 /** One touch is enough within this of the place, or within so many sigmas where distance is less sure. */
 const LEAST_REACH_M = 150;
 const REACH_SIGMAS = 4;
 /** Variance of reading between two pulses, m². */
 const PULSE_VARIANCE = 0.1;
+/** −2 ln of how rare a mistaken touch is (and how far it may be off), and a jump of distance or scale. Own judgement, tried by simulation. */
+const COST_OF_MISTAKE = 23;
+const COST_OF_JUMP = 14;
+/** ln 2π, of the normal density. */
+const LN_2_PI = Math.log(2 * Math.PI);
 
 /** All taps by the instant that counts. */
 export const tapQueue = (state: RunState): readonly TapAct[] => [...state.acts.taps].sort((a, b) => a.t - b.t || a.seq - b.seq);
@@ -36,32 +56,48 @@ export const tapQueue = (state: RunState): readonly TapAct[] => [...state.acts.t
 /** How far from a place a touch still belongs to it, metres either side. */
 export const reachOf = (variance: number): number => Math.max(LEAST_REACH_M, REACH_SIGMAS * Math.sqrt(variance));
 
-export function judgeTap(context: TapContext, tap: TapAct): JudgedTap {
-  const { state, derived } = context;
-  const anchor = derived.anchors[derived.anchors.length - 1];
+export function judgeTap(context: TapContext, tap: TapAct, takenFor: TakenFor): JudgedTap {
+  const { state, anchors } = context;
+  const anchor = anchors[anchors.length - 1];
   const scale = anchor?.mmPerPulse ?? state.pack.wheel.mmPerPulse;
-  const plain = (verdict: DerivedTap['verdict'], checkpoint = tap.checkpoint, moved = 0): JudgedTap => ({
+  const unused = (
+    verdict: DerivedTap['verdict'],
+    cost = 0,
+    checkpoint = tap.checkpoint,
+    moved = 0,
+    strain: number | null = null,
+  ): JudgedTap => ({
+    tap,
     verdict: { seq: tap.seq, checkpoint, verdict, moved, scaleBefore: scale, scaleAfter: scale, scaleKept: null },
-    anchor: null,
-    place: -1,
+    use: null,
+    strain,
+    cost,
   });
-  if (state.acts.voided.includes(tap.seq)) return plain('voided');
-  if (tap.raw === null) return plain('provisional');
-  if (anchor === undefined || tap.t < anchor.at) return plain('no place near');
+  if (state.acts.voided.includes(tap.seq)) return unused('voided');
+  if (tap.raw === null) return unused('provisional');
+  if (anchor === undefined || tap.t < anchor.at) return unused('no place near');
   const explicit = movedTo(state, tap.seq);
   const trusted = explicit !== null || state.acts.accepted.includes(tap.seq);
-  if (!trusted && isDoubleTouch(context, tap)) return plain('repeated');
+  if (!trusted && isDoubleTouch(context, tap)) return unused('repeated');
   const measured = distanceOf(anchor, tap.raw);
-  const grown = distanceVariance(anchor, tap.raw, tap.t, context.firstLeg, state.odometer.losses);
+  const grown = distanceVariance(anchor, tap.raw, tap.t, (anchors[0] as Anchor).at, state.odometer.losses);
   const choice = choosePlace(context, tap, measured, explicit, reachOf(grown));
-  if (typeof choice === 'string') return plain(choice);
+  if (choice === 'repeated') return unused(choice);
+  if (choice === 'no place near') return unused(choice, COST_OF_MISTAKE);
   const place = context.model.places[choice] as Place;
   const moved = place.d - measured;
   const sigma = placeSigma(state.pack.settings.tapScatterMs / 1000, tap.raw.v, place.surveySigma);
-  const doubtful = Math.abs(moved) > GATE_SIGMAS * Math.sqrt(grown + sigma * sigma + PULSE_VARIANCE);
-  if (doubtful && !trusted) return plain('doubted', place.checkpoint.id, moved);
-  return use(context, tap, { anchor, index: choice, place, sigma, moved, doubtful });
+  const variance = grown + sigma * sigma + PULSE_VARIANCE;
+  const strain = (moved * moved) / variance;
+  if (takenFor === 'mistaken' && !trusted) return unused('doubted', COST_OF_MISTAKE, place.checkpoint.id, moved, strain);
+  const story = trusted ? (strain > GATE_SIGMAS * GATE_SIGMAS ? 'jump' : 'plain') : takenFor;
+  const rarity = story === 'plain' || trusted ? 0 : COST_OF_JUMP;
+  const cost = rarity + likelihoodCost(moved, story === 'plain' ? variance : variance + moved * moved);
+  const used = use(context, tap, { anchor, index: choice, place, sigma, moved, story });
+  return { tap, ...used, strain: trusted ? null : strain, cost };
 }
+
+const likelihoodCost = (misfit: number, variance: number): number => (misfit * misfit) / variance + Math.log(variance) + LN_2_PI;
 
 interface Use {
   readonly anchor: Anchor;
@@ -69,65 +105,56 @@ interface Use {
   readonly place: Place;
   readonly sigma: number;
   readonly moved: number;
-  readonly doubtful: boolean;
+  readonly story: TakenFor;
 }
 
-function use({ state, derived }: TapContext, tap: TapAct, { anchor, index, place, sigma, moved, doubtful }: Use): JudgedTap {
+function use(
+  { state, anchors }: TapContext,
+  tap: TapAct,
+  { anchor, index, place, sigma, moved, story }: Use,
+): Pick<JudgedTap, 'verdict' | 'use'> {
   const raw = tap.raw as NonNullable<TapAct['raw']>;
-  const corrected = derived.passings.some((p) => p.by === 'tap' && p.scaleKept === null);
-  const scale: ScaleOutcome = correctScale({
+  const at = Math.round(tap.t);
+  const { duty, id } = place.checkpoint;
+  const { kept, ...scale } = correctScale({
     rule: state.pack.settings.scaleRule,
-    // a doubted tap that was accepted tells of a wrong touch or a lost count: it places, and must not teach the scale
-    duty: doubtful && place.checkpoint.duty === 'scale' ? 'place' : place.checkpoint.duty,
+    // after a jump the counts of the leg are not to be trusted: it places, and must not teach the scale
+    duty: story === 'jump' && duty === 'scale' ? 'place' : duty,
     anchor,
     raw,
+    at,
     d: place.d,
     sigma,
-    corrected,
+    movedAt: (anchors[0] as Anchor).at,
+    lost: lossVariance(state.odometer.losses, anchor.scaleFrom.at, at),
+    changed: story === 'rescale' && place.d > anchor.d ? (moved / (place.d - anchor.d)) ** 2 : 0,
   });
-  const at = Math.round(tap.t);
-  const passing: PlacePassing = {
-    by: 'tap',
-    at,
-    tap: tap.seq,
-    measured: place.d - moved,
-    moved,
-    scaleBefore: anchor.mmPerPulse,
-    scaleAfter: scale.mmPerPulse,
-    scaleKept: scale.kept,
-  };
-  derived.passings[index] = passing;
+  const here = { at, d: place.d, w: raw.w, g: raw.g };
+  const scales = { scaleBefore: anchor.mmPerPulse, scaleAfter: scale.mmPerPulse, scaleKept: kept };
   return {
-    verdict: {
-      seq: tap.seq,
-      checkpoint: place.checkpoint.id,
-      verdict: 'used',
-      moved,
-      scaleBefore: anchor.mmPerPulse,
-      scaleAfter: scale.mmPerPulse,
-      scaleKept: scale.kept,
+    verdict: { seq: tap.seq, checkpoint: id, verdict: 'used', moved, ...scales },
+    use: {
+      place: index,
+      passing: { by: 'tap', at, tap: tap.seq, measured: place.d - moved, moved, ...scales },
+      anchor: {
+        ...here,
+        ...scale,
+        variance: sigma * sigma + PULSE_VARIANCE,
+        scaleFrom: kept === null || story === 'jump' || duty === 'settle' ? here : anchor.scaleFrom,
+      },
     },
-    anchor: {
-      at,
-      d: place.d,
-      w: raw.w,
-      g: raw.g,
-      mmPerPulse: scale.mmPerPulse,
-      scaleVariance: scale.variance,
-      variance: sigma * sigma + PULSE_VARIANCE,
-    },
-    place: index,
   };
 }
 
 const movedTo = (state: RunState, seq: number): string | null => state.acts.moved.findLast((m) => m.tap === seq)?.checkpoint ?? null;
 
-function isDoubleTouch({ state, derived }: TapContext, tap: TapAct): boolean {
-  return derived.taps.some((earlier) => {
-    if (earlier.verdict !== 'used' && earlier.verdict !== 'doubted') return false;
-    const act = state.acts.taps.find((t) => t.seq === earlier.seq);
-    return act !== undefined && Math.abs(tap.t - act.t) < DOUBLE_TOUCH_US;
-  });
+function isDoubleTouch({ judged }: TapContext, tap: TapAct): boolean {
+  for (let i = judged.length - 1; i >= 0; i--) {
+    const earlier = judged[i] as JudgedTap;
+    if (tap.t - earlier.tap.t >= DOUBLE_TOUCH_US) return false;
+    if (earlier.verdict.verdict === 'used' || earlier.verdict.verdict === 'doubted') return true;
+  }
+  return false;
 }
 
 /** Index of the place the tap belongs to, or why there is none. */
@@ -138,11 +165,11 @@ function choosePlace(
   explicit: string | null,
   reach: number,
 ): number | 'repeated' | 'no place near' {
-  const { state, model, derived } = context;
+  const { state, model, held } = context;
   const taken = (i: number): boolean => {
     const id = (model.places[i] as Place).checkpoint.id;
     const claimed = state.acts.moved.some((m) => m.checkpoint === id && m.tap !== tap.seq && stands(state, m.tap, id));
-    return (derived.passings[i] as PlacePassing).by === 'tap' || (explicit === null && claimed);
+    return held.has(i) || (explicit === null && claimed);
   };
   const wanted = explicit ?? tap.checkpoint;
   const named = wanted === null ? -1 : model.places.findIndex((p) => p.checkpoint.id === wanted);

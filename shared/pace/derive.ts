@@ -1,8 +1,9 @@
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { startOf } from '#shared/pace/derive-start.ts';
-import { judgeTap, type TapContext, tapQueue } from '#shared/pace/derive-tap.ts';
+import type { JudgedTap } from '#shared/pace/derive-tap.ts';
 import { distanceOf } from '#shared/pace/distance.ts';
 import { type Anchor, type Derived, modelOf, type PlacePassing, type RunState, type TapAct } from '#shared/pace/run-state.ts';
+import { likeliestChain } from '#shared/pace/tap-chain.ts';
 
 /**
  * The one path from what was recorded to what it means: start, anchors, passings, verdicts. Run anew, from the start of the run,
@@ -15,7 +16,7 @@ export function derive(state: RunState): void {
   const passings = model.places.map((): PlacePassing => unpassed(state.pack.wheel.mmPerPulse));
   const derived: Derived = { ...start.derived, anchors: start.anchor === null ? [] : [start.anchor], passings, taps: [], nextD: null };
   const walk = new Walk(state, model, derived);
-  for (const tap of tapQueue(state)) walk.take(tap);
+  for (const judged of likeliestChain(state, model, start.anchor).judged) walk.take(judged);
   if (start.anchor !== null) {
     walk.passUntil(Number.POSITIVE_INFINITY, null);
     derived.nextD = walk.nextD();
@@ -57,19 +58,18 @@ class Walk {
     return this.derived.anchors[this.derived.anchors.length - 1];
   }
 
-  take(tap: TapAct): void {
+  take({ tap, verdict, use }: JudgedTap): void {
     const anchor = this.anchor();
     const { derived } = this;
     if (anchor !== undefined && tap.raw !== null && tap.t >= this.at) {
       const measured = distanceOf(anchor, tap.raw);
       this.passUntil(tap.t, measured);
     }
-    const context: TapContext = { state: this.state, model: this.model, derived, firstLeg: derived.anchors.length === 1 };
-    const judged = judgeTap(context, tap);
-    derived.taps.push(judged.verdict);
-    if (judged.anchor === null) return;
-    derived.anchors.push(judged.anchor);
-    this.snap(judged.anchor, judged.place, tap);
+    derived.taps.push(verdict);
+    if (use === null) return;
+    derived.passings[use.place] = use.passing;
+    derived.anchors.push(use.anchor);
+    this.snap(use.anchor, use.place, tap);
   }
 
   /** After a snap: places jumped over are passed now; places the car is again before are not passed yet. */

@@ -23,25 +23,49 @@ export function distanceAt(state: RunState, at: number): number | null {
   return distanceOf(anchor, raw);
 }
 
-/** Tyres that warm up after the start change their scale by about this much (relative); the first leg carries it as uncertainty. */
+/** Tyres that warm up after the start change their scale by about this much (relative). */
 const COLD_TYRES = 0.0035;
+/** The cold tyres' deficit decays over this time of driving, s. */
+const WARMING_S = 400;
 /** Slips and lost pulses, m² per metre. */
 const SLIPS = 6e-4;
 /** Metres by GNSS err by about this share. */
 const GNSS_SHARE = 0.004;
 
-/** Variance in m² of the distance at raw values, grown since the anchor. `losses`: stretches that nothing measured. */
-export function distanceVariance(
-  anchor: Anchor,
-  raw: Raw,
-  at: number,
-  firstLeg: boolean,
-  losses: readonly { readonly at: number; readonly sigma: number }[],
-): number {
+/**
+ * Mean share of the cold tyres' deficit between two instants, 1 at the first movement and falling to 0: the mean of
+ * e^(−t/τ). Own model of how tyres warm; no source.
+ */
+export function coldShare(movedAt: number, from: number, to: number): number {
+  const [a, b] = [Math.max(0, from - movedAt) / 1e6 / WARMING_S, Math.max(0, to - movedAt) / 1e6 / WARMING_S];
+  return b - a < 1e-6 ? Math.exp(-a) : (Math.exp(-a) - Math.exp(-b)) / (b - a);
+}
+
+/** Relative variance of the scale over a stretch: its own, and what tyres have done since it was measured. */
+function stretchScaleVariance(anchor: Anchor, movedAt: number, at: number): number {
+  // the pack's own scale may have been measured on tyres as warm or as cold as can be
+  const changed = anchor.cold === null ? 1 : anchor.cold - coldShare(movedAt, anchor.at, at);
+  return anchor.scaleVariance + (COLD_TYRES * changed) ** 2;
+}
+
+/** Variance in m² of what nothing measured after one instant, up to another. */
+export function lossVariance(losses: readonly Loss[], after: number, upTo: number): number {
+  let variance = 0;
+  for (const loss of losses) if (loss.at > after && loss.at <= upTo) variance += loss.sigma * loss.sigma;
+  return variance;
+}
+
+export interface Loss {
+  readonly at: number;
+  /** One sigma, metres. */
+  readonly sigma: number;
+}
+
+/** Variance in m² of the distance at raw values, grown since the anchor. `movedAt`: instant of the first anchor, when the tyres began to warm. */
+export function distanceVariance(anchor: Anchor, raw: Raw, at: number, movedAt: number, losses: readonly Loss[]): number {
   const wheel = Math.abs(((raw.w - anchor.w) * anchor.mmPerPulse) / 1000);
   const gnss = Math.abs(raw.g - anchor.g) * GNSS_SHARE;
-  const scale = anchor.scaleVariance + (firstLeg ? COLD_TYRES * COLD_TYRES : 0);
-  let variance = anchor.variance + scale * wheel * wheel + SLIPS * wheel + (SCALE_DRIFT * wheel ** 3) / 3 + gnss * gnss;
-  for (const loss of losses) if (loss.at > anchor.at && loss.at <= at) variance += loss.sigma * loss.sigma;
-  return variance;
+  const scale = stretchScaleVariance(anchor, movedAt, at) * wheel * wheel + 2 * anchor.covariance * wheel;
+  const road = SLIPS * wheel + (SCALE_DRIFT * wheel ** 3) / 3;
+  return anchor.variance + scale + road + gnss * gnss + lossVariance(losses, anchor.at, at);
 }

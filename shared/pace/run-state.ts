@@ -5,7 +5,7 @@ import { buildCourseModel, type Changes, type CourseModel, makeChanges } from '#
 import { makeOdometer, type Odometer } from '#shared/pace/odometer.ts';
 
 /** Raised whenever the same journal may lead to other figures. */
-export const ENGINE_VERSION = '1.0.0';
+export const ENGINE_VERSION = '1.1.0';
 
 /**
  * Everything a run knows: plain data (arrays, objects, numbers, text, booleans, null), so that it can be stored as JSON and
@@ -25,6 +25,8 @@ export interface RunState {
   changes: Changes;
   clock: Clock;
   odometer: Odometer;
+  /** Name of the sensor that the wheel and the wired buttons last came by; null before any was gained. */
+  wheelSensor: string | null;
   buttons: Record<string, ButtonMemory>;
   acts: Acts;
   derived: Derived;
@@ -76,9 +78,21 @@ export interface Anchor {
   readonly w: number;
   readonly g: number;
   readonly mmPerPulse: number;
-  /** Relative variance of the scale, and variance of d in m². */
+  /** Relative variance of the scale, variance of d in m², and their covariance in m: the touch that set both errs in both. */
   readonly scaleVariance: number;
   readonly variance: number;
+  readonly covariance: number;
+  /** Where the leg that may correct the scale next begins. */
+  readonly scaleFrom: ScaleMark;
+  /** Share of the cold tyres' deficit that the scale in force was measured with; null while it is the pack's own. */
+  readonly cold: number | null;
+}
+
+export interface ScaleMark {
+  readonly at: number;
+  readonly d: number;
+  readonly w: number;
+  readonly g: number;
 }
 
 export interface PlacePassing {
@@ -150,6 +164,7 @@ export function makeRunState(pack: Pack): RunState {
     changes,
     clock: makeClock(),
     odometer: makeOdometer(),
+    wheelSensor: null,
     buttons: {},
     acts: {
       taps: [],

@@ -4,7 +4,7 @@ import { startGate } from '#shared/pace/derive-start.ts';
 import { anchorAt, distanceAt, distanceOf, distanceVariance } from '#shared/pace/distance.ts';
 import { odometerNow } from '#shared/pace/odometer-now.ts';
 import type { Phase } from '#shared/pace/readout.ts';
-import { modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
+import { type Anchor, modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
 import { targetSpeedAt, targetTimeAt } from '#shared/pace/schedule.ts';
 import { lastKnotAt } from '#shared/pace/track.ts';
 
@@ -49,7 +49,7 @@ export function situationAt(state: RunState, at: number): Situation {
   const past = last !== null && at < last ? distanceAt(state, at) : null;
   const beforeStart = model.start - Math.max(0, state.changes.stagedBehindM);
   const distance = past ?? (anchor === null || at < anchor.at ? beforeStart : distanceOf(anchor, now));
-  const variance = anchor === null ? 0 : distanceVariance(anchor, now, at, derived.anchors.length === 1, odometer.losses);
+  const variance = anchor === null ? 0 : distanceVariance(anchor, now, at, (derived.anchors[0] as Anchor).at, odometer.losses);
   const finish = finishPoint(state, model);
   const phase = phaseAt(state, at, finish);
   const over = finish !== null && at >= finish.at;
@@ -95,7 +95,7 @@ function finishSigma(state: RunState, model: CourseModel, passing: PlacePassing,
   if (anchor === undefined || anchor === null) return timeSigma(state, model, model.finish, 0, 0, at);
   // counts and metres of GNSS from the anchor to the finish, as far as the run has come: enough for a sigma
   const way = { w: anchor.w + ((model.finish - anchor.d) * 1000) / anchor.mmPerPulse, g: anchor.g };
-  const variance = distanceVariance(anchor, way, at, derived.anchors[0] === anchor, odometer.losses);
+  const variance = distanceVariance(anchor, way, at, (derived.anchors[0] as Anchor).at, odometer.losses);
   return timeSigma(state, model, model.finish, variance, targetSpeedAt(model.schedule, model.finish), at);
 }
 

@@ -1,5 +1,6 @@
 import { expect, it } from 'vitest';
-import { FORTY_PACK } from '#tests/unit/drive/base-pack.ts';
+import type { Pack } from '#shared/course/pack.ts';
+import { BASE_PACK, FORTY_PACK } from '#tests/unit/drive/base-pack.ts';
 import { driveWithEngine } from '#tests/unit/drive/closed-loop.ts';
 
 const rms = (values: readonly number[]): number => Math.sqrt(values.reduce((sum, v) => sum + v * v, 0) / values.length);
@@ -20,3 +21,44 @@ it('a driver who follows the engine’s display finishes as well as the ratio ru
     expect(Math.abs((finish[i] ?? 99) + (display[i] ?? 99))).toBeLessThan(0.3);
   }
 }, 60_000);
+
+const wheelOnly = (scaleRule: Pack['settings']['scaleRule']): Pack => ({
+  ...BASE_PACK,
+  raceClass: { ...BASE_PACK.raceClass, aids: { wheel: true, gnssSpeed: false, gnssPosition: false, dataLink: false } },
+  settings: { ...BASE_PACK.settings, scaleRule },
+});
+
+// Drives in which the tyres' warming puts one place, or the first of them, beyond 3.5 sigmas of a scale taken for sure.
+it.each([
+  ['ratio', 8],
+  ['ratio', 31],
+  ['ratio', 46],
+  ['gain', 8],
+  ['gain', 31],
+] as const)(
+  'no honest touch locks out those after it: %s, seed %i',
+  (rule, seed) => {
+    const { displayError, state } = driveWithEngine(wheelOnly(rule), seed);
+    expect(Math.abs(displayError)).toBeLessThan(0.6);
+    expect(state.derived.taps.map((t) => t.verdict)).not.toContain('doubted');
+    expect(state.derived.taps.length).toBeGreaterThan(4);
+  },
+  60_000,
+);
+
+// One touch of each drive is 3 s late or 200 to 1500 m off.
+it.each([
+  ['ratio', 'place-1', 21],
+  ['ratio', 'place-2', 22],
+  ['gain', 'place-4', 23],
+  ['gain', 'place-7', 24],
+] as const)(
+  'one mistaken touch is found and leaves no mark: %s, %s, seed %i',
+  (rule, checkpoint, seed) => {
+    const { displayError, state } = driveWithEngine(wheelOnly(rule), seed, { navigator: { missed: 0, mistakenAt: [checkpoint] } });
+    const doubted = state.derived.taps.filter((t) => t.verdict === 'doubted');
+    expect(doubted.map((t) => t.checkpoint)).toEqual([checkpoint]);
+    expect(Math.abs(displayError)).toBeLessThan(0.9);
+  },
+  60_000,
+);

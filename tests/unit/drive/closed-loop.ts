@@ -28,7 +28,7 @@ export function driveWithEngine(pack: Pack, seed: number, options: Partial<Drive
   take({ type: 'clock.v1', at: micros(1), source: 'exchange', officialMs: RELEASE_MS - RELEASE_US / 1000, uncertaintyMs: 5 });
   let finishAt: number | undefined;
   let t = 0;
-  for (; t < limitS * 1e6 && (finishAt === undefined || t < finishAt + 3e6); t += SLICE_US) {
+  for (; t < limitS * 1e6 && (finishAt === undefined || t < finishAt + 12e6); t += SLICE_US) {
     const shown = readout(state, micros(t));
     const holdSpeed = shown.hold.kind === 'none' ? null : shown.hold.speed;
     for (const o of drive.advance(t + SLICE_US, { at: t, holdSpeed, toRelease: shown.toRelease })) take(o);

@@ -7,8 +7,9 @@ instant asked for is one division. All courses are invented.
 
 Rules used (each stated where the figure is worked out):
   distance     D = official distance of the last touched place + pulses since x scale
-  ratio        new scale = old x official leg / measured leg (common practice, no source); not on a settle leg, not on a leg
-               shorter than 2 sigma/sigma_scale with sigma_scale 0.3 % before the first correction and 0.1 % after it
+  ratio        new scale = old x official leg / measured leg (common practice, no source); the leg runs from the last place that
+               set the scale, before the first from the settle place; not at a settle place, not on a leg shorter than
+               2 sigma/sigma_scale with sigma_scale 0.3 % before the first correction and 0.1 % after it
   gain         new scale = old x ratio ** g, g = s2 / (s2 + 2 sigma2 / leg2), s2 grown by 1.2e-11 a metre
   place sigma  sqrt((scatter x speed)^2 + (last printed decimal / sqrt 12)^2 + 1 m2)
   schedule     length over average, neutral sections their own time
@@ -152,7 +153,7 @@ def constant_speed():
 
 
 def miles_scale():
-    """20 miles at 54 mph. Settle, scale, a leg too short, scale, a place without a touch, the finish by distance; lead 150 ms."""
+    """20 miles at 54 mph. Settle, scale, a leg too short (which adds to the next), scale, a place without a touch, the finish by distance; lead 150 ms."""
     unit, lead, rate, mm = 'mi', Fraction(15, 100), 50, 480
     places = [('start', 'start', '0.00'), ('gate', 'settle', '1.50'), ('barn', 'scale', '7.50'), ('fold', 'scale', '9.00'), ('tarn', 'scale', '16.00'),
               ('cairn', 'place', '18.00'), ('finish', 'finish', '20.00')]
@@ -165,6 +166,7 @@ def miles_scale():
     target = Fraction(1_333_333, 1000)
     sigma = math.sqrt(place_sigma2(0.1, rate * mm / 1000, float(metres('0.01', unit))))
     k, d, w, corrected, legs = Fraction(mm), Fraction(0), Fraction(0), False, []
+    since = (d, w)  # official distance and count from which the scale's leg runs
     for ident, duty, text in places[1:]:
         official = metres(text, unit)
         aim = target * official / metres('20.00', unit)
@@ -174,12 +176,14 @@ def miles_scale():
             continue
         t = touches[ident] - lead
         measured = (wheel.count(t) - w) * k / 1000
-        leg = official - d
+        leg = official - since[0]
         shortest = 2 * sigma / (0.001 if corrected else 0.003)
         kept = 'settle' if duty == 'settle' else 'place' if duty == 'place' else 'leg too short' if leg < shortest else None
-        before, moved = k, leg - measured
+        before, moved = k, official - d - measured
         if kept is None:
-            k, corrected = k * leg / measured, True
+            k, corrected = leg * 1000 / (wheel.count(t) - since[1]), True
+        if kept in (None, 'settle'):
+            since = (official, wheel.count(t))
         legs.append(row(ident, 'tap', t, aim, movedM=float(moved), measuredM=float(d + measured), scaleBefore=float(before), scaleAfter=float(k), scaleKept=kept))
         d, w = official, wheel.count(t)
     return {'reactionS': 1, 'legs': legs, 'finish': {'elapsedS': legs[-1]['elapsedS'], 'timeErrorS': legs[-1]['timeErrorS']}}
