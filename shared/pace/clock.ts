@@ -8,6 +8,8 @@ export interface Clock {
   samples: number;
   /** What page lives added to the uncertainty since the sample was taken, ms². */
   bridgedVariance: number;
+  /** The page life that began last, and what bridging to it by a guess adds to that variance until the guess is replaced. */
+  life: { n: number; guessed: number } | null;
   pair: { mono: number; wall: number } | null;
   /** Instants at which the device's two clocks came apart (sleep, or a stepped wall clock), and by how many ms. */
   slept: { at: number; byMs: number }[];
@@ -20,7 +22,7 @@ export interface ClockChoice {
   readonly source: ClockV1['source'] | 'device';
 }
 
-export const makeClock = (): Clock => ({ chosen: null, samples: 0, bridgedVariance: 0, pair: null, slept: [] });
+export const makeClock = (): Clock => ({ chosen: null, samples: 0, bridgedVariance: 0, life: null, pair: null, slept: [] });
 
 /** The device's crystal against the official clock, relative, per second of age. */
 const DRIFT = 1e-6;
@@ -67,14 +69,26 @@ function consider(clock: Clock, sample: ClockChoice, now: number, started: boole
   }
   clock.chosen = sample;
   clock.bridgedVariance = 0;
+  if (clock.life !== null) clock.life.guessed = 0;
   return true;
 }
 
 /** A page life began: its wall clock is the last resort, and bridging it to the last life has cost some certainty. */
 export function takeEpoch(clock: Clock, o: EpochV1, now: number, started: boolean): boolean {
   clock.pair = { mono: o.mono, wall: o.wall };
-  if (o.bridgedBy !== 'first') clock.bridgedVariance += o.uncertaintyMs * o.uncertaintyMs;
+  if (o.bridgedBy !== 'first') bridge(clock, o);
   return consider(clock, { at: o.at, offsetMs: o.wall - o.at / 1000, sigmaMs: DEVICE_SIGMA_MS, source: 'device' }, now, started);
+}
+
+/**
+ * A life is first bridged by a wall clock or another page, then, once it is heard, by the box: the better word replaces the guess
+ * for the same life. What the box says of a later sleep within that life is a gap of its own and adds up.
+ */
+function bridge(clock: Clock, o: EpochV1): void {
+  const added = o.uncertaintyMs * o.uncertaintyMs;
+  const replaced = clock.life !== null && clock.life.n === o.n ? clock.life.guessed : 0;
+  clock.bridgedVariance = Math.max(0, clock.bridgedVariance - replaced) + added;
+  clock.life = { n: o.n, guessed: o.bridgedBy === 'wall' || o.bridgedBy === 'page' ? added : 0 };
 }
 
 /** True when the device's monotonic and wall clock came apart by more than 50 ms since the last pair. */

@@ -60,6 +60,29 @@ describe('the official clock', () => {
     expect(after?.official?.sigma).toBeCloseTo(Math.hypot(0.005, 0.04), 4);
     expect(after?.warnings).not.toContainEqual({ code: 'slept' });
   });
+
+  it('costs what the box says once the box is heard again, not the guess before it as well', () => {
+    const epoch = (t: number, n: number, bridgedBy: string, uncertaintyMs: number): NewObservation =>
+      act(t, { type: 'epoch.v1', n, mono: 5, wall: releaseMs, bridgedBy, uncertaintyMs });
+    const sigma = (...epochs: NewObservation[]): number =>
+      (look(pack, journal([clockCheck(pack)], drive, epochs), [80])[0]?.official?.sigma as number) * 1000;
+    const own = sigma();
+    expect(sigma(epoch(60, 1, 'wall', 50), epoch(60.3, 1, 'box', 3))).toBeCloseTo(Math.hypot(own, 3), 6);
+    expect(sigma(epoch(60, 1, 'page', 8), epoch(60.3, 1, 'box', 3))).toBeCloseTo(Math.hypot(own, 3), 6);
+    // another life, and a sleep later in the same one, are gaps of their own
+    expect(sigma(epoch(60, 1, 'wall', 50), epoch(70, 2, 'box', 3))).toBeCloseTo(Math.hypot(own, 50, 3), 6);
+    expect(sigma(epoch(60, 1, 'wall', 50), epoch(60.3, 1, 'box', 3), epoch(75, 1, 'box', 4))).toBeCloseTo(Math.hypot(own, 3, 4), 6);
+  });
+
+  it('a check after the guess stands alone: what the box then says of that life is added to it', () => {
+    const list = journal(drive, [
+      sample(-50, 'exchange', 0, 5),
+      act(-40, { type: 'epoch.v1', n: 1, mono: 5, wall: releaseMs, bridgedBy: 'wall', uncertaintyMs: 50 }),
+      sample(-39, 'exchange', 0, 5),
+      act(-38, { type: 'epoch.v1', n: 1, mono: 5, wall: releaseMs, bridgedBy: 'box', uncertaintyMs: 3 }),
+    ]);
+    expect(look(pack, list, [-37])[0]?.official?.sigma).toBeCloseTo(Math.hypot(0.005, 0.003), 6);
+  });
 });
 
 describe('instants', () => {
