@@ -131,7 +131,7 @@ function keepStill(o: Odometer): void {
   if (last !== undefined && o.stillAt > last) addKnot(o.track, o.stillAt, o.w, o.g, false);
 }
 
-/** The box restarted between two records: GNSS may know the gap, else only what it has counted since is known. */
+/** The box restarted between two records, or another took over: GNSS may know the gap, else only what it has counted since is known. */
 function restart(o: Odometer, before: number, metresPerPulse: number): OdometerChange {
   const { wheel, gnss } = o;
   const gap = (wheel.at - before) / 1e6;
@@ -140,10 +140,15 @@ function restart(o: Odometer, before: number, metresPerPulse: number): OdometerC
   const covered = gnss.recent.length > 1 && (gnss.recent[0] as { at: number }).at <= from && g0 !== null && g1 !== null;
   const metres = covered ? Math.max(0, g1 - g0) : 0;
   if (covered) noteGnss(o);
-  else o.losses.push({ at: wheel.at, sigma: Math.abs(rateNow(o.track)) * metresPerPulse * gap });
+  else noteLoss(o, wheel.at, Math.abs(rateNow(o.track)) * metresPerPulse * gap);
   const w = covered ? o.w : o.w + (wheel.total - o.wheelKnot.total);
   o.wheelKnot = { at: wheel.at, total: wheel.total };
   return knot(o, wheel.at, w, o.g + metres, metresPerPulse);
+}
+
+/** A car that had not moved lost nothing. */
+function noteLoss(o: Odometer, at: number, sigma: number): void {
+  if (sigma > 0) o.losses.push({ at, sigma });
 }
 
 /** The wheel speaks again after GNSS carried on. If its count went on, the count decides; else the bridged metres stand. */

@@ -9,6 +9,7 @@ import { type OdometerChange, takeGnss, takePulse } from '#shared/pace/odometer.
 import { modelOf, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
 import { soundness } from '#shared/pace/sound.ts';
 import { addTap, pressButton, rewriteTaps, settleTaps } from '#shared/pace/taps.ts';
+import { beginAnew } from '#shared/pace/wheel.ts';
 import { never } from '#shared/result.ts';
 
 /**
@@ -52,7 +53,7 @@ function take(state: RunState, o: Observation): boolean {
       if (o.sensor !== 'geolocation') acts.sensorLostAt = o.at;
       return false;
     case 'sensor-gained.v1':
-      if (o.sensor !== 'geolocation') acts.sensorLostAt = null;
+      if (o.sensor !== 'geolocation') gainWheel(state, o.sensor);
       return false;
     case 'pps.v1':
     case 'note.v1':
@@ -60,6 +61,16 @@ function take(state: RunState, o: Observation): boolean {
     default:
       return takeAct(state, o);
   }
+}
+
+/** Counters of another sensor have nothing to do with those before: the wheel and the wired buttons begin anew. */
+function gainWheel(state: RunState, sensor: string): void {
+  state.acts.sensorLostAt = null;
+  if (state.wheelSensor !== null && state.wheelSensor !== sensor) {
+    beginAnew(state.odometer.wheel);
+    state.buttons = {};
+  }
+  state.wheelSensor = sensor;
 }
 
 type Act = Exclude<

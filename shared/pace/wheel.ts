@@ -14,6 +14,8 @@ export interface WheelChannel {
   /** Unwrapped count since the first record. */
   total: number;
   suspect: { at: number; count: number; boxUs: number } | null;
+  /** The next record comes from another box: it is a baseline, whatever it says. */
+  anew: boolean;
   /** Believed records, dropped wild ones, restarts of the box. */
   records: number;
   wild: number;
@@ -27,12 +29,13 @@ export const makeWheelChannel = (): WheelChannel => ({
   boxUs: 0,
   total: 0,
   suspect: null,
+  anew: false,
   records: 0,
   wild: 0,
   restarts: 0,
 });
 
-/** first: baseline; moved: the total changed; same: alive, unchanged; restarted: new baseline, the gap is lost; held: not believed yet. */
+/** first: baseline; moved: the total changed; same: alive, unchanged; restarted: new baseline (the box began anew, or is another), the gap is lost; held: not believed yet. */
 export type WheelVerdict = 'first' | 'moved' | 'same' | 'restarted' | 'held' | 'stale';
 
 /** No car on a closed road is faster; one going backwards is far slower. m/s */
@@ -76,6 +79,12 @@ function believe(c: WheelChannel, o: Mark, pulses: number): WheelVerdict {
   return pulses === 0 ? 'same' : 'moved';
 }
 
+/** Another box takes over: its counter and clock are its own. */
+export function beginAnew(c: WheelChannel): void {
+  c.anew = c.seen;
+  c.suspect = null;
+}
+
 /** Takes one record of this channel. `metresPerPulse` only judges what is plausible. */
 export function takeRecord(c: WheelChannel, o: PulseV1, metresPerPulse: number): WheelVerdict {
   if (!c.seen) {
@@ -84,6 +93,11 @@ export function takeRecord(c: WheelChannel, o: PulseV1, metresPerPulse: number):
     return 'first';
   }
   if (o.at < c.at) return 'stale';
+  if (c.anew) {
+    c.anew = false;
+    believe(c, o, 0);
+    return 'restarted';
+  }
   if (follows(c, o, metresPerPulse)) {
     if (c.suspect !== null) c.wild++;
     return believe(c, o, wrappedDifference(o.count, c.count));

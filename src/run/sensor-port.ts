@@ -28,7 +28,10 @@ export function createSensorPort({ observed, now, changed }: PortOptions): Senso
   };
   const listenerFor = (mine: SensorSource): SensorListener => ({
     observed: (observations) => {
-      if (source === mine) observed(observations);
+      if (source !== mine) return;
+      // what it says must not be taken for another sensor's: the journal names it first
+      say(mine.name, true, status === null ? 'heard' : counts(status));
+      observed(observations);
     },
     status: (next) => {
       if (source !== mine) return;

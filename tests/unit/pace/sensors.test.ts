@@ -80,6 +80,53 @@ describe('the wheel', () => {
   });
 });
 
+describe('another sensor behind the wheel', () => {
+  const gained = (t: number, sensor: string): NewObservation => act(t, { type: 'sensor-gained.v1', sensor, detail: '' });
+  const lost = (t: number, sensor: string): NewObservation => act(t, { type: 'sensor-lost.v1', sensor, detail: 'detached' });
+  const shifted = (list: NewObservation[], by: number): NewObservation[] =>
+    list.map((o) => (o.type === 'pulse.v1' ? { ...o, count: (o.count + by) % 2 ** 32, boxUs: (o.boxUs + 77_000) % 2 ** 32 } : o));
+  const drive = pulses(motion, { until: 200 });
+
+  it('begins a new count: a jump between two counters is no distance, however plausible', () => {
+    // on the grid, 34 s apart: 3000 counts are 750 m, which a car could have driven
+    const before = between(pulses(motion, { until: 200, from: -50 }), -50, -40);
+    const list = journal(
+      clock,
+      [gained(-51, 'simulator')],
+      before,
+      [lost(-40, 'simulator'), gained(-6, 'serial')],
+      shifted(between(drive, -6, 300), 3_000),
+    );
+    const [grid, under] = look(pack, list, [-2, 150]);
+    expect(grid).toMatchObject({ distance: 0, phase: 'countdown' });
+    expect(Math.abs((under?.distance as number) - motion.metresAt(150))).toBeLessThan(0.5);
+    expect(sheetOf(pack, list).warnings).toEqual([]);
+  });
+
+  it('taken up while driving loses what went by between, and says so; with GNSS it is known', () => {
+    const parts = [[gained(-11, 'simulator')], between(drive, -11, 100), [lost(100, 'simulator'), gained(105, 'serial')]];
+    const after = shifted(between(drive, 105, 300), 700);
+    const list = journal(clock, ...parts, after);
+    const [there] = look(pack, list, [150]);
+    expect(Math.abs((there?.distance as number) - (motion.metresAt(150) - 200))).toBeLessThan(5);
+    expect(sheetOf(pack, list).warnings.join()).toContain('Distance was lost once');
+    const [known] = look(pack, journal(clock, ...parts, after, fixes(motion, { until: 200, hz: 5 })), [150]);
+    expect(Math.abs((known?.distance as number) - motion.metresAt(150))).toBeLessThan(3);
+  });
+
+  it('the same one, lost and found, goes on from its count', () => {
+    const list = journal(clock, [gained(-11, 'serial')], outside(drive, 100, 105), [lost(100, 'serial'), gained(105, 'serial')]);
+    const [there] = look(pack, list, [150]);
+    expect(Math.abs((there?.distance as number) - motion.metresAt(150))).toBeLessThan(0.5);
+  });
+
+  it('has buttons of its own: its first count of presses is a baseline', () => {
+    const press = (t: number, presses: number): NewObservation => act(t, { type: 'button.v1', button: 0, presses, boxUs: 0 });
+    const list = journal(clock, drive, [gained(-11, 'simulator'), press(-5, 7), gained(50, 'serial'), press(51, 9), press(100, 10)]);
+    expect(fold(pack, list).acts.taps.map((t) => t.at)).toEqual([us(100)]);
+  });
+});
+
 describe('the wheel falls silent', () => {
   const gnss = fixes(motion, { until: 300, hz: 5 });
 
