@@ -89,8 +89,8 @@ export const DEMO_RULES: EventRules = {
 const finish = km(LENGTH_M);
 
 /** 61 km at 180 km/h: 20 min 20 s. */
-export const CLASS_180: Omit<RaceClass, 'id'> = {
-  name: 'Class 180',
+export const TOURING_180: Omit<RaceClass, 'id'> = {
+  name: 'Touring 180',
   targetTimeMs: 1_220_000,
   sections: [{ kind: 'average', to: finish, average: { text: '180', unit: 'km/h' } }],
   cap: { text: '230', unit: 'km/h' },
@@ -99,8 +99,8 @@ export const CLASS_180: Omit<RaceClass, 'id'> = {
 };
 
 /** 61 km at 150 km/h: 24 min 24 s, with nothing but a clock and the table. */
-export const CLASS_150: Omit<RaceClass, 'id'> = {
-  name: 'Class 150, clock and table',
+export const VINTAGE_150: Omit<RaceClass, 'id'> = {
+  name: 'Vintage 150, clock and table',
   targetTimeMs: 1_464_000,
   sections: [{ kind: 'average', to: finish, average: { text: '150', unit: 'km/h' } }],
   cap: { text: '190', unit: 'km/h' },

@@ -7,7 +7,7 @@ import { insertEntry, USUAL_COCKPIT } from '#server/services/entries/insert-entr
 import { insertEvent } from '#server/services/events/insert-event.ts';
 import type { Checkpoint } from '#shared/course/course-book.ts';
 import { CARS, type DemoCar, ORGANISER_TEAM } from './demo-cast.ts';
-import { CLASS_150, CLASS_180, courseContent, DEMO_RULES, ownPlaces } from './demo-course.ts';
+import { courseContent, DEMO_RULES, ownPlaces, TOURING_180, VINTAGE_150 } from './demo-course.ts';
 import type { DemoPeople } from './seed-people.ts';
 
 export interface DemoEntry {
@@ -33,7 +33,7 @@ export async function seedEvent(ctx: ServiceContext, people: DemoPeople): Promis
     endsOn: day(1),
     practice: false,
     rules: DEMO_RULES,
-    raceClasses: [CLASS_180, CLASS_150],
+    raceClasses: [TOURING_180, VINTAGE_150],
   });
   await ctx.db
     .insert(eventMembers)
