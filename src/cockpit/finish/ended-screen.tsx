@@ -4,8 +4,8 @@ import type { RunSheet } from '#shared/pace/run-sheet.ts';
 import { runSheetPath } from '#src/cockpit/cockpit-path.ts';
 import { useStored } from '#src/cockpit/list/use-stored.ts';
 import { Shell } from '#src/cockpit/shell.tsx';
-import { sureText } from '#src/cockpit/view/words.ts';
 import { JournalState } from '#src/components/journal-state.tsx';
+import { sureText } from '#src/components/sure-text.ts';
 import { UpdatePrompt } from '#src/components/update-prompt.tsx';
 import type { RunSession } from '#src/run/run-session-contract.ts';
 import type { JournalStore } from '#src/storage/journal-store.ts';
@@ -40,7 +40,7 @@ export function EndedScreen({ session, store, again }: EndedProps) {
     return true;
   };
   return (
-    <Shell title={`${pack.event.name}, car ${pack.entry.number}`}>
+    <Shell title={`${pack.event.name}, car\u00a0${pack.entry.number}`}>
       <UpdatePrompt />
       <p>
         {practice ? 'Practice' : `Attempt ${pack.attempt.number}`}, {OUTCOME[sheet.outcome]}.
@@ -59,7 +59,7 @@ export function EndedScreen({ session, store, again }: EndedProps) {
         </a>
       </div>
       <div className="shell-row">
-        <span>Hot pressures next; the card time at stop control is the official one.</span>
+        <span>{afterwards(practice, sheet.outcome)}</span>
         <button type="button" className="key" onClick={again}>
           another run of this attempt
         </button>
@@ -69,6 +69,12 @@ export function EndedScreen({ session, store, again }: EndedProps) {
       </p>
     </Shell>
   );
+}
+
+function afterwards(practice: boolean, outcome: RunSheet['outcome']): string {
+  if (practice) return 'Practice never counts; its journal is kept all the same.';
+  if (outcome === 'finished') return 'Hot pressures next; the card time at stop control is the official one.';
+  return 'What was recorded is kept; the race office says how the attempt goes on.';
 }
 
 function OwnTime({ finish }: { readonly finish: NonNullable<RunSheet['finish']> }) {

@@ -4,7 +4,7 @@ import { LiveText } from '#src/cockpit/live/live-text.tsx';
 import { useStructure } from '#src/cockpit/live/use-live.ts';
 import { HeldKey } from '#src/cockpit/run/held-key.tsx';
 import { useRunSettings } from '#src/cockpit/run/run-context.ts';
-import { sureText } from '#src/cockpit/view/words.ts';
+import { sureText } from '#src/components/sure-text.ts';
 import { slowWords } from './slow-words.ts';
 
 /** Past the line: first of all slow down. The own error stands small, with its ± and the word unofficial. */

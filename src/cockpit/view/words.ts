@@ -1,6 +1,7 @@
 import { formatDistance, formatDuration, formatTimeError, roundedDigits } from '#shared/course/format.ts';
 import type { Band, Hold, Readout, TapVerdict, Warning } from '#shared/pace/readout.ts';
 import { type DistanceUnit, METRES_PER_MILE } from '#shared/units.ts';
+import { sureText } from '#src/components/sure-text.ts';
 
 /** The cockpit's short words. A magnitude and a word, never a bare sign. */
 
@@ -25,13 +26,6 @@ export function stepsAsText(steps: number, decimals: 1 | 2): string {
 export function errorText(seconds: number, decimals: 1 | 2): string {
   const { magnitude, word } = formatTimeError(seconds, decimals);
   return `${magnitude} ${word}`;
-}
-
-/** `±0.1 s`, `±0.04 s`: two sigma, rounded up so that it never claims too much. */
-export function sureText(sigma: number): string {
-  const decimals = 2 * sigma < 0.095 ? 2 : 1;
-  const per = 10 ** decimals;
-  return `±${roundedDigits(Math.ceil(2 * sigma * per - 1e-9) / per, decimals)} s`;
 }
 
 /** Distance counted down to a place: metres below 1 km, thousandths of a mile below half a mile. */
@@ -68,7 +62,8 @@ export function holdWords(hold: Hold): readonly string[] {
 
 /** What became of the last touch, short enough to be read out. */
 export function verdictWords(tap: TapVerdict): string {
-  const moved = `${roundedDigits(tap.moved, 0)} m`;
+  const off = Math.abs(tap.moved);
+  const moved = off < 1000 ? `${roundedDigits(off, 0)} m` : `${roundedDigits(off / 1000, 1)} km`;
   switch (tap.verdict) {
     case 'provisional':
       return 'touched';

@@ -3,6 +3,7 @@ import { formatDistance, formatDuration, roundedDigits } from '#shared/course/fo
 import type { RunSheet } from '#shared/pace/run-sheet.ts';
 import { Figure, FigureRow } from '#src/components/figure.tsx';
 import { FaultNotice } from '#src/components/notice.tsx';
+import { sureText } from '#src/components/sure-text.ts';
 import type { CourseMarks } from '#src/paddock/parts/course-chart.ts';
 import { TimeError } from '#src/paddock/parts/time-error.tsx';
 import { dayAndClock } from '#src/paddock/parts/when.ts';
@@ -43,7 +44,7 @@ function Summary({ sheet }: { readonly sheet: RunSheet }) {
         ) : (
           <>
             <TimeError className="text-5xl" seconds={finish.timeErrorS} decimals={2} />
-            <span className="font-figure text-quiet ml-3">±{roundedDigits(finish.sigmaS, 2)} s</span>
+            <span className="font-figure text-quiet ml-3">{sureText(finish.sigmaS)}</span>
           </>
         )}
       </p>

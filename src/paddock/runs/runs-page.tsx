@@ -1,10 +1,10 @@
 import { useQuery } from '@tanstack/react-query';
 import { Link } from 'react-router';
-import { roundedDigits } from '#shared/course/format.ts';
 import { runsQuery } from '#src/api/runs/list-runs.ts';
 import { EmptyState } from '#src/components/empty-state.tsx';
 import { JournalState } from '#src/components/journal-state.tsx';
 import { PageTitle } from '#src/components/page-title.tsx';
+import { sureDigits } from '#src/components/sure-text.ts';
 import { useLocalRuns } from '#src/paddock/device/use-stored.ts';
 import { MAIN_LINK } from '#src/paddock/event/next-thing-field.tsx';
 import { Cell, DataTable, FigureCell, Row, RowHead } from '#src/paddock/parts/data-table.tsx';
@@ -51,7 +51,7 @@ function RunTable({ rows }: { readonly rows: readonly RunRow[] }) {
         { name: 'finish', unit: 'seconds', figures: true },
         { name: 'sure to', unit: '± s', figures: true, wide: true },
         { name: 'outcome' },
-        { name: 'journal' },
+        { name: 'journal', wide: true },
       ]}
     >
       {rows.map((row) => (
@@ -74,15 +74,25 @@ function Run({ row }: { readonly row: RunRow }) {
         </span>
       </RowHead>
       <FigureCell>{server?.finish ? timeErrorText(server.finish.timeErrorS, 2) : null}</FigureCell>
-      <FigureCell wide>{server?.finish ? roundedDigits(server.finish.sigmaS, 2) : null}</FigureCell>
+      <FigureCell wide>{server?.finish ? sureDigits(server.finish.sigmaS) : null}</FigureCell>
       <Cell>
         {outcomeWords(row)}
         {server?.counts === true ? <span className="block font-bold">this run counts</span> : null}
         {row.practice ? <span className="text-quiet block text-sm">practice</span> : null}
+        <span className="block md:hidden">
+          <Journal row={row} />
+        </span>
       </Cell>
-      <Cell>{row.local === null ? <JournalState state="safe on server" /> : <UploadWords run={row.local} />}</Cell>
+      <Cell wide>
+        <Journal row={row} />
+      </Cell>
     </Row>
   );
+}
+
+/** Beside the outcome on a phone, in a column of its own elsewhere. */
+function Journal({ row }: { readonly row: RunRow }) {
+  return row.local === null ? <JournalState state="safe on server" /> : <UploadWords run={row.local} />;
 }
 
 function outcomeWords({ server, local }: RunRow): string {

@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import type { TapVerdict } from '#shared/pace/readout.ts';
 import { metres, metresPerSecond, seconds } from '#shared/units.ts';
-import { distanceText, durationText, errorText, holdWords, sideWord, sureText, toGoText, verdictWords } from '#src/cockpit/view/words.ts';
+import { distanceText, durationText, errorText, holdWords, sideWord, toGoText, verdictWords } from '#src/cockpit/view/words.ts';
+import { sureText } from '#src/components/sure-text.ts';
 
 const tap = (change: Partial<TapVerdict>): TapVerdict => ({
   seq: 4,
@@ -58,6 +59,7 @@ describe('words of the cockpit', () => {
     expect(verdictWords(tap({ scaleKept: null, scaleAfter: 479.856 }))).toBe('moved 11 m; scale down 0.03\u00a0%');
     expect(verdictWords(tap({ scaleKept: null, scaleAfter: 480.001 }))).toBe('moved 11 m; scale holds');
     expect(verdictWords(tap({ verdict: 'doubted', moved: metres(-12.3) }))).toBe('12 m odd, not used; use it?');
+    expect(verdictWords(tap({ verdict: 'doubted', moved: metres(3790) }))).toBe('3.8 km odd, not used; use it?');
     expect(verdictWords(tap({ verdict: 'voided' }))).toBe('undone');
   });
 });
