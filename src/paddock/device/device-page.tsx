@@ -45,7 +45,7 @@ function Runs({ runs }: { readonly runs: readonly StoredRunSummary[] }) {
   return (
     <DataTable
       caption="runs on this device"
-      head={[{ name: 'run' }, { name: 'observations', figures: true }, { name: 'journal' }, { name: 'acts' }]}
+      head={[{ name: 'run' }, { name: 'observations', figures: true, wide: true }, { name: 'journal', wide: true }, { name: 'acts' }]}
     >
       {runs.map((run) => {
         const row = fromDevice(run);
@@ -60,11 +60,14 @@ function Runs({ runs }: { readonly runs: readonly StoredRunSummary[] }) {
                 {row.practice ? '; practice' : ''}
               </span>
             </RowHead>
-            <FigureCell>{String(run.nextSeq)}</FigureCell>
-            <Cell>
+            <FigureCell wide>{String(run.nextSeq)}</FigureCell>
+            <Cell wide>
               <UploadWords run={run} />
             </Cell>
             <Cell>
+              <span className="mb-2 block md:hidden">
+                <UploadWords run={run} />
+              </span>
               <span className="flex flex-wrap gap-2">
                 <ExportJournalButton runId={run.runId} />
                 {run.upload === 'safe on server' ? <RemoveRun runId={run.runId} /> : null}
@@ -105,15 +108,23 @@ function Packs({ packs }: { readonly packs: readonly StoredPack[] }) {
   return (
     <DataTable
       caption="packs on this device"
-      head={[{ name: 'attempt' }, { name: 'version' }, { name: 'size', unit: 'kB', figures: true }, { name: 'stored' }, { name: 'acts' }]}
+      head={[
+        { name: 'attempt' },
+        { name: 'version', wide: true },
+        { name: 'size', unit: 'kB', figures: true, wide: true },
+        { name: 'stored' },
+        { name: 'acts' },
+      ]}
     >
       {packs.map((stored) => (
         <Row key={stored.attemptId}>
           <RowHead>
             {stored.pack.event.name}, number {stored.pack.entry.number}, attempt {stored.pack.attempt.number}
           </RowHead>
-          <Cell className="font-figure">{stored.digest.slice(0, 8)}</Cell>
-          <FigureCell>{(packBytes(stored) / 1000).toFixed(1)}</FigureCell>
+          <Cell wide className="font-figure">
+            {stored.digest.slice(0, 8)}
+          </Cell>
+          <FigureCell wide>{(packBytes(stored) / 1000).toFixed(1)}</FigureCell>
           <Cell>{relativeAge(stored.storedMs, now)}</Cell>
           <Cell>
             <a className={PLAIN_LINK} href={`/cockpit/${stored.attemptId}`}>

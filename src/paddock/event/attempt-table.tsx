@@ -21,9 +21,9 @@ export function AttemptTable({
       caption="attempts"
       head={[
         { name: 'attempt' },
-        { name: 'course' },
+        { name: 'course', wide: true },
         { name: 'release', figures: true },
-        { name: 'pack' },
+        { name: 'pack', wide: true },
         { name: 'finish', unit: 'seconds', figures: true },
       ]}
     >
@@ -39,14 +39,14 @@ export function AttemptTable({
             </Link>
             <span className="text-quiet block text-sm">{entry.car.name}</span>
           </RowHead>
-          <Cell>{attempt.courseBook.name}</Cell>
-          <td className="px-2 py-2 text-right">
+          <Cell wide>{attempt.courseBook.name}</Cell>
+          <td className="px-1.5 py-2 text-right md:px-2">
             <span className="font-figure">{attempt.releaseMs === null ? 'not set' : formatClock(attempt.releaseMs, event.timeZone)}</span>
             {attempt.releaseMs === null ? null : (
               <span className="text-quiet block text-sm whitespace-nowrap">{formatDay(attempt.releaseMs, event.timeZone)}</span>
             )}
           </td>
-          <Cell>{packWords(attempt, packOf(attempt.id))}</Cell>
+          <Cell wide>{packWords(attempt, packOf(attempt.id))}</Cell>
           <FigureCell>{finishText(attempt)}</FigureCell>
         </Row>
       ))}

@@ -21,7 +21,7 @@ export function DataTable({
               <th
                 key={column.name}
                 scope="col"
-                className={`text-quiet px-2 py-2 align-bottom font-normal first:pl-0 whitespace-nowrap ${column.figures === true ? 'text-right' : 'text-left'} ${column.wide === true ? ONLY_WIDE : ''}`}
+                className={`text-quiet px-1.5 py-2 md:px-2 align-bottom font-normal first:pl-0 whitespace-nowrap ${column.figures === true ? 'text-right' : 'text-left'} ${fromWidth(column.wide)}`}
               >
                 {column.name}
                 {column.unit === undefined ? null : <span className="block text-sm">{column.unit}</span>}
@@ -39,11 +39,16 @@ export interface Column {
   readonly name: string;
   readonly unit?: string;
   readonly figures?: boolean;
-  /** Left out on a phone. */
-  readonly wide?: boolean;
+  readonly wide?: Wide;
 }
 
-const ONLY_WIDE = 'hidden md:table-cell';
+/** Left out on a phone; or on anything narrower than a laptop, where another column says the same. */
+type Wide = boolean | 'laptop';
+
+function fromWidth(wide: Wide | undefined): string {
+  if (wide === 'laptop') return 'hidden xl:table-cell';
+  return wide === true ? 'hidden md:table-cell' : '';
+}
 
 export function Row({ children, className = '' }: { readonly children: ReactNode; readonly className?: string }) {
   return <tr className={`border-hair border-b align-top ${className}`}>{children}</tr>;
@@ -51,20 +56,28 @@ export function Row({ children, className = '' }: { readonly children: ReactNode
 
 export function RowHead({ children }: { readonly children: ReactNode }) {
   return (
-    <th scope="row" className="bg-ground sticky left-0 min-w-32 px-2 py-2 text-left font-normal first:pl-0">
+    <th scope="row" className="bg-ground sticky left-0 min-w-28 px-1.5 py-2 md:min-w-32 md:px-2 text-left font-normal first:pl-0">
       {children}
     </th>
   );
 }
 
-export function Cell({ children, className = '' }: { readonly children: ReactNode; readonly className?: string }) {
-  return <td className={`min-w-36 px-2 py-2 first:pl-0 ${className}`}>{children}</td>;
+export function Cell({
+  children,
+  className = '',
+  wide = false,
+}: {
+  readonly children: ReactNode;
+  readonly className?: string;
+  readonly wide?: Wide;
+}) {
+  return <td className={`px-1.5 py-2 first:pl-0 md:min-w-36 md:px-2 ${fromWidth(wide)} ${className}`}>{children}</td>;
 }
 
 /** A figure in its column; a dash where there is none. */
-export function FigureCell({ children, wide = false }: { readonly children: string | null; readonly wide?: boolean }) {
+export function FigureCell({ children, wide = false }: { readonly children: string | null; readonly wide?: Wide }) {
   return (
-    <td className={`font-figure px-2 py-2 text-right whitespace-pre first:pl-0 ${wide ? ONLY_WIDE : ''}`}>
+    <td className={`font-figure px-1.5 py-2 text-right whitespace-pre first:pl-0 md:px-2 ${fromWidth(wide)}`}>
       {children ?? <span className="text-quiet">–</span>}
     </td>
   );

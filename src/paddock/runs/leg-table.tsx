@@ -15,7 +15,7 @@ export function LegTable({ legs, unit }: { readonly legs: readonly LegRow[]; rea
         { name: 'time error', unit: 'seconds', figures: true },
         { name: 'planned', unit: 'seconds', figures: true },
         { name: 'official', unit, figures: true, wide: true },
-        { name: 'measured', unit, figures: true, wide: true },
+        { name: 'measured', unit, figures: true, wide: 'laptop' },
         { name: 'moved', unit: 'm', figures: true },
         { name: 'wheel scale', unit: 'mm a pulse' },
       ]}
@@ -41,11 +41,9 @@ function Leg({ leg, unit }: { readonly leg: LegRow; readonly unit: DistanceUnit 
       <FigureCell>{leg.timeErrorS === null ? null : timeErrorText(leg.timeErrorS, 2)}</FigureCell>
       <FigureCell>{leg.duty === 'start' || leg.duty === 'stop board' ? null : timeErrorText(leg.plannedS, 2)}</FigureCell>
       <FigureCell wide>{formatDistance(leg.officialM, unit, 3)}</FigureCell>
-      <FigureCell wide>{leg.measuredM === null ? null : formatDistance(leg.measuredM, unit, 3)}</FigureCell>
+      <FigureCell wide="laptop">{leg.measuredM === null ? null : formatDistance(leg.measuredM, unit, 3)}</FigureCell>
       <FigureCell>{movedText(leg.movedM)}</FigureCell>
-      <Cell>
-        <Scale leg={leg} />
-      </Cell>
+      <Cell>{leg.by === 'not reached' ? <span className="font-figure">–</span> : <Scale leg={leg} />}</Cell>
     </Row>
   );
 }
