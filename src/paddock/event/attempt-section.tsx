@@ -39,8 +39,8 @@ export function AttemptSection({
             {formatDistance(courseBook.lengthM, courseBook.unit, 3)} {courseBook.unit}
           </Right>
           <Quiet>
-            {courseBook.checkpoints} checkpoints, {attempt.ownCheckpoints} of your own, {courseBook.zones} zones, version{' '}
-            {courseBook.version}
+            {counted(courseBook.checkpoints, 'checkpoint')}, {attempt.ownCheckpoints === 0 ? 'none' : attempt.ownCheckpoints} of your own,{' '}
+            {counted(courseBook.zones, 'zone')}, version {courseBook.version}
           </Quiet>
         </FigureRow>
         {raceClass === undefined ? null : <ClassRow raceClass={raceClass} />}
@@ -115,6 +115,9 @@ function RunRows({ placed }: { readonly placed: PlacedAttempt }) {
     </FigureRow>
   ));
 }
+
+/** `1 zone`, `2 zones`, `no zones`. */
+const counted = (n: number, one: string): string => `${n === 0 ? 'no' : n} ${one}${n === 1 ? '' : 's'}`;
 
 function Right({ children }: { readonly children: React.ReactNode }) {
   return <span className="block text-right">{children}</span>;

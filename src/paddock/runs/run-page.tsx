@@ -43,12 +43,13 @@ function ServerRun({ data, local }: { readonly data: RunResponse; readonly local
         acts={
           <>
             <Counting run={run} />
-            {run.status === 'receiving' ? null : (
+            {run.status !== 'receiving' ? (
               <a className={PLAIN_LINK} href={journalAddress(run.id)} download>
                 download journal
               </a>
+            ) : local === undefined ? null : (
+              <ExportJournalButton runId={run.id} />
             )}
-            {local === undefined ? null : <ExportJournalButton runId={run.id} />}
           </>
         }
       >
