@@ -32,7 +32,7 @@ export function ChooseRun({ stored, runs, store, trouble, choose }: ChooseRunPro
     choose(choice);
   };
   return (
-    <Shell title={`${event.name}, car ${entry.number}`}>
+    <Shell title={`${event.name}, car\u00a0${entry.number}`}>
       <UpdatePrompt />
       {trouble === null ? null : <FaultNotice>{trouble}</FaultNotice>}
       <p className="quiet">
