@@ -35,7 +35,7 @@ export function AttemptTable({
               aria-current={attempt.id === chosen ? 'true' : undefined}
               to={`/event/${event.id}?attempt=${attempt.id}`}
             >
-              number {entry.number}, attempt {attempt.number}
+              number&nbsp;{entry.number}, attempt&nbsp;{attempt.number}
             </Link>
             <span className="text-quiet block text-sm">{entry.car.name}</span>
           </RowHead>

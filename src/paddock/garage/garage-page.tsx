@@ -71,7 +71,7 @@ function SetupSection({ setup }: { readonly setup: Setup }) {
             { name: 'wheel scale', unit: 'mm a pulse', figures: true },
             { name: 'sure to', unit: '± %', figures: true, wide: true },
             { name: 'recorded' },
-            { name: 'note' },
+            { name: 'note', wide: true },
           ]}
         >
           {setup.scales.map((scale) => (
@@ -85,11 +85,12 @@ function SetupSection({ setup }: { readonly setup: Setup }) {
                   </Link>
                 )}
                 {scale.id === inUse.id ? <span className="font-bold">, in use</span> : null}
+                <span className="text-quiet block text-sm md:hidden">{scale.note}</span>
               </RowHead>
               <FigureCell>{roundedDigits(scale.mmPerPulse, 3)}</FigureCell>
-              <FigureCell wide>{roundedDigits(scale.scaleSigma * 100, 2)}</FigureCell>
+              <FigureCell wide>{roundedDigits(2 * scale.scaleSigma * 100, 2)}</FigureCell>
               <Cell className="whitespace-nowrap">{formatDay(scale.recordedMs, deviceZone())}</Cell>
-              <Cell>{scale.note}</Cell>
+              <Cell wide>{scale.note}</Cell>
             </Row>
           ))}
         </DataTable>

@@ -13,7 +13,7 @@ export function DataTable({
   return (
     // biome-ignore lint/a11y/noNoninteractiveTabindex: a region that scrolls must be reachable from the keyboard
     <section className="overflow-x-auto" tabIndex={0} aria-label={caption}>
-      <table className="w-full border-collapse text-base">
+      <table className="w-full border-collapse text-base md:max-xl:text-sm">
         <caption className="spoken-only">{caption}</caption>
         <thead>
           <tr className="border-ink border-b">
@@ -71,7 +71,7 @@ export function Cell({
   readonly className?: string;
   readonly wide?: Wide;
 }) {
-  return <td className={`px-1.5 py-2 first:pl-0 md:min-w-36 md:px-2 ${fromWidth(wide)} ${className}`}>{children}</td>;
+  return <td className={`px-1.5 py-2 first:pl-0 md:px-2 lg:min-w-36 ${fromWidth(wide)} ${className}`}>{children}</td>;
 }
 
 /** A figure in its column; a dash where there is none. */
