@@ -43,6 +43,8 @@ class Walk {
   /** Instant and distance walked to. */
   private at: number;
   private d: number;
+  /** Nothing is crossed before this distance: most knots are far from every place. */
+  private ahead = Number.NEGATIVE_INFINITY;
 
   constructor(
     private readonly state: RunState,
@@ -86,6 +88,7 @@ class Walk {
     });
     this.at = anchor.at;
     this.d = anchor.d;
+    this.ahead = Number.NEGATIVE_INFINITY;
   }
 
   /** Passes places by distance up to an instant, whose own distance is given where it is no knot of the trace. */
@@ -102,12 +105,17 @@ class Walk {
   }
 
   private advance(at: number, d: number): void {
-    if (d > this.d) this.cross(at, d);
+    const back = d < this.d;
+    const crosses = !back && d >= this.ahead;
+    if (crosses) this.cross(at, d);
     this.at = at;
     this.d = d;
+    if (back) this.ahead = Number.NEGATIVE_INFINITY;
+    else if (crosses) this.ahead = this.nextD() ?? Number.POSITIVE_INFINITY;
   }
 
   private cross(at: number, d: number): void {
+    if (d <= this.d) return;
     const instantOf = (x: number): number => Math.round(this.at + ((x - this.d) / (d - this.d)) * (at - this.at));
     const { derived, model } = this;
     if (derived.startAt === null && derived.start !== 'standing' && model.start >= this.d && model.start <= d) {

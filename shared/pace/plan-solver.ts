@@ -141,7 +141,6 @@ const MOST_ITERATIONS = 60;
 /** Finds s such that the pieces take `time` seconds from speed v0. */
 export function solve(pieces: readonly Piece[], car: CarLimits, v0: number, time: number): Solution {
   const evaluation = makeEvaluation(pieces.length);
-  const run = (s: number): Evaluation => evaluate(pieces, car, v0, s, evaluation);
   let highest = 0;
   let average = 0;
   let heaviest = 0;
@@ -150,18 +149,18 @@ export function solve(pieces: readonly Piece[], car: CarLimits, v0: number, time
     heaviest = Math.max(heaviest, piece.weight);
     average += (piece.to - piece.from) / piece.weight;
   }
-  const fastest = run(highest).time;
+  const fastest = evaluate(pieces, car, v0, highest, evaluation).time;
   if (fastest > time + CLOSE_ENOUGH) return { kind: 'short', s: highest, by: fastest - time, evaluation };
   let low = car.floor > 0 ? car.floor / heaviest : 0;
   if (low > 0) {
-    const slowest = run(low).time;
+    const slowest = evaluate(pieces, car, v0, low, evaluation).time;
     if (slowest < time - CLOSE_ENOUGH) return { kind: 'long', s: low, by: time - slowest, evaluation };
   }
   let high = highest;
   let s = Math.min(highest, Math.max(low, average / time));
   let iterations = 0;
   for (; iterations < MOST_ITERATIONS; iterations++) {
-    const off = run(s).time - time;
+    const off = evaluate(pieces, car, v0, s, evaluation).time - time;
     if (Math.abs(off) < CLOSE_ENOUGH) break;
     if (off > 0) low = s;
     else high = s;

@@ -117,18 +117,27 @@ export function makePlan(request: PlanRequest, pieces: readonly Piece[] = planPi
   if (pieces.length === 0) return finishedPlan(request);
   const solution = solve(pieces, car, from.v, schedule.targetTime - from.t);
   const profile = profileOf(pieces, car, from, solution.evaluation);
-  const timeAt = (x: number): Seconds => seconds(profile.timeAt(x));
   return {
     outcome: OUTCOMES[solution.kind],
     by: seconds(solution.kind === 'solved' ? 0 : solution.by),
     s: solution.s,
     iterations: solution.kind === 'solved' ? solution.iterations : 0,
     cannotBrake: profile.cannotBrake,
-    timeAt,
-    plannedErrorAt: (x) => seconds(timeAt(x) - targetTimeAt(schedule, x)),
-    speedAt: (x) => metresPerSecond(profile.speedAt(x)),
-    holdAt: (x) => profile.stretchAt(x).hold,
-    stretchAt: (x) => profile.stretchAt(x),
+    timeAt(x) {
+      return seconds(profile.timeAt(x));
+    },
+    plannedErrorAt(x) {
+      return seconds(profile.timeAt(x) - targetTimeAt(schedule, x));
+    },
+    speedAt(x) {
+      return metresPerSecond(profile.speedAt(x));
+    },
+    holdAt(x) {
+      return profile.stretchAt(x).hold;
+    },
+    stretchAt(x) {
+      return profile.stretchAt(x);
+    },
   };
 }
 
@@ -179,16 +188,13 @@ function phasesOf(piece: Piece, v0: number, v1: number, limit: number, car: CarL
     brakingFrom: motion.peak > v1 + 1e-9 ? metres(brakeX) : null,
   };
   const ramp = v0 > motion.peak ? -car.deceleration : car.acceleration;
+  const cruiseT = begins + Math.abs(motion.peak - v0) / Math.abs(ramp);
+  const brakeT = cruiseT + (motion.cruise > 0 ? motion.cruise / motion.peak : 0);
   const phases: Phase[] = [];
-  let t = begins;
-  const push = (x: number, v: number, a: number, length: number, time: number): void => {
-    if (length > 0) phases.push({ x, t, v, a, stretch });
-    t += time;
-  };
-  push(piece.from, v0, ramp, motion.rampIn, Math.abs(motion.peak - v0) / Math.abs(ramp));
-  push(cruiseX, motion.peak, 0, motion.cruise, motion.cruise > 0 ? motion.cruise / motion.peak : 0);
-  push(brakeX, motion.peak, -car.deceleration, piece.to - brakeX, (motion.peak - v1) / car.deceleration);
-  return { phases, ends: t };
+  if (motion.rampIn > 0) phases.push({ x: piece.from, t: begins, v: v0, a: ramp, stretch });
+  if (motion.cruise > 0) phases.push({ x: cruiseX, t: cruiseT, v: motion.peak, a: 0, stretch });
+  if (piece.to - brakeX > 0) phases.push({ x: brakeX, t: brakeT, v: motion.peak, a: -car.deceleration, stretch });
+  return { phases, ends: brakeT + (motion.peak - v1) / car.deceleration };
 }
 
 function profileOf(pieces: readonly Piece[], car: CarLimits, from: PlanRequest['from'], { nodes, limits }: Evaluation): Profile {
@@ -204,21 +210,39 @@ function profileOf(pieces: readonly Piece[], car: CarLimits, from: PlanRequest['
   }
   const last = phases[phases.length - 1] as Phase;
   const finish: Phase = { x: last.stretch.to, t, v: nodes[pieces.length] as number, a: 0, stretch: last.stretch };
-  const phaseAt = (x: number): Phase => (x >= finish.x ? finish : findPhase(phases, x));
-  const speedIn = (phase: Phase, x: number): number => Math.sqrt(Math.max(0, phase.v * phase.v + 2 * phase.a * Math.max(0, x - phase.x)));
-  return {
-    cannotBrake,
-    speedAt: (x) => speedIn(phaseAt(x), x),
-    timeAt: (x) => {
-      const phase = phaseAt(x);
-      const way = Math.max(0, x - phase.x);
-      if (way === 0 || phase === finish) return phase.t;
-      // 2·way/(v0+v1) holds for steady and uniformly changing speed alike, and does not cancel near a = 0
-      return phase.t + (2 * way) / (phase.v + speedIn(phase, x));
-    },
-    stretchAt: (x) => phaseAt(x).stretch,
-  };
+  return new SolvedProfile(cannotBrake, phases, finish);
 }
+
+/** A class, not closures: a plan is made every second of a run, and of every run that is replayed. */
+class SolvedProfile implements Profile {
+  constructor(
+    readonly cannotBrake: boolean,
+    private readonly phases: readonly Phase[],
+    private readonly finish: Phase,
+  ) {}
+
+  private phaseAt(x: number): Phase {
+    return x >= this.finish.x ? this.finish : findPhase(this.phases, x);
+  }
+
+  speedAt(x: number): number {
+    return speedIn(this.phaseAt(x), x);
+  }
+
+  timeAt(x: number): number {
+    const phase = this.phaseAt(x);
+    const way = Math.max(0, x - phase.x);
+    if (way === 0 || phase === this.finish) return phase.t;
+    // 2·way/(v0+v1) holds for steady and uniformly changing speed alike, and does not cancel near a = 0
+    return phase.t + (2 * way) / (phase.v + speedIn(phase, x));
+  }
+
+  stretchAt(x: number): PlannedStretch {
+    return this.phaseAt(x).stretch;
+  }
+}
+
+const speedIn = (phase: Phase, x: number): number => Math.sqrt(Math.max(0, phase.v * phase.v + 2 * phase.a * Math.max(0, x - phase.x)));
 
 function findPhase(phases: readonly Phase[], x: number): Phase {
   let [low, high] = [0, phases.length - 1];
