@@ -4,6 +4,8 @@ import { fromNdjson } from '#shared/journal/ndjson.ts';
 import { isSensorObservation } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
 import { readout } from '#shared/pace/run.ts';
+import { ok } from '#shared/result.ts';
+import type { SensorSource } from '#src/sensors/sensor-source.ts';
 import { must } from '#tests/client/storage/device.ts';
 import { Car } from './car.ts';
 import { type OpenedWindow, Rig } from './rig.ts';
@@ -168,5 +170,29 @@ describe('a sensor', () => {
       { type: 'sensor-lost.v1', sensor: 'serial' },
     ]);
     expect(opened.session.status().sensor).toBeNull();
+  });
+
+  it('that speaks before it reports itself live is named in the journal before what it says', async () => {
+    const { rig, opened } = await driven(5);
+    const { session } = opened;
+    // as a serial worker does: lines are handed on as they come, the state of the line a little later
+    const hasty: SensorSource = {
+      name: 'simulator',
+      open: async (listener) => {
+        listener.observed([{ type: 'pulse.v1', at: session.clock.now(), channel: 0, count: 500, boxUs: 9 }]);
+        listener.status({ state: 'live', goodLines: 1, garbledLines: 0, failure: null });
+        return ok(undefined);
+      },
+      close: async () => undefined,
+    };
+    must(await session.attach(hasty, { ask: false }));
+    await rig.world.pass(1000);
+    const journal = must(fromNdjson(await session.exportJournal())).observations;
+    const pulse = journal.findIndex((o) => o.type === 'pulse.v1' && o.count === 500);
+    expect(journal.slice(0, pulse).findLast((o) => o.type.startsWith('sensor-'))).toMatchObject({
+      type: 'sensor-gained.v1',
+      sensor: 'simulator',
+    });
+    expect(journal.filter((o) => o.type === 'sensor-gained.v1' && o.sensor === 'simulator')).toHaveLength(1);
   });
 });
