@@ -20,6 +20,11 @@ export async function openCockpit(page: Page): Promise<void> {
     .getByRole('button', { name: /store pack on this tablet|store the pack again/ })
     .first()
     .click();
+  await enterCockpit(page);
+}
+
+/** From the Event page, with the next attempt's pack stored, into the cockpit. */
+export async function enterCockpit(page: Page): Promise<void> {
   const next = page.getByRole('region', { name: /^next, for attempt/ });
   await expect(next.getByText(/^pack stored/)).toBeVisible();
   await next.getByRole('link', { name: 'open cockpit' }).click();
