@@ -1,5 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { clockExchange } from '#shared/pace/clock.ts';
+import { correctScale } from '#shared/pace/derive-scale.ts';
+import { coldShare, distanceVariance } from '#shared/pace/distance.ts';
+import type { Anchor } from '#shared/pace/run-state.ts';
 import { gainScale, placeSigma, ratioScale, shortestLeg } from '#shared/pace/scale.ts';
 import { steadySteps } from '#shared/pace/shown-figure.ts';
 
@@ -64,5 +67,55 @@ describe('a steady figure', () => {
       expect(n).toBeGreaterThanOrEqual(before);
       before = n;
     }
+  });
+});
+
+describe('what is not known of the distance after a correction', () => {
+  const HOURS_AGO = -20e9;
+  const start: Anchor = {
+    ...{ at: 0, d: 0, w: 0, g: 0, mmPerPulse: 500, scaleVariance: 9e-6, variance: 25, covariance: 0, cold: null },
+    scaleFrom: { at: 0, d: 0, w: 0, g: 0 },
+  };
+  /** Placed and corrected at 10 km by a touch with 5 m sigma. */
+  const corrected = (movedAt: number): Anchor => {
+    const here = { at: 200e6, d: 10_000, w: 20_000, g: 0 };
+    const leg = {
+      rule: 'ratio',
+      duty: 'scale',
+      anchor: start,
+      raw: here,
+      at: here.at,
+      d: here.d,
+      sigma: 5,
+      movedAt,
+      lost: 0,
+      changed: 0,
+    } as const;
+    const { kept, ...scale } = correctScale(leg);
+    expect(kept).toBeNull();
+    return { ...here, ...scale, variance: 25, scaleFrom: here };
+  };
+  const varianceAfter = (metres: number, movedAt: number): number =>
+    distanceVariance(corrected(movedAt), { w: 20_000 + metres * 2, g: 0 }, 200e6 + metres * 20_000, movedAt, []);
+  /** Slips 6e-4 m²/m, and a scale that wanders by 1.2e-11 a metre: over the leg that measured it (a third), and since. */
+  const road = (leg: number, metres: number): number => 6e-4 * metres + 1.2e-11 * ((leg / 3) * metres ** 2 + metres ** 3 / 3);
+
+  it('warm tyres: σ²[(1+ρ)² + ρ²], as the touch that placed the car also set its scale', () => {
+    for (const rho of [0.5, 1, 2]) {
+      const want = 25 * ((1 + rho) ** 2 + rho ** 2) + road(10_000, rho * 10_000);
+      expect(varianceAfter(rho * 10_000, HOURS_AGO)).toBeCloseTo(want, 6);
+    }
+  });
+
+  it('tyres still warming: the share by which they are warmer than on the leg that set the scale, of 0.35 %', () => {
+    const mean = (from: number, to: number): number => {
+      let sum = 0;
+      for (let i = 0; i < 10_000; i++) sum += Math.exp(-(from + ((i + 0.5) / 10_000) * (to - from)) / 400);
+      return sum / 10_000;
+    };
+    expect(coldShare(0, 200e6, 400e6)).toBeCloseTo(mean(200, 400), 8);
+    expect(coldShare(0, 100e6, 100e6)).toBeCloseTo(Math.exp(-0.25), 12);
+    const warmed = 0.0035 * (mean(0, 200) - mean(200, 400)) * 10_000;
+    expect(varianceAfter(10_000, 0) - varianceAfter(10_000, HOURS_AGO)).toBeCloseTo(warmed ** 2, 4);
   });
 });
