@@ -40,7 +40,7 @@ export const DESIGN: Readonly<Record<string, readonly DesignPair[]>> = {
     ...pairs('forbidden', except(SHARED, 'api'), ['zod', '#shared/api/runs.ts']),
   ],
   'One package, one keeper.': [
-    ...pairs('forbidden', except(SRC, 'storage'), ['dexie', 'dexie-react-hooks']),
+    ...pairs('forbidden', except(SRC, 'storage'), ['dexie']),
     ...pairs('allowed', ['src/storage/planted.ts'], ['dexie']),
     ...pairs('forbidden', except(SERVER, 'db', 'services'), ['drizzle-orm', 'drizzle-orm/pg-core']),
     ...pairs('allowed', ['server/db/planted.ts', 'server/services/planted.ts'], ['drizzle-orm', 'drizzle-orm/pg-core']),

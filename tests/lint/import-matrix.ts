@@ -23,7 +23,6 @@ export const TELLING_PACKAGES: readonly string[] = [
   '@hookform/resolvers/zod',
   'zod',
   'dexie',
-  'dexie-react-hooks',
   'uuid',
   'uplot',
   'drizzle-orm',

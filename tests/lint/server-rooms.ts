@@ -1,7 +1,7 @@
 import type { Room } from './room.ts';
 import { SHARED_ALL } from './shared-rooms.ts';
 
-const SERVER_FRAME = ['express', 'express-rate-limit', 'helmet', 'pino', 'pino-http', 'zod', 'node:*'];
+const SERVER_FRAME = ['express', 'helmet', 'pino', 'pino-http', 'zod', 'node:*'];
 
 export const SERVER_ROOMS: readonly Room[] = [
   {

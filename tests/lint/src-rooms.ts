@@ -1,7 +1,7 @@
 import type { Room } from './room.ts';
 import { SHARED_ALL, SHARED_PURE } from './shared-rooms.ts';
 
-const SCREEN = ['react', 'react-dom', '@base-ui/react', 'uplot', 'virtual:pwa-register', 'workbox-window'];
+const SCREEN = ['react', 'react-dom', 'uplot', 'virtual:pwa-register', 'workbox-window'];
 const SRC_LOW = ['src/storage', 'src/sensors'];
 const SRC_MIDDLE = ['src/run', 'src/components', 'src/sync', ...SRC_LOW];
 
@@ -22,7 +22,7 @@ export const SRC_ROOMS: readonly Room[] = [
     sample: '#src/storage/planted.ts',
     alias: ['#src/storage/**'],
     mayImport: [...SHARED_PURE, 'shared/api codes', 'src/storage'],
-    packages: ['dexie', 'dexie-react-hooks'],
+    packages: ['dexie'],
   },
   {
     name: 'src/sensors',
