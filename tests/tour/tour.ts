@@ -61,9 +61,9 @@ async function driven(page: Page): Promise<void> {
   await hold(page, 'end the run');
 }
 
+/** The server's run sheet, once the tablet has sent the journal. */
 async function told(page: Page): Promise<void> {
-  await page.goto('/runs');
-  await page.getByRole('table', { name: 'runs, newest first' }).getByRole('link').first().click();
+  await page.getByRole('link', { name: 'run sheet' }).click();
   await expect(page.getByText('safe on server')).toBeVisible({ timeout: 60_000 });
   await expect(page.getByRole('link', { name: 'download journal' })).toBeVisible({ timeout: 60_000 });
   await expect(page.getByText(/^The cockpit showed/)).toBeVisible({ timeout: 60_000 });
