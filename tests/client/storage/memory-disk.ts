@@ -54,7 +54,8 @@ export class MemoryWindow implements MirrorFolder {
 
   names = async (): Promise<readonly string[]> => this.disk.names();
 
-  open = async (name: string): Promise<MirrorFile | null> => (this.disk.hold(name, this) ? this.file(name) : null);
+  /** What a dead window still had under way must not take the file from the next one. */
+  open = async (name: string): Promise<MirrorFile | null> => (!this.killed && this.disk.hold(name, this) ? this.file(name) : null);
 
   remove = async (name: string): Promise<void> => this.disk.remove(name);
 
