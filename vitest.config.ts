@@ -1,6 +1,9 @@
 import { defineConfig } from 'vitest/config';
 
-/** Rooms of tests: `unit` needs nothing, `client` a made-up browser, `api` PostgreSQL, `build` a finished `npm run build`. */
+/**
+ * Rooms of tests: `unit` needs nothing and is quick, `long` needs nothing but time (whole drives, recordings), `client` a made-up
+ * browser, `api` PostgreSQL, `build` a finished `npm run build`.
+ */
 export default defineConfig({
   test: {
     projects: [
@@ -9,6 +12,16 @@ export default defineConfig({
           name: 'unit',
           environment: 'node',
           include: ['tests/unit/**/*.test.ts', 'tests/lint/**/*.test.ts'],
+          exclude: ['**/*.long.test.ts'],
+          // pure functions: one world for all files saves loading it anew for each
+          isolate: false,
+        },
+      },
+      {
+        test: {
+          name: 'long',
+          environment: 'node',
+          include: ['tests/unit/**/*.long.test.ts'],
         },
       },
       {

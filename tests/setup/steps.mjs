@@ -91,4 +91,4 @@ const browser = {
 };
 
 export const CHECK_STEPS = [types, lint, vitest('unit')];
-export const ALL_STEPS = [...CHECK_STEPS, vitest('client'), vitest('api'), build, vitest('build'), browser];
+export const ALL_STEPS = [...CHECK_STEPS, vitest('long'), vitest('client'), vitest('api'), build, vitest('build'), browser];
