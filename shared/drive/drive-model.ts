@@ -1,30 +1,6 @@
-import type { Pack } from '#shared/course/pack.ts';
 import type { NewObservation } from '#shared/journal/observation.ts';
-import type { NavigatorHabits } from './drive-navigator.ts';
+import type { DriveOptions } from './drive-options.ts';
 import { createDriveWorld, TICK_US } from './drive-world.ts';
-import type { PulseBoxStart } from './pulse-box.ts';
-
-/**
- * A believable drive of any pack: car, driver, wheel, pulse box, receiver and navigator, the same for the same seed.
- *
- * The world runs `AHEAD_US` ahead of what it gives out. What the display shows therefore reaches the car a second later,
- * which is about what a driver takes to read and follow it, and a navigator who anticipates can touch before the place.
- */
-export interface DriveOptions {
-  readonly pack: Pack;
-  readonly seed: number;
-  /** Session instant at which the world begins, microseconds; the car stands behind the line. 0 where left out. */
-  readonly beginAt?: number;
-  /** Session instant of the release, where known from the start; a display may tell it later. */
-  readonly releaseAt?: number | null;
-  /** Official time at session instant 0, unix ms; null: fixes carry no time. */
-  readonly utcMsAtZero?: number | null;
-  /** Left out: the usual habits. Null: nobody taps. */
-  readonly navigator?: Partial<NavigatorHabits> | null;
-  readonly faults?: { readonly driven?: boolean; readonly dropouts?: boolean; readonly gnssOutages?: boolean };
-  /** Goes on from the middle of a run (a page that was reloaded): the car at `beginAt`, and the box's counters. */
-  readonly resume?: { readonly distance: number; readonly speed: number } & PulseBoxStart;
-}
 
 /** What the cockpit shows. */
 export interface DriveDisplay {
@@ -51,6 +27,12 @@ export interface Drive {
 
 const AHEAD_US = 1_000_000;
 
+/**
+ * A believable drive of any pack: car, driver, wheel, pulse box, receiver and navigator, the same for the same seed.
+ *
+ * The world runs `AHEAD_US` ahead of what it gives out. What the display shows therefore reaches the car a second later,
+ * which is about what a driver takes to read and follow it, and a navigator who anticipates can touch before the place.
+ */
 export function createDrive(options: DriveOptions): Drive {
   const world = createDriveWorld(options);
   let waiting: NewObservation[] = [];

@@ -1,5 +1,6 @@
 import type { Pack } from '#shared/course/pack.ts';
-import { createDrive, type Drive, type DriveDisplay, type DriveOptions } from '#shared/drive/drive-model.ts';
+import { createDrive, type Drive, type DriveDisplay } from '#shared/drive/drive-model.ts';
+import type { DriveOptions } from '#shared/drive/drive-options.ts';
 import { ok } from '#shared/result.ts';
 import { pageStamp, type SensorClock } from './sensor-clock.ts';
 import type { SensorListener, SensorSource } from './sensor-source.ts';

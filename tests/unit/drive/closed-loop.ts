@@ -1,5 +1,6 @@
 import type { Pack } from '#shared/course/pack.ts';
-import { createDrive, type DriveOptions } from '#shared/drive/drive-model.ts';
+import { createDrive } from '#shared/drive/drive-model.ts';
+import type { DriveOptions } from '#shared/drive/drive-options.ts';
 import type { NewObservation, Observation } from '#shared/journal/observation.ts';
 import { begin, type RunState, readout, step } from '#shared/pace/run.ts';
 import { micros } from '#shared/units.ts';

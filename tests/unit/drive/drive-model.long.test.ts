@@ -1,5 +1,6 @@
 import { describe, expect, it, vi } from 'vitest';
-import { createDrive, type DriveOptions } from '#shared/drive/drive-model.ts';
+import { createDrive } from '#shared/drive/drive-model.ts';
+import type { DriveOptions } from '#shared/drive/drive-options.ts';
 import type { NewObservation } from '#shared/journal/observation.ts';
 import { BASE_PACK, SHORT_PACK } from '#tests/unit/drive/base-pack.ts';
 import { type OfType, ofType } from '#tests/unit/sensor/reading.ts';
