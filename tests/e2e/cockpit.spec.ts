@@ -1,16 +1,6 @@
-import { readFile } from 'node:fs/promises';
-import type { Page } from 'playwright/test';
-import { fromNdjson, type JournalText } from '#shared/journal/ndjson.ts';
 import type { EpochV1, TapV1 } from '#shared/journal/observation.ts';
 import { expect, test } from './fixtures.ts';
-import { beginPractice, expectAccessible, hold, openCockpit, release } from './support/cockpit-pages.ts';
-
-async function exportJournal(page: Page): Promise<JournalText> {
-  const [download] = await Promise.all([page.waitForEvent('download'), page.getByRole('button', { name: 'export journal' }).click()]);
-  const journal = fromNdjson(await readFile(await download.path(), 'utf8'));
-  if (!journal.ok) throw new Error(journal.error.message);
-  return journal.value;
-}
+import { beginPractice, expectAccessible, exportJournal, hold, openCockpit, release } from './support/cockpit-pages.ts';
 
 /** `performance` stamp of an instant in the journal's first epoch, ms. */
 const stampOf = (epoch: EpochV1, at: number, rate: number): number => epoch.mono + (at - epoch.at) / (1000 * rate);

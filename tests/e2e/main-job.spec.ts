@@ -1,24 +1,15 @@
-import { readFile } from 'node:fs/promises';
 import type { Page } from 'playwright/test';
 import { runResponseSchema } from '#shared/api/runs.ts';
-import { fromNdjson, type JournalText } from '#shared/journal/ndjson.ts';
 import type { TapV1 } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
 import { runSheet } from '#shared/pace/run.ts';
 import { expect, test } from './fixtures.ts';
-import { beginPractice, hold, openCockpit, release } from './support/cockpit-pages.ts';
+import { beginPractice, exportJournal, hold, openCockpit, release } from './support/cockpit-pages.ts';
 
 /**
  * The whole job in one go, as a crew lives it: sign in, store the pack, lose the connection, be released on the second, pass the
  * places, be killed on the way, finish, get the connection back, and read the run sheet that the server derived.
  */
-
-async function exported(page: Page): Promise<JournalText> {
-  const [download] = await Promise.all([page.waitForEvent('download'), page.getByRole('button', { name: 'export journal' }).click()]);
-  const journal = fromNdjson(await readFile(await download.path(), 'utf8'));
-  if (!journal.ok) throw new Error(journal.error.message);
-  return journal.value;
-}
 
 /** What a run sheet page shows, word by word: the finish and every row of its table. */
 async function readSheet(page: Page): Promise<{ readonly finish: string; readonly rows: readonly string[] }> {
@@ -56,7 +47,7 @@ test('the main job: from the paddock over a course without a connection to the r
   await hold(page, 'end the run');
 
   // the cockpit's own account, taken out of the tablet without a server
-  const journal = await exported(page);
+  const journal = await exportJournal(page);
   const own = runSheet(replay(journal.header, journal.observations), journal.header);
   expect(own.finish?.elapsedS).toBeGreaterThan(20 * 60);
   const taps = journal.observations.filter((o): o is TapV1 => o.type === 'tap.v1');

@@ -1,21 +1,6 @@
-import AxeBuilder from '@axe-core/playwright';
 import type { Page } from 'playwright/test';
 import { expect, test } from './fixtures.ts';
-
-const PASSWORD = 'even-line-demo';
-
-async function signIn(page: Page, who = 'navigator'): Promise<void> {
-  await page.goto('/sign-in');
-  await page.getByLabel('email').fill(`${who}@evenline.example`);
-  await page.getByLabel('password').fill(PASSWORD);
-  await page.getByRole('button', { name: 'sign in' }).click();
-  await expect(page.getByRole('navigation', { name: 'pages' })).toBeVisible();
-}
-
-async function expectAccessible(page: Page): Promise<void> {
-  const { violations } = await new AxeBuilder({ page }).withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa']).analyze();
-  expect(violations.map(({ id, nodes }) => `${id}: ${nodes.map(({ html }) => html).join(' | ')}`)).toEqual([]);
-}
+import { expectAccessible, signIn } from './support/cockpit-pages.ts';
 
 async function openPage(page: Page, name: string): Promise<void> {
   await page.getByRole('navigation', { name: 'pages' }).getByRole('link', { name }).click();

@@ -1,13 +1,12 @@
-import { readFile } from 'node:fs/promises';
 import type { Page } from 'playwright/test';
-import { fromNdjson, type JournalText } from '#shared/journal/ndjson.ts';
+import type { JournalText } from '#shared/journal/ndjson.ts';
 import type { Observation, PulseV1 } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
 import { begin, readout, runSheet, step } from '#shared/pace/run.ts';
 import { writeButton } from '#shared/sensor/sentence-writer.ts';
 import { micros } from '#shared/units.ts';
 import { expect, test } from './fixtures.ts';
-import { beginPractice, hold, signIn } from './support/cockpit-pages.ts';
+import { beginPractice, exportJournal, hold, signIn } from './support/cockpit-pages.ts';
 import { scriptSerial } from './support/fake-serial-script.ts';
 import { type PlayedDrive, playedDrives } from './support/highway-drive.ts';
 import { hasRecorded, recordedNote } from './support/recorded-data.ts';
@@ -64,13 +63,6 @@ function withPresses(drive: PlayedDrive, seed: number, utcShiftMs: number): Time
   return [{ atMs: 0, text: writeButton(0, 0, first) }, ...stream];
 }
 
-async function exported(page: Page): Promise<JournalText> {
-  const [download] = await Promise.all([page.waitForEvent('download'), page.getByRole('button', { name: 'export journal' }).click()]);
-  const journal = fromNdjson(await readFile(await download.path(), 'utf8'));
-  if (!journal.ok) throw new Error(journal.error.message);
-  return journal.value;
-}
-
 /** Session instant of the stream's beginning, from the box's own clock: pulses carry both. */
 function streamStart(drive: PlayedDrive, observations: readonly { readonly type: string }[]): number {
   const first = /\$PEVLW,0,\d+,(\d+)\*/.exec(drive.sentences(0).find(({ text }) => text.includes('$PEVLW,0'))?.text ?? '');
@@ -121,7 +113,7 @@ for (const [index, seed] of [
     await expect(page.getByText(/^slow|no stop board|unofficial/i).first()).toBeVisible({ timeout: 90_000 });
     stream.stop();
     await hold(page, 'end the run');
-    const journal = await exported(page);
+    const journal = await exportJournal(page);
     const sheet = runSheet(replay(journal.header, journal.observations), journal.header);
 
     const start = streamStart(drive, journal.observations);

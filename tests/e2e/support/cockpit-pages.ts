@@ -1,5 +1,7 @@
+import { readFile } from 'node:fs/promises';
 import AxeBuilder from '@axe-core/playwright';
 import type { Page } from 'playwright/test';
+import { fromNdjson, type JournalText } from '#shared/journal/ndjson.ts';
 import { expect } from '#tests/e2e/fixtures.ts';
 
 /** The way of a demo navigator into the cockpit, as a person goes it. */
@@ -57,4 +59,12 @@ export async function hold(page: Page, name: string): Promise<void> {
   await page.mouse.down();
   await expect(page.getByRole('button', { name })).toHaveCount(0);
   await page.mouse.up();
+}
+
+/** The journal as the person takes it out of the tablet, by the key on the page. */
+export async function exportJournal(page: Page): Promise<JournalText> {
+  const [download] = await Promise.all([page.waitForEvent('download'), page.getByRole('button', { name: 'export journal' }).click()]);
+  const journal = fromNdjson(await readFile(await download.path(), 'utf8'));
+  if (!journal.ok) throw new Error(journal.error.message);
+  return journal.value;
 }
