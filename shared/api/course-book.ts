@@ -44,6 +44,10 @@ export const courseBookSchema = z.strictObject({
   zones: z.array(zoneSchema).max(100),
   slowDownLimit: printedSpeedSchema.nullable(),
   notes: z.string().max(4000),
+  geometry: z
+    .array(z.strictObject({ lat: z.number().min(-90).max(90), lon: z.number().min(-180).max(180), d: z.number().min(-5000).max(500_000) }))
+    .max(20_000)
+    .exactOptional(),
 });
 export type CourseBookSchemaIsCourseBook = Holds<SameShape<z.infer<typeof courseBookSchema>, CourseBook>>;
 

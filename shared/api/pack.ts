@@ -5,6 +5,13 @@ import { digestSchema, idSchema, instantSchema, nameSchema, timeZoneSchema } fro
 import { eventRulesSchema, raceClassSchema } from './race-class.ts';
 import type { Holds, SameShape } from './type-equality.ts';
 
+const carSchema = z.strictObject({
+  id: idSchema,
+  name: nameSchema,
+  dialReadsHighPercent: z.number().min(-20).max(20),
+  behindNose: z.strictObject({ seatM: z.number().min(0).max(20), aerialM: z.number().min(0).max(20) }).exactOptional(),
+});
+
 const wheelSchema = z.strictObject({
   setupId: idSchema,
   setupName: nameSchema,
@@ -13,18 +20,22 @@ const wheelSchema = z.strictObject({
   mmPerPulse: z.number().positive().max(5000),
   scaleSigma: z.number().min(0).max(0.2),
   scaleSource: z.enum(['nominal', 'measured distance', 'run']),
+  driven: z.boolean().exactOptional(),
+  secondChannel: z.number().int().min(0).max(15).exactOptional(),
 });
 
 const planSettingsSchema = z.strictObject({
   acceleration: z.number().positive().max(15),
   deceleration: z.number().positive().max(15),
   capMargin: z.number().min(0).max(0.5),
+  reserveS: z.number().min(0).max(30).exactOptional(),
 });
 
 const cockpitSettingsSchema = z.strictObject({
   speedUnit: z.enum(['km/h', 'mph']),
-  scaleRule: z.enum(['ratio', 'gain', 'place only']),
+  scaleRule: z.enum(['estimator', 'gain', 'ratio', 'place only']),
   tapLeadMs: z.strictObject({ glass: z.number().min(-1000).max(1000), wired: z.number().min(-1000).max(1000) }),
+  tapLeadSigmaMs: z.strictObject({ glass: z.number().positive().max(1000), wired: z.number().positive().max(1000) }).exactOptional(),
   tapScatterMs: z.number().positive().max(1000),
   buttonSide: z.enum(['right', 'left']),
 });
@@ -55,7 +66,7 @@ export const packSchema = z.strictObject({
   raceClass: raceClassSchema,
   ownCheckpoints: z.array(checkpointSchema).max(200),
   crewZones: z.array(zoneSchema).max(100),
-  car: z.strictObject({ id: idSchema, name: nameSchema, dialReadsHighPercent: z.number().min(-20).max(20) }),
+  car: carSchema,
   wheel: wheelSchema,
   plan: planSettingsSchema,
   settings: cockpitSettingsSchema,

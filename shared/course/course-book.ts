@@ -46,6 +46,13 @@ export interface Zone {
   readonly source: 'official' | 'crew';
 }
 
+/** One point of the surveyed line along which the officials measured: WGS84 degrees, and its official distance in metres. */
+export interface SurveyedPoint {
+  readonly lat: number;
+  readonly lon: number;
+  readonly d: number;
+}
+
 export interface CourseBook {
   readonly id: string;
   readonly version: number;
@@ -57,4 +64,6 @@ export interface CourseBook {
   /** What comes after the finish, for the crew to read: limit of the slow-down stretch. Null if not printed. */
   readonly slowDownLimit: PrintedSpeed | null;
   readonly notes: string;
+  /** The surveyed line from before the start to past the finish, in order of distance; left out where the book carries none. */
+  readonly geometry?: readonly SurveyedPoint[];
 }

@@ -34,10 +34,18 @@ export interface Pack {
   /** The crew's own checkpoints over the book, in order of distance. Same shape, source 'own'. */
   readonly ownCheckpoints: readonly Checkpoint[];
   readonly crewZones: readonly Zone[];
-  readonly car: { readonly id: string; readonly name: string; readonly dialReadsHighPercent: number };
+  readonly car: CarInPack;
   readonly wheel: WheelInPack;
   readonly plan: PlanSettings;
   readonly settings: CockpitSettings;
+}
+
+export interface CarInPack {
+  readonly id: string;
+  readonly name: string;
+  readonly dialReadsHighPercent: number;
+  /** The timed point is the nose. How far behind it the navigator's sight line and the GNSS aerial are, metres; 0 where left out. */
+  readonly behindNose?: { readonly seatM: number; readonly aerialM: number };
 }
 
 export interface WheelInPack {
@@ -51,6 +59,10 @@ export interface WheelInPack {
   /** One standard deviation of that scale, as a fraction (0.003 = 0.3 %). */
   readonly scaleSigma: number;
   readonly scaleSource: 'nominal' | 'measured distance' | 'run';
+  /** The engine drives this wheel: it spins at the start and slips with speed. False where left out. */
+  readonly driven?: boolean;
+  /** Another wheel's channel to compare with; its scale is learnt on the way. */
+  readonly secondChannel?: number;
 }
 
 export interface PlanSettings {
@@ -59,14 +71,22 @@ export interface PlanSettings {
   readonly deceleration: number;
   /** Share of the cap kept free (0.02 = plan to cap less 2 %). */
   readonly capMargin: number;
+  /** Seconds in hand kept until the last tenth of the course; 0 where left out. */
+  readonly reserveS?: number;
 }
 
 export interface CockpitSettings {
   readonly speedUnit: SpeedUnit;
-  readonly scaleRule: 'ratio' | 'gain' | 'place only';
+  /** estimator: distance, scale, tyres and lead judged together, with GNSS where the class permits it. The others are simple rules. */
+  readonly scaleRule: 'estimator' | 'gain' | 'ratio' | 'place only';
   /** Navigator's tap lead by input, ms: the instant that counts is the touch less this. May be negative. */
   readonly tapLeadMs: { readonly glass: number; readonly wired: number };
+  /** How well that lead is known, one standard deviation, ms; `LEAD_SIGMA_UNLEARNT_MS` where left out. */
+  readonly tapLeadSigmaMs?: { readonly glass: number; readonly wired: number };
   /** One standard deviation of a tap's instant, ms. */
   readonly tapScatterMs: number;
   readonly buttonSide: 'right' | 'left';
 }
+
+/** A navigator whose taps nobody has compared with official passings yet. Judgement, no source. */
+export const LEAD_SIGMA_UNLEARNT_MS = 200;
