@@ -29,6 +29,8 @@ const RECEIVER_HOLDS_US = 3_000_000;
 const AT_REST = 0.3;
 /** Beyond this gap a straight trapezoid would invent distance. */
 const LONGEST_GAP_US = 30_000_000;
+/** GNSS says so: the car moves, m/s. */
+export const SURELY_MOVING = 3;
 const SHORTEST_LINE_M = 2;
 const FASTEST = 120;
 

@@ -1,4 +1,5 @@
-import { type Odometer, SURELY_MOVING } from '#shared/pace/odometer.ts';
+import { SURELY_MOVING } from '#shared/pace/gnss.ts';
+import type { Odometer } from '#shared/pace/odometer.ts';
 import { type Raw, rateNow } from '#shared/pace/track.ts';
 
 /** The odometer between records: carried forward, as long as that is honest. */

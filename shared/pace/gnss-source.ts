@@ -1,0 +1,85 @@
+import type { Aids } from '#shared/course/race-class.ts';
+import type { FixV1 } from '#shared/journal/observation.ts';
+import { gnssMetresAt, SURELY_MOVING, takeFix } from '#shared/pace/gnss.ts';
+import { rewriteLaunches } from '#shared/pace/launch.ts';
+import type { Odometer, OdometerChange } from '#shared/pace/odometer.ts';
+import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
+import { bridgeToCounts } from '#shared/pace/track.ts';
+
+/** GNSS as the source of distance: where the wheel falls silent, and back. */
+
+/** The wheel is silent for this long while GNSS says the car moves: carry on by GNSS. */
+const SILENT_US = 1_000_000;
+/** Below this share of the bridged metres the count had stood still, not gone on. */
+const COUNT_WENT_ON = 0.8;
+
+export function noteGnss(o: Odometer): void {
+  if (o.gnss.by === 'speed') o.usedGnssSpeed = true;
+  if (o.gnss.by === 'position') o.usedGnssPosition = true;
+}
+
+/** Takes a fix. GNSS carries on from the instant at which the wheel was last heard. */
+export function takeGnss(o: Odometer, fix: FixV1, aids: Aids, now: number, metresPerPulse: number): OdometerChange {
+  const { gnss } = o;
+  if (!takeFix(gnss, fix, aids, now)) return UNREMARKABLE;
+  if (o.mode === 'none') {
+    o.mode = 'gnss';
+    o.gnssZero = gnss.metres - o.g;
+    return knot(o, fix.at, o.w, o.g, metresPerPulse);
+  }
+  if (o.mode === 'wheel') {
+    if (!wheelFellSilent(o, fix.at)) return UNREMARKABLE;
+    beginBridge(o);
+  }
+  const lastAt = o.track.recent.at[o.track.recent.at.length - 1] ?? fix.at;
+  const g = gnss.metres - o.gnssZero;
+  if (fix.at >= lastAt && g <= o.g) o.stillAt = fix.at;
+  if (fix.at < lastAt || g <= o.g) return UNREMARKABLE;
+  noteGnss(o);
+  keepStill(o);
+  return knot(o, fix.at, o.w, g, metresPerPulse);
+}
+
+function wheelFellSilent(o: Odometer, at: number): boolean {
+  const { recent } = o.gnss;
+  const [a, b] = [recent[recent.length - 2], recent[recent.length - 1]];
+  if (a === undefined || b === undefined || at - o.wheelKnot.at <= SILENT_US) return false;
+  return a.speed > SURELY_MOVING && b.speed > SURELY_MOVING;
+}
+
+function beginBridge(o: Odometer): void {
+  const from = o.track.recent.at[o.track.recent.at.length - 1] ?? o.wheelKnot.at;
+  // a wheel silent for longer than GNSS remembers was standing: it moved only as long as GNSS says
+  const since = Math.max(from, (o.gnss.recent[0] as { at: number }).at);
+  o.bridge = { at: from, w: o.w, g: o.g, total: o.wheelKnot.total };
+  o.gnssZero = (gnssMetresAt(o.gnss, since) ?? o.gnss.metres) - o.g;
+  o.mode = 'gnss';
+  o.bridges++;
+}
+
+/** The wheel speaks again after GNSS carried on. If its count went on, the count decides; else the bridged metres stand. */
+export function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', metresPerPulse: number): OdometerChange {
+  const { wheel, gnss, bridge, track } = o;
+  const lastAt = track.recent.at[track.recent.at.length - 1] ?? wheel.at;
+  const reading = gnssMetresAt(gnss, wheel.at);
+  const g = Math.max(o.g, (reading ?? 0) - o.gnssZero);
+  const counts = bridge === null || verdict !== 'moved' ? null : wheel.total - bridge.total;
+  o.mode = 'wheel';
+  o.bridge = null;
+  o.wheelKnot = { at: wheel.at, total: wheel.total };
+  if (bridge === null || counts === null || counts * metresPerPulse < COUNT_WENT_ON * (g - bridge.g)) {
+    // GNSS knots may already lie a little later than this record
+    return knot(o, Math.max(wheel.at, lastAt), o.w, wheel.at >= lastAt ? g : o.g, metresPerPulse);
+  }
+  const endG = gnssAtRecord(o, wheel.at, g);
+  const w = bridge.w + counts;
+  bridgeToCounts(track, bridge, wheel.at, w, endG);
+  const share = endG > bridge.g ? counts / (endG - bridge.g) : 0;
+  rewriteLaunches(o.launches, bridge.at, bridge.w, bridge.g, share);
+  return knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
+}
+
+const gnssAtRecord = (o: Odometer, at: number, fallback: number): number => {
+  const reading = gnssMetresAt(o.gnss, at);
+  return reading === null ? fallback : reading - o.gnssZero;
+};
