@@ -5,9 +5,9 @@ export const METRES_PER_SECOND_PER_KNOT = 1852 / 3600;
 export const METRES_PER_SECOND_PER_KMH = 1 / 3.6;
 export const DAY_MS = 86_400_000;
 
-/** Plain decimal number, or null. */
+/** Plain decimal number, or null. Some receivers print a plus, or nothing before the point. */
 export function decimalField(text: string | undefined): number | null {
-  return text !== undefined && /^-?\d+(\.\d*)?$/.test(text) ? Number(text) : null;
+  return text !== undefined && /^[-+]?(\d+\.?\d*|\.\d+)$/.test(text) ? Number(text) : null;
 }
 
 /** Whole number in low..high, or null. */

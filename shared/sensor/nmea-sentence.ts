@@ -30,7 +30,11 @@ interface Motion {
   readonly course: number | null;
 }
 export type RmcSentence = Position & Motion & { readonly kind: 'rmc'; readonly dayMs: number | null };
-export type GgaSentence = Position & { readonly kind: 'gga' };
+export type GgaSentence = Position & {
+  readonly kind: 'gga';
+  /** Radius that holds 95 % of positions, metres, as estimated from HDOP and quality. */
+  readonly accuracy: number | null;
+};
 export type GllSentence = Position & { readonly kind: 'gll' };
 export type VtgSentence = Motion & { readonly kind: 'vtg' };
 export type ZdaSentence = { readonly kind: 'zda'; readonly timeOfDayMs: number | null; readonly dayMs: number | null };
@@ -41,10 +45,25 @@ const position = (lat: string | undefined, ns: string | undefined, lon: string |
   return pair.lat === null || pair.lon === null ? { lat: null, lon: null } : pair;
 };
 
-/** Status `A`/`V`, overruled by a mode of `N` (no fix) where the sentence has one. */
+/** Modes that measure nothing: no fix, typed in by hand, simulated. A place typed in is a stale one. */
+const isUnmeasured = (mode: string | undefined): boolean => mode === 'N' || mode === 'M' || mode === 'S';
+
+/** Status `A`/`V`, overruled by the mode where the sentence has one. */
 function statusField(status: string | undefined, mode: string | undefined): boolean | null {
-  if (status === 'V' || mode === 'N') return false;
+  if (status === 'V' || isUnmeasured(mode)) return false;
   return status === 'A' ? true : null;
+}
+
+/** The same by the quality of a GGA: 0 no fix, 7 typed in by hand, 8 simulated. */
+const UNMEASURED_QUALITY: readonly (number | null)[] = [0, 7, 8];
+/** One sigma of a range, metres, by quality: 1 autonomous, 2 differential, 4 RTK, 5 RTK float, 6 dead reckoning. Common practice, no source. */
+const RANGE_SIGMA: readonly (number | undefined)[] = [undefined, 3, 1.5, 3, 0.02, 0.5, 5];
+/** Receivers print 50 or 99.99 where they know none. */
+const UNKNOWN_HDOP = 50;
+
+/** 95 % radius: twice the horizontal error, which is HDOP times the error of a range. */
+function accuracyOf(hdop: number | null, quality: number | null): number | null {
+  return hdop !== null && hdop > 0 && hdop < UNKNOWN_HDOP ? 2 * hdop * (RANGE_SIGMA[quality ?? 1] ?? 3) : null;
 }
 
 const scaled = (value: number | null, factor: number): number | null => (value === null || value < 0 ? null : value * factor);
@@ -66,8 +85,9 @@ function gga(f: readonly string[]): GgaSentence {
   return {
     kind: 'gga',
     timeOfDayMs: timeOfDayField(f[1]),
-    valid: quality === null ? null : quality > 0,
+    valid: quality === null ? null : !UNMEASURED_QUALITY.includes(quality),
     ...position(f[2], f[3], f[4], f[5]),
+    accuracy: accuracyOf(decimalField(f[8]), quality),
   };
 }
 
@@ -76,7 +96,7 @@ function gll(f: readonly string[]): GllSentence {
 }
 
 function vtg(f: readonly string[]): VtgSentence {
-  if (f[9] === 'N') return { kind: 'vtg', speed: null, course: null };
+  if (isUnmeasured(f[9])) return { kind: 'vtg', speed: null, course: null };
   const knots = f[6] === 'N' ? scaled(decimalField(f[5]), METRES_PER_SECOND_PER_KNOT) : null;
   const kmh = f[8] === 'K' ? scaled(decimalField(f[7]), METRES_PER_SECOND_PER_KMH) : null;
   return { kind: 'vtg', speed: knots ?? kmh, course: f[2] === 'T' ? courseField(f[1]) : null };

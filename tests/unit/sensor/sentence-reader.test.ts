@@ -49,6 +49,7 @@ describe('pulse sentences', () => {
 });
 
 describe('fixes', () => {
+  const GLL = 'GNGLL,3725.5836211,N,12205.6191522,W,021417.00,A,A';
   const RMC = 'GNRMC,021417.00,A,3725.58362,N,12205.61915,W,10.000,65.13,070220,,,A';
   const VTG = 'GNVTG,65.13,T,52.07,M,10.000,N,18.520,K,D';
   const GGA = 'GNGGA,021417.00,3725.5836211,N,12205.6191522,W,4,12,0.76,4.4,M,-30.0,M,0.0,2000';
@@ -56,7 +57,9 @@ describe('fixes', () => {
   it('are one for the RMC, VTG and GGA of an epoch, with the finest position', () => {
     const [fix, ...more] = ofType(readAll(lines(RMC, VTG, GGA)).observations, 'fix.v1');
     expect(more).toEqual([]);
-    expect(fix).toMatchObject({ at: 1_000_000, via: 'nmea', course: 65.13, accuracy: null, utcMs: Date.UTC(2020, 1, 7, 2, 14, 17) });
+    expect(fix).toMatchObject({ at: 1_000_000, via: 'nmea', course: 65.13, utcMs: Date.UTC(2020, 1, 7, 2, 14, 17) });
+    // RTK: twice 0.76 x 0.02 m
+    expect(fix?.accuracy).toBeCloseTo(0.0304, 6);
     expect(fix?.lat).toBeCloseTo(37 + 25.5836211 / 60, 10);
     expect(fix?.lon).toBeCloseTo(-(122 + 5.6191522 / 60), 10);
     expect(fix?.speed).toBeCloseTo(10 * KNOT, 9);
@@ -105,6 +108,10 @@ describe('fixes', () => {
   it.each([
     ['status V', 'GPRMC,021417.00,V,3725.58362,N,12205.61915,W,10.0,65.1,070220,,,N'],
     ['mode N', 'GPRMC,021417.00,A,3725.58362,N,12205.61915,W,10.0,65.1,070220,,,N'],
+    ['mode typed in by hand', 'GPRMC,021417.00,A,3725.58362,N,12205.61915,W,10.0,65.1,070220,,,M'],
+    ['quality typed in by hand', 'GPGGA,021417.00,3725.5836211,N,12205.6191522,W,7,00,99.9,,M,,M,,'],
+    ['quality simulated', 'GPGGA,021417.00,3725.5836211,N,12205.6191522,W,8,12,0.9,,M,,M,,'],
+    ['GLL mode N', 'GLGLL,3725.5836211,N,12205.6191522,W,021417.00,A,N'],
     ['quality 0', 'GPGGA,021417.00,3725.5836211,N,12205.6191522,W,0,00,99.9,,M,,M,,'],
   ])('without a fix (%s) have no place, speed or time', (_, body) => {
     const { observations } = readAll(lines(body));
@@ -114,6 +121,47 @@ describe('fixes', () => {
   it('believe the sentence that says there is none', () => {
     const [fix] = ofType(readAll(lines(RMC, GGA.replace(',4,12,', ',0,00,'))).observations, 'fix.v1');
     expect(fix).toMatchObject({ lat: null, lon: null, speed: null });
+  });
+
+  it.each(['GP', 'GN', 'GL', 'GA', 'GB', 'GQ', 'BD', 'QZ', 'GI', 'II'])('are read of talker %s', (talker) => {
+    const texts = [RMC, VTG, GGA].map((body) => body.replace('GN', talker));
+    expect(ofType(readAll(lines(...texts)).observations, 'fix.v1')).toMatchObject([
+      { course: 65.13, lat: expect.closeTo(37.426393685, 8) },
+    ]);
+  });
+
+  it('have no accuracy where the receiver knows none, and more where it has an ordinary fix', () => {
+    const accuracy = (body: string) => ofType(readAll(lines(body)).observations, 'fix.v1')[0]?.accuracy;
+    expect(accuracy(GGA.replace(',0.76,', ',,'))).toBeNull();
+    expect(accuracy(GGA.replace(',0.76,', ',99.99,'))).toBeNull();
+    expect(accuracy(GGA.replace(',4,12,0.76,', ',1,12,1.00,'))).toBeCloseTo(6, 9);
+    expect(accuracy(GLL)).toBeNull();
+  });
+
+  it('are whole of a receiver that sends only GLL, whose date nobody knows', () => {
+    const [fix] = ofType(readAll(lines(GLL)).observations, 'fix.v1');
+    expect(fix).toMatchObject({ speed: null, utcMs: null, lat: expect.closeTo(37.426393685, 8) });
+  });
+
+  it.each([
+    ['after its GGA', false],
+    ['before its GGA', true],
+  ])('keep speed and place of one epoch together at 10 Hz when lines are lost, VTG %s', (_, leads) => {
+    const reader = createSentenceReader();
+    const tenth = (k: number): string => `${String(21417 + Math.floor(k / 10)).padStart(6, '0')}.${k % 10}0`;
+    const sent = Array.from({ length: 60 }, (_, k) => {
+      const gga = GGA.replace('021417.00', tenth(k));
+      const speed = `GNVTG,65.13,T,,M,${k}.000,N,,K,D`;
+      const pair = leads ? [speed, gga] : [gga, speed];
+      return pair.map((body, i) => ({ k, body, us: k * 100_000 + i * 5000 }));
+    }).flat();
+    // four epochs in, the habit is known; then every seventh line is lost
+    const heard = sent.filter((_, i) => i < 16 || i % 7 !== 0);
+    const fixes = heard.flatMap(({ body, us }) => ofType(reader.push(bytesOf(lines(body)), us), 'fix.v1'));
+    const later = fixes.filter((fix) => fix.speed !== null);
+    expect(later.length).toBe(45);
+    // the arrival of the fix tells its epoch, the speed tells the VTG's
+    for (const fix of later) expect(Math.round((fix.speed ?? -1) / KNOT)).toBe(Math.floor(fix.at / 100_000));
   });
 
   it('ignore proprietary sentences that end like standard ones', () => {
