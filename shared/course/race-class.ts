@@ -39,4 +39,39 @@ export interface EventRules {
   readonly ties: 'shared' | 'earlier run' | 'rerun';
   /** Attempts whose errors add up to the score; 1 for a single run. */
   readonly sumOfRuns: number;
+  /** How a time error becomes points; left out: `PLAIN_SCORE`, one point for every millisecond either way. */
+  readonly score?: ScoreRules;
 }
+
+/** Points, fewest win. Whole numbers throughout. */
+export interface ScoreRules {
+  readonly unitMs: number;
+  /** What a part of a unit counts: nothing, a whole one from the half on, or a whole one as soon as it is begun. */
+  readonly partUnit: 'cut' | 'round' | 'begun';
+  readonly earlyPerUnit: number;
+  readonly latePerUnit: number;
+  /** Fewest and most points of a timed run, before penalties; `cap` null for no limit. */
+  readonly floor: number;
+  readonly cap: number | null;
+  /** Points of a run without a time; null: an entry that needs such a run is not ranked. */
+  readonly missing: {
+    readonly didNotStart: number | null;
+    readonly didNotFinish: number | null;
+    readonly noTime: number | null;
+    readonly excluded: number | null;
+  };
+  /** Which of an entry's runs count where it has more than `sumOfRuns`. */
+  readonly counting: 'best' | 'first';
+}
+
+/** The score where the event's rules say no more: the sum of the time errors in milliseconds. */
+export const PLAIN_SCORE: ScoreRules = {
+  unitMs: 1,
+  partUnit: 'cut',
+  earlyPerUnit: 1,
+  latePerUnit: 1,
+  floor: 0,
+  cap: null,
+  missing: { didNotStart: null, didNotFinish: null, noTime: null, excluded: null },
+  counting: 'best',
+};
