@@ -58,8 +58,8 @@ describe('fixes', () => {
     const [fix, ...more] = ofType(readAll(lines(RMC, VTG, GGA)).observations, 'fix.v1');
     expect(more).toEqual([]);
     expect(fix).toMatchObject({ at: 1_000_000, via: 'nmea', course: 65.13, utcMs: Date.UTC(2020, 1, 7, 2, 14, 17) });
-    // RTK: twice 0.76 x 0.02 m
-    expect(fix?.accuracy).toBeCloseTo(0.0304, 6);
+    // RTK: twice 0.76 x 0.4 m
+    expect(fix?.accuracy).toBeCloseTo(0.608, 6);
     expect(fix?.lat).toBeCloseTo(37 + 25.5836211 / 60, 10);
     expect(fix?.lon).toBeCloseTo(-(122 + 5.6191522 / 60), 10);
     expect(fix?.speed).toBeCloseTo(10 * KNOT, 9);
