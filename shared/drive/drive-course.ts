@@ -25,18 +25,17 @@ export interface DrivePlace {
   readonly at: number;
 }
 
-/** One standard deviation of where a printed place really lies. */
-const SURVEY_SIGMA = 2;
 /** Where the book does not say: room to stop after the finish, and the speed of the slow-down stretch. */
 const RUN_OUT = 800;
 const SLOW_DOWN = 80 / 3.6;
 
-export function makeDriveCourse(pack: Pack, random: Random): DriveCourse {
+/** @param surveySigma one standard deviation of where a printed place really lies, metres */
+export function makeDriveCourse(pack: Pack, random: Random, surveySigma: number): DriveCourse {
   const { courseBook, raceClass, crewZones, ownCheckpoints } = pack;
   const places = [...courseBook.checkpoints, ...ownCheckpoints]
     .map((checkpoint): DrivePlace => {
       const printed = printedMetres(checkpoint.at);
-      return { checkpoint, printed, at: checkpoint.duty === 'start' ? printed : printed + random.gauss(SURVEY_SIGMA) };
+      return { checkpoint, printed, at: checkpoint.duty === 'start' ? printed : printed + random.gauss(surveySigma) };
     })
     .sort((a, b) => a.at - b.at);
   const schedule = makeSchedule(courseBook, raceClass);

@@ -8,6 +8,8 @@ export interface Driver {
   readonly reaction: number;
   /** Acceleration for the next `dt`, within -deceleration..acceleration of the pack. */
   acceleration(car: CarState, shown: Shown, dt: number): number;
+  /** Brakes for something ahead within the next `dt` seconds, or may have to. */
+  isBraking(car: CarState, dt: number): boolean;
 }
 
 export interface CarState {
@@ -19,8 +21,11 @@ export interface CarState {
 }
 
 export interface Shown {
+  /** What the driver is told to hold; null: goes by the plan and by `late`. */
   readonly holdSpeed: number | null;
   readonly stopped: boolean;
+  /** Time error against the plan as shown, seconds late; left out: the driver feels the true one. */
+  readonly late?: number;
 }
 
 /** Speed wanders by 0.4 m/s around what the driver means to hold, over some seconds. */
@@ -30,13 +35,15 @@ const NOISE_S = 0.2;
 /** How quickly the right foot takes up a difference of speed. */
 const FOOT_S = 0.8;
 const REACTION_S = { mean: 0.4, sigma: 0.08, least: 0.15 };
-/** A driver without a display makes up a time error over a minute, over 8 s near the finish. */
+/** A driver who is told no speed makes up a time error over a minute, over 8 s near the finish. */
 const CORRECT_S = 60;
 const CORRECT_LATE_S = 8;
 const LATE_PART_M = 5000;
 /** Begins to brake for a limit where this share of full braking is needed; gentler after the finish. */
 const BRAKE_SHARE = 0.85;
 const SLOW_DOWN_SHARE = 0.45;
+/** Nobody brakes for what is further ahead, metres. */
+const BRAKING_WITHIN = 5000;
 /** Stands this far before the stop board, metres. */
 const STOP_SHORT = 3;
 /** Stays this far under a limit. */
@@ -51,12 +58,15 @@ export function createDriver(pack: Pack, course: DriveCourse, seed: number): Dri
   return {
     reaction,
     acceleration(car, shown, dt) {
-      noise = noise.due > 0 ? { value: noise.value, due: noise.due - dt } : { value: wander(NOISE_S), due: NOISE_S };
+      const span = Math.max(NOISE_S, dt);
+      if (noise.due > 0) noise.due -= dt;
+      else noise = { value: wander(span), due: dt < span ? span : 0 };
       const wanted = Math.max(0, wantedSpeed(car, shown, course) + (car.v > 5 ? noise.value : 0));
       const steady = (Math.min(wanted, highestSpeed(car, course)) - car.v) / FOOT_S;
       const braking = Math.max(brakingNeeded(car, course, least), shown.stopped ? least * BRAKE_SHARE : 0);
       return Math.max(-least, Math.min(most, steady, braking > 0 ? -braking : most));
     },
+    isBraking: (car, dt) => brakingNeeded(car, course, least, car.v * dt) > 0,
   };
 }
 
@@ -64,7 +74,7 @@ function wantedSpeed(car: CarState, shown: Shown, course: DriveCourse): number {
   if (shown.stopped || car.x > course.stop - STOP_SHORT) return 0;
   if (car.x >= course.finish) return course.slowDownLimit;
   if (shown.holdSpeed !== null) return shown.holdSpeed;
-  const late = car.t - course.plan.timeAt(car.x);
+  const late = shown.late ?? car.t - course.plan.timeAt(car.x);
   const over = course.finish - car.x < LATE_PART_M ? CORRECT_LATE_S : CORRECT_S;
   return course.plan.holdAt(car.x) * (1 + Math.max(-0.1, Math.min(0.1, late / over)));
 }
@@ -75,11 +85,11 @@ function highestSpeed(car: CarState, course: DriveCourse): number {
   return highest;
 }
 
-/** Deceleration needed now for the limits and the stop ahead; 0 while it is too early to brake. */
-function brakingNeeded(car: CarState, course: DriveCourse, full: number): number {
+/** Deceleration needed now (or `ahead` metres further on) for the limits and the stop ahead; 0 while it is too early to brake. */
+function brakingNeeded(car: CarState, course: DriveCourse, full: number, ahead = 0): number {
   const forSpeed = (speed: number, at: number, share: number): number => {
-    if (car.v <= speed || car.x >= at) return 0;
-    const needed = (car.v * car.v - speed * speed) / (2 * Math.max(0.05, at - car.x));
+    if (car.v <= speed || car.x >= at || car.x < at - BRAKING_WITHIN) return 0;
+    const needed = (car.v * car.v - speed * speed) / (2 * Math.max(0.05, at - car.x - ahead));
     return needed >= full * share ? needed : 0;
   };
   let most = forSpeed(0, course.stop, SLOW_DOWN_SHARE);

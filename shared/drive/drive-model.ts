@@ -1,6 +1,7 @@
 import type { NewObservation } from '#shared/journal/observation.ts';
 import type { DriveOptions } from './drive-options.ts';
-import { createDriveWorld, TICK_US } from './drive-world.ts';
+import { REAL_RATES } from './drive-parameters.ts';
+import { createDriveWorld } from './drive-world.ts';
 
 /** What the cockpit shows. */
 export interface DriveDisplay {
@@ -35,12 +36,13 @@ const AHEAD_US = 1_000_000;
  */
 export function createDrive(options: DriveOptions): Drive {
   const world = createDriveWorld(options);
+  const { tick } = options.rates ?? REAL_RATES;
   let waiting: NewObservation[] = [];
   return {
     advance(toUs, display) {
       if (display?.toRelease != null) world.release(display.at + display.toRelease * 1e6);
       const shown = { holdSpeed: display?.holdSpeed ?? null, stopped: display?.stopped ?? false };
-      while (world.at + TICK_US <= toUs + AHEAD_US) waiting.push(...world.tick(shown));
+      while (world.at + tick <= toUs + AHEAD_US) waiting.push(...world.tick(shown));
       const due = waiting.filter((o) => o.at <= toUs).sort((a, b) => a.at - b.at);
       waiting = waiting.filter((o) => o.at > toUs);
       return due;

@@ -1,8 +1,9 @@
 import { printedMetres } from '#shared/course/convert.ts';
+import type { SurveyedPoint } from '#shared/course/course-book.ts';
 import type { Pack } from '#shared/course/pack.ts';
 import { createRandom } from './random.ts';
 
-/** Where the road runs. WGS84 degrees; course in degrees true, 0..360. */
+/** Where the road runs, by official distance. WGS84 degrees; course in degrees true, 0..360. */
 export interface DriveRoad {
   at(distance: number): { readonly lat: number; readonly lon: number; readonly course: number };
 }
@@ -23,16 +24,29 @@ export function makeDriveRoad(pack: Pack, seed: number): DriveRoad {
   const nodes = pack.courseBook.checkpoints
     .flatMap((c): Node[] => (c.position === null ? [] : [{ distance: printedMetres(c.at), ...c.position }]))
     .sort((a, b) => a.distance - b.distance);
-  return nodes.length >= 2 ? roadThrough(() => nodes) : roadThrough(inventedNodes(seed));
+  return nodes.length >= 2 ? roadThrough((distance) => pairAround(nodes, distance)) : inventRoad(seed);
 }
 
-function roadThrough(nodesTo: (distance: number) => readonly Node[]): DriveRoad {
+/** The line along which the officials measured that road. */
+export function surveyRoad(road: DriveRoad, from: number, to: number): readonly SurveyedPoint[] {
+  const points: SurveyedPoint[] = [];
+  for (let d = from; d < to + STEP; d += STEP) {
+    const { lat, lon } = road.at(d);
+    points.push({ lat, lon, d });
+  }
+  return points;
+}
+
+function pairAround(nodes: readonly Node[], distance: number): readonly [Node, Node] {
+  const after = nodes.findIndex((node, i) => i > 0 && node.distance >= distance);
+  const i = after > 0 ? after : nodes.length - 1;
+  return [nodes[i - 1] as Node, nodes[i] as Node];
+}
+
+function roadThrough(nodesAround: (distance: number) => readonly [Node, Node]): DriveRoad {
   return {
     at(distance) {
-      const nodes = nodesTo(distance);
-      const after = nodes.findIndex((node, i) => i > 0 && node.distance >= distance);
-      const to = nodes[after > 0 ? after : nodes.length - 1] as Node;
-      const from = nodes[(after > 0 ? after : nodes.length - 1) - 1] as Node;
+      const [from, to] = nodesAround(distance);
       const share = (distance - from.distance) / (to.distance - from.distance);
       const east = (to.lon - from.lon) * metresPerDegreeOfLongitude(from.lat);
       const north = (to.lat - from.lat) * METRES_PER_DEGREE;
@@ -43,27 +57,26 @@ function roadThrough(nodesTo: (distance: number) => readonly Node[]): DriveRoad 
 }
 
 const STEP = 25;
-const KEPT = 4;
+const FIRST = -1000;
 /** In the middle of an ocean, so that nobody takes it for a place. */
 const BEGIN = { lat: 45, lon: -30 };
 
-/** Nodes around a distance, made as the car comes to them; the bends are a few slow waves of heading. */
-function inventedNodes(seed: number): (distance: number) => readonly Node[] {
+/** A road made as the car comes to it; the bends are a few slow waves of heading. */
+export function inventRoad(seed: number): DriveRoad {
   const random = createRandom(seed, 'road');
   const waves = [40_000, 9000, 2500].map((length) => ({ length, swing: random.range(0.2, 0.6), phase: random.range(0, 2 * Math.PI) }));
   const base = random.range(0, 2 * Math.PI);
   const headingAt = (d: number): number =>
     waves.reduce((sum, wave) => sum + wave.swing * Math.sin((2 * Math.PI * d) / wave.length + wave.phase), base);
-  let nodes: Node[] = [{ distance: -1000, ...BEGIN }];
-  return (distance) => {
-    for (let last = nodes.at(-1) as Node; nodes.length < 2 || last.distance < distance; last = nodes.at(-1) as Node) {
+  const nodes: Node[] = [{ distance: FIRST, ...BEGIN }];
+  return roadThrough((distance) => {
+    const to = Math.max(1, Math.ceil((distance - FIRST) / STEP));
+    for (let last = nodes[nodes.length - 1] as Node; nodes.length <= to; last = nodes[nodes.length - 1] as Node) {
       const heading = headingAt(last.distance);
       const lat = last.lat + (STEP * Math.cos(heading)) / METRES_PER_DEGREE;
-      nodes = [
-        ...nodes.slice(-KEPT),
-        { distance: last.distance + STEP, lat, lon: last.lon + (STEP * Math.sin(heading)) / metresPerDegreeOfLongitude(last.lat) },
-      ];
+      const lon = last.lon + (STEP * Math.sin(heading)) / metresPerDegreeOfLongitude(last.lat);
+      nodes.push({ distance: last.distance + STEP, lat, lon });
     }
-    return nodes;
-  };
+    return [nodes[to - 1] as Node, nodes[to] as Node];
+  });
 }
