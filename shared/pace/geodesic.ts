@@ -12,13 +12,17 @@ const RADIANS = Math.PI / 180;
  * GeodSolve). Its relative error grows with the square of length over earth radius: below 1e-8 up to 1 km and latitude 66°.
  */
 export function shortLine(lat1: number, lon1: number, lat2: number, lon2: number): number {
-  const middle = ((lat1 + lat2) / 2) * RADIANS;
-  const sin = Math.sin(middle);
+  const { north, east } = metresPerDegree((lat1 + lat2) / 2);
+  return Math.hypot(north * (lat2 - lat1), east * turnOf(lon2 - lon1));
+}
+
+/** Metres of one degree of latitude and of longitude on the WGS84 ellipsoid, at a latitude in degrees. */
+export function metresPerDegree(lat: number): { readonly north: number; readonly east: number } {
+  const sin = Math.sin(lat * RADIANS);
   const w2 = 1 - E2 * sin * sin;
   const primeVertical = EQUATORIAL_RADIUS / Math.sqrt(w2);
-  const meridian = (primeVertical * (1 - E2)) / w2;
-  let longitudes = lon2 - lon1;
-  if (longitudes > 180) longitudes -= 360;
-  else if (longitudes < -180) longitudes += 360;
-  return Math.hypot(meridian * (lat2 - lat1) * RADIANS, primeVertical * Math.cos(middle) * longitudes * RADIANS);
+  return { north: ((primeVertical * (1 - E2)) / w2) * RADIANS, east: primeVertical * Math.cos(lat * RADIANS) * RADIANS };
 }
+
+/** Degrees of longitude by the shorter way round. */
+export const turnOf = (degrees: number): number => (degrees > 180 ? degrees - 360 : degrees < -180 ? degrees + 360 : degrees);

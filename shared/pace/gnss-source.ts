@@ -4,7 +4,9 @@ import { gnssMetresAt, SURELY_MOVING, takeFix } from '#shared/pace/gnss.ts';
 import { rewriteLaunches } from '#shared/pace/launch.ts';
 import type { Odometer, OdometerChange } from '#shared/pace/odometer.ts';
 import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
-import { bridgeToCounts } from '#shared/pace/track.ts';
+import { projectFix, type Surveyed } from '#shared/pace/projected-fixes.ts';
+import { lookAgain, rewriteNodes } from '#shared/pace/source-nodes.ts';
+import { bridgeToCounts, lastKnotAt } from '#shared/pace/track.ts';
 
 /** GNSS as the source of distance: where the wheel falls silent, and back. */
 
@@ -18,26 +20,41 @@ export function noteGnss(o: Odometer): void {
   if (o.gnss.by === 'position') o.usedGnssPosition = true;
 }
 
-/** Takes a fix. GNSS carries on from the instant at which the wheel was last heard. */
-export function takeGnss(o: Odometer, fix: FixV1, aids: Aids, now: number, metresPerPulse: number): OdometerChange {
+/** Takes a fix. GNSS carries on from the instant at which the wheel was last heard. `surveyed`: null without surveyed geometry. */
+export function takeGnss(
+  o: Odometer,
+  fix: FixV1,
+  aids: Aids,
+  now: number,
+  metresPerPulse: number,
+  surveyed: Surveyed | null = null,
+): OdometerChange {
+  if (!takeFix(o.gnss, fix, aids, now)) return UNREMARKABLE;
+  if (surveyed !== null && aids.gnssPosition) projectFix(o.secondLook.projected, fix, o.gnss, surveyed);
+  const change = carryOn(o, metresPerPulse);
+  return lookAgain(o) ? { ...change, node: true } : change;
+}
+
+function carryOn(o: Odometer, metresPerPulse: number): OdometerChange {
   const { gnss } = o;
-  if (!takeFix(gnss, fix, aids, now)) return UNREMARKABLE;
+  const { at: arrival } = gnss.last as { at: number };
+  const at = Math.max(0, Math.round(arrival - gnss.lag.us));
   if (o.mode === 'none') {
     o.mode = 'gnss';
     o.gnssZero = gnss.metres - o.g;
-    return knot(o, fix.at, o.w, o.g, metresPerPulse);
+    return knot(o, at, o.w, o.g, metresPerPulse);
   }
   if (o.mode === 'wheel') {
-    if (!wheelFellSilent(o, fix.at)) return UNREMARKABLE;
+    if (!wheelFellSilent(o, arrival)) return UNREMARKABLE;
     beginBridge(o);
   }
-  const lastAt = o.track.recent.at[o.track.recent.at.length - 1] ?? fix.at;
+  const lastAt = lastKnotAt(o.track) ?? at;
   const g = gnss.metres - o.gnssZero;
-  if (fix.at >= lastAt && g <= o.g) o.stillAt = fix.at;
-  if (fix.at < lastAt || g <= o.g) return UNREMARKABLE;
+  if (at >= lastAt && g <= o.g) o.stillAt = at;
+  if (at < lastAt || g <= o.g) return UNREMARKABLE;
   noteGnss(o);
   keepStill(o);
-  return knot(o, fix.at, o.w, g, metresPerPulse);
+  return knot(o, at, o.w, g, metresPerPulse);
 }
 
 function wheelFellSilent(o: Odometer, at: number): boolean {
@@ -48,9 +65,9 @@ function wheelFellSilent(o: Odometer, at: number): boolean {
 }
 
 function beginBridge(o: Odometer): void {
-  const from = o.track.recent.at[o.track.recent.at.length - 1] ?? o.wheelKnot.at;
+  const from = lastKnotAt(o.track) ?? o.wheelKnot.at;
   // a wheel silent for longer than GNSS remembers was standing: it moved only as long as GNSS says
-  const since = Math.max(from, (o.gnss.recent[0] as { at: number }).at);
+  const since = Math.max(from, (o.gnss.recent[0] as { at: number }).at - o.gnss.lag.us);
   o.bridge = { at: from, w: o.w, g: o.g, total: o.wheelKnot.total };
   o.gnssZero = (gnssMetresAt(o.gnss, since) ?? o.gnss.metres) - o.g;
   o.mode = 'gnss';
@@ -60,7 +77,7 @@ function beginBridge(o: Odometer): void {
 /** The wheel speaks again after GNSS carried on. If its count went on, the count decides; else the bridged metres stand. */
 export function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', metresPerPulse: number): OdometerChange {
   const { wheel, gnss, bridge, track } = o;
-  const lastAt = track.recent.at[track.recent.at.length - 1] ?? wheel.at;
+  const lastAt = lastKnotAt(track) ?? wheel.at;
   const reading = gnssMetresAt(gnss, wheel.at);
   const g = Math.max(o.g, (reading ?? 0) - o.gnssZero);
   const counts = bridge === null || verdict !== 'moved' ? null : wheel.total - bridge.total;
@@ -75,6 +92,7 @@ export function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', 
   const w = bridge.w + counts;
   bridgeToCounts(track, bridge, wheel.at, w, endG);
   const share = endG > bridge.g ? counts / (endG - bridge.g) : 0;
+  rewriteNodes(o.sourceNodes, bridge.at, bridge.w, bridge.g, share);
   rewriteLaunches(o.launches, bridge.at, bridge.w, bridge.g, share);
   return knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
 }

@@ -1,24 +1,61 @@
 import type { Aids } from '#shared/course/race-class.ts';
 import type { FixV1 } from '#shared/journal/observation.ts';
 import { shortLine } from '#shared/pace/geodesic.ts';
+import { type GnssStamp, makeGnssStamp, stampOf } from '#shared/pace/gnss-stamp.ts';
 
 /**
  * Metres covered by GNSS alone: ground speed integrated (trapezoid), or lines between positions where there is no speed.
- * Runs all the time, whether or not anything rests on it; uses nothing that the class does not permit.
+ * Runs all the time, whether or not anything rests on it; uses nothing that the class does not permit. Instants in here are
+ * those at which fixes came; `lag` says how much earlier what they tell was true.
  */
 export interface Gnss {
   /** Metres since the first usable fix. */
   metres: number;
-  last: { at: number; speed: number | null; lat: number | null; lon: number | null; via: FixV1['via'] } | null;
+  last: LastFix | null;
   /** The last seconds of (instant, metres, speed), for bridging from the instant at which the wheel fell silent. */
-  recent: { at: number; metres: number; speed: number }[];
+  recent: GnssKnot[];
   fixes: number;
   rejected: number;
   /** What the latest metres were made of. */
   by: 'speed' | 'position' | null;
+  /** Latest fix before which metres were not measured speed by speed: an outage, or lines between positions. */
+  brokenAt: number;
+  readonly stamp: GnssStamp;
+  /** How late fixes come, µs, and one sigma of that. */
+  lag: { us: number; sigmaUs: number };
 }
 
-export const makeGnss = (): Gnss => ({ metres: 0, last: null, recent: [], fixes: 0, rejected: 0, by: null });
+export interface GnssKnot {
+  readonly at: number;
+  readonly metres: number;
+  readonly speed: number;
+}
+
+interface LastFix {
+  readonly at: number;
+  readonly speed: number | null;
+  readonly lat: number | null;
+  readonly lon: number | null;
+  readonly via: FixV1['via'];
+}
+
+/** Lateness before any has been measured, µs. Judgement, no source: a receiver's sentences, a tablet's own location. */
+export const LAG_BEFORE = {
+  nmea: { us: 150_000, sigmaUs: 150_000 },
+  geolocation: { us: 600_000, sigmaUs: 400_000 },
+} as const;
+
+export const makeGnss = (): Gnss => ({
+  metres: 0,
+  last: null,
+  recent: [],
+  fixes: 0,
+  rejected: 0,
+  by: null,
+  brokenAt: 0,
+  stamp: makeGnssStamp(),
+  lag: { ...LAG_BEFORE.nmea },
+});
 
 const RECENT_US = 8_000_000;
 /** A fix older than this when it comes is not believed. */
@@ -27,51 +64,65 @@ const OLDEST_US = 2_000_000;
 const RECEIVER_HOLDS_US = 3_000_000;
 /** Below this a receiver at rest still reports some speed, m/s. */
 const AT_REST = 0.3;
-/** Beyond this gap a straight trapezoid would invent distance. */
-const LONGEST_GAP_US = 30_000_000;
+/** Longer than this between two speeds is an outage. */
+export const OUTAGE_US = 3_000_000;
 /** GNSS says so: the car moves, m/s. */
 export const SURELY_MOVING = 3;
+/** Beyond this gap a straight trapezoid would invent distance, where positions tell a better one. */
+const LONGEST_GAP_US = 30_000_000;
 const SHORTEST_LINE_M = 2;
 const FASTEST = 120;
 
 /** Takes a fix; true when `metres` now stands for its instant. `now` is the latest instant known to the run. */
 export function takeFix(gnss: Gnss, fix: FixV1, aids: Aids, now: number): boolean {
   const speed = aids.gnssSpeed && fix.speed !== null && fix.speed >= 0 && fix.speed <= FASTEST ? fix.speed : null;
-  const placed = aids.gnssPosition && fix.lat !== null && fix.lon !== null && Math.abs(fix.lat) <= 90 && Math.abs(fix.lon) <= 180;
+  const placed = aids.gnssPosition && isPlaced(fix);
   const last = gnss.last;
   if (speed === null && !placed) return reject(gnss);
-  if (fix.at < now - OLDEST_US || (last !== null && fix.at <= last.at)) return reject(gnss);
+  if (fix.at < now - OLDEST_US) return reject(gnss);
   if (last !== null && last.via === 'nmea' && fix.via !== 'nmea' && fix.at - last.at < RECEIVER_HOLDS_US) return reject(gnss);
-  const here = { at: fix.at, speed, lat: placed ? fix.lat : null, lon: placed ? fix.lon : null, via: fix.via };
+  const other = last !== null && last.via !== fix.via;
+  const at = stampOf(gnss.stamp, fix, other);
+  if (last !== null && at <= last.at) return reject(gnss);
+  if (last === null || other) gnss.lag = { ...LAG_BEFORE[fix.via] };
+  const here: LastFix = { at, speed, lat: placed ? fix.lat : null, lon: placed ? fix.lon : null, via: fix.via };
   gnss.fixes++;
-  if (last === null) return keep(gnss, here, speed ?? 0);
+  if (last === null) {
+    gnss.brokenAt = at;
+    return keep(gnss, here, speed ?? 0);
+  }
   return advance(gnss, last, here);
 }
+
+export const isPlaced = ({ lat, lon }: FixV1): boolean => lat !== null && lon !== null && Math.abs(lat) <= 90 && Math.abs(lon) <= 180;
 
 function reject(gnss: Gnss): boolean {
   gnss.rejected++;
   return false;
 }
 
-function keep(gnss: Gnss, here: NonNullable<Gnss['last']>, speed: number): boolean {
+function keep(gnss: Gnss, here: LastFix, speed: number): boolean {
   gnss.last = here;
   gnss.recent.push({ at: here.at, metres: gnss.metres, speed });
   let drop = 0;
-  while (drop < gnss.recent.length - 2 && (gnss.recent[drop] as { at: number }).at < here.at - RECENT_US) drop++;
+  while (drop < gnss.recent.length - 2 && (gnss.recent[drop] as GnssKnot).at < here.at - RECENT_US) drop++;
   if (drop > 0) gnss.recent.splice(0, drop);
   return true;
 }
 
-const moving = (speed: number): number => (speed < AT_REST ? 0 : speed);
+/** Speed as far as it is movement. */
+export const moving = (speed: number): number => (speed < AT_REST ? 0 : speed);
 
-function advance(gnss: Gnss, last: NonNullable<Gnss['last']>, here: NonNullable<Gnss['last']>): boolean {
+function advance(gnss: Gnss, last: LastFix, here: LastFix): boolean {
   const us = here.at - last.at;
-  if (last.speed !== null && here.speed !== null && us <= LONGEST_GAP_US) {
-    gnss.metres += ((moving(last.speed) + moving(here.speed)) / 2) * (us / 1e6);
-    gnss.by = 'speed';
-    return keep(gnss, here, here.speed);
-  }
   const line = lineBetween(last, here);
+  const swept = last.speed !== null && here.speed !== null ? ((moving(last.speed) + moving(here.speed)) / 2) * (us / 1e6) : null;
+  if (us > OUTAGE_US || swept === null) gnss.brokenAt = here.at;
+  if (swept !== null && (us <= LONGEST_GAP_US || line === null)) {
+    gnss.metres += swept;
+    gnss.by = 'speed';
+    return keep(gnss, here, here.speed as number);
+  }
   if (line === null) return keep(gnss, here, here.speed ?? 0);
   const implied = line / (us / 1e6);
   // a position that moved too little is noise, one that moved too far is wrong: the next is measured from the same place
@@ -82,21 +133,23 @@ function advance(gnss: Gnss, last: NonNullable<Gnss['last']>, here: NonNullable<
   return keep(gnss, here, here.speed ?? implied);
 }
 
-function lineBetween(a: NonNullable<Gnss['last']>, b: NonNullable<Gnss['last']>): number | null {
+function lineBetween(a: LastFix, b: LastFix): number | null {
   if (a.lat === null || a.lon === null || b.lat === null || b.lon === null) return null;
   return shortLine(a.lat, a.lon, b.lat, b.lon);
 }
 
-/** Metres by GNSS at an instant of the last seconds, straight between fixes, at the last speed for up to 2 s beyond. Null before any. */
-export function gnssMetresAt(gnss: Gnss, at: number): number | null {
-  const { recent } = gnss;
+/** Metres by GNSS as of an instant of the last seconds, its lateness taken off. Null before any. */
+export const gnssMetresAt = (gnss: Gnss, at: number): number | null => metresAtArrival(gnss, at + gnss.lag.us);
+
+/** The same by the instants at which fixes came: straight between fixes, at the last speed for up to 2 s beyond. */
+export function metresAtArrival({ recent }: Gnss, at: number): number | null {
   const last = recent[recent.length - 1];
   if (last === undefined) return null;
   if (at >= last.at) return last.metres + (moving(last.speed) * Math.min(at - last.at, OLDEST_US)) / 1e6;
   for (let i = recent.length - 1; i > 0; i--) {
-    const [a, b] = [recent[i - 1] as Gnss['recent'][number], recent[i] as Gnss['recent'][number]];
+    const [a, b] = [recent[i - 1] as GnssKnot, recent[i] as GnssKnot];
     if (at < a.at) continue;
     return a.metres + (b.metres - a.metres) * ((at - a.at) / (b.at - a.at));
   }
-  return (recent[0] as Gnss['recent'][number]).metres;
+  return (recent[0] as GnssKnot).metres;
 }

@@ -3,7 +3,7 @@ import type { Odometer, OdometerChange } from '#shared/pace/odometer.ts';
 import { addKnot } from '#shared/pace/track.ts';
 
 /** Nothing moved, or moved as it does a hundred times a second: one value for all, never written to. */
-export const UNREMARKABLE: OdometerChange = { traced: false, launch: 'none', rewritten: null };
+export const UNREMARKABLE: OdometerChange = { traced: false, launch: 'none', rewritten: null, node: false };
 
 /** Raw values at an instant, by whichever source is in charge. */
 export function knot(
@@ -25,7 +25,7 @@ export function knot(
     pulseMetres: o.mode === 'wheel' ? metresPerPulse : 0,
   });
   const traced = addKnot(o.track, at, w, g, isLaunching(o.launches) || launch !== 'none');
-  return traced || launch !== 'none' || rewritten !== null ? { traced, launch, rewritten } : UNREMARKABLE;
+  return traced || launch !== 'none' || rewritten !== null ? { traced, launch, rewritten, node: false } : UNREMARKABLE;
 }
 
 /** The end of a standstill becomes a knot, or a straight line would have the car creep all the while. */

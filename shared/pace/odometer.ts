@@ -4,6 +4,8 @@ import { type Gnss, gnssMetresAt, makeGnss } from '#shared/pace/gnss.ts';
 import { handBack, noteGnss } from '#shared/pace/gnss-source.ts';
 import { type LaunchEvent, type LaunchWatch, makeLaunchWatch } from '#shared/pace/launch.ts';
 import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
+import type { SourceNode } from '#shared/pace/source-node.ts';
+import { makeSecondLook, type SecondLook } from '#shared/pace/source-nodes.ts';
 import { makeTrack, rateNow, type Track } from '#shared/pace/track.ts';
 import { makeWheelChannel, takeRecord, type WheelChannel } from '#shared/pace/wheel.ts';
 
@@ -30,6 +32,10 @@ export interface Odometer {
   gnssZero: number;
   /** Distance that nothing measured: instants and one sigma in metres. */
   losses: { at: number; sigma: number }[];
+  /** Comparisons with GNSS, in order of instant. */
+  sourceNodes: SourceNode[];
+  /** Where the comparing stands. */
+  readonly secondLook: SecondLook;
   usedWheel: boolean;
   usedGnssSpeed: boolean;
   usedGnssPosition: boolean;
@@ -44,6 +50,8 @@ export interface OdometerChange {
   readonly launch: LaunchEvent;
   /** Part of the past was told anew (bridged metres became counts). */
   readonly rewritten: { readonly from: number; readonly w: number; readonly g: number; readonly share: number } | null;
+  /** A source node was added. */
+  readonly node: boolean;
 }
 
 export const makeOdometer = (): Odometer => ({
@@ -59,6 +67,8 @@ export const makeOdometer = (): Odometer => ({
   bridge: null,
   gnssZero: 0,
   losses: [],
+  sourceNodes: [],
+  secondLook: makeSecondLook(),
   usedWheel: false,
   usedGnssSpeed: false,
   usedGnssPosition: false,
