@@ -3,7 +3,7 @@ import type { CockpitSettings } from '#shared/course/pack.ts';
 import { coldShare } from '#shared/pace/distance.ts';
 import type { Anchor, PlacePassing } from '#shared/pace/run-state.ts';
 import { gainScale, ratioScale, SCALE_DRIFT, SCALE_SIGMA_FIRST, SCALE_SIGMA_LATER, shortestLeg } from '#shared/pace/scale.ts';
-import type { Raw } from '#shared/pace/track.ts';
+import type { Counts } from '#shared/pace/track.ts';
 
 /**
  * Whether and how a leg corrects the wheel scale. The leg runs from the last place that set the scale (before the first, from
@@ -15,7 +15,7 @@ export interface ScaleLeg {
   readonly rule: CockpitSettings['scaleRule'];
   readonly duty: Duty;
   readonly anchor: Anchor;
-  readonly raw: Raw;
+  readonly raw: Counts;
   readonly at: number;
   /** Official distance of the place, m. */
   readonly d: number;
@@ -29,7 +29,7 @@ export interface ScaleLeg {
   readonly changed: number;
 }
 
-export interface ScaleOutcome extends Pick<Anchor, 'mmPerPulse' | 'scaleVariance' | 'covariance' | 'cold'> {
+export interface ScaleOutcome extends Pick<Anchor, 'mmPerPulse' | 'scaleVariance' | 'covariance' | 'coldShare'> {
   /** Why the scale was left alone; null when it was corrected. */
   readonly kept: PlacePassing['scaleKept'];
 }
@@ -45,7 +45,7 @@ export function correctScale(leg: ScaleLeg): ScaleOutcome {
   const measured = ((raw.w - scaleFrom.w) * mmPerPulse) / 1000;
   const drifted = anchor.scaleVariance + leg.changed + SCALE_DRIFT * Math.max(0, ((raw.w - anchor.w) * mmPerPulse) / 1000);
   const keep = (kept: NonNullable<ScaleOutcome['kept']>): ScaleOutcome => {
-    return { mmPerPulse, scaleVariance: drifted, covariance: 0, cold: anchor.cold, kept };
+    return { mmPerPulse, scaleVariance: drifted, covariance: 0, coldShare: anchor.coldShare, kept };
   };
   if (duty === 'settle') return keep('settle');
   if (duty !== 'scale') return keep('place');
@@ -61,17 +61,18 @@ export function correctScale(leg: ScaleLeg): ScaleOutcome {
       mmPerPulse: update.mmPerPulse,
       scaleVariance: update.variance,
       covariance,
-      cold: blend(anchor.cold, cold, update.gain),
+      coldShare: blend(anchor.coldShare, cold, update.gain),
       kept: null,
     };
   }
-  if (official < shortestLeg(Math.sqrt(sigma2), anchor.cold === null ? SCALE_SIGMA_FIRST : SCALE_SIGMA_LATER)) return keep('leg too short');
+  if (official < shortestLeg(Math.sqrt(sigma2), anchor.coldShare === null ? SCALE_SIGMA_FIRST : SCALE_SIGMA_LATER))
+    return keep('leg too short');
   return {
     mmPerPulse: ratioScale(mmPerPulse, official, measured),
     // the scale is the mean over the leg; by its end the tyre has wandered from that
     scaleVariance: (2 * sigma2) / (official * official) + (SCALE_DRIFT * official) / 3,
     covariance: (leg.sigma * leg.sigma) / official,
-    cold,
+    coldShare: cold,
     kept: null,
   };
 }

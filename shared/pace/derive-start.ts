@@ -1,7 +1,9 @@
 import type { CourseModel } from '#shared/pace/course-model.ts';
+import { firstBelief, firstTyres } from '#shared/pace/estimator.ts';
 import type { Launch } from '#shared/pace/launch.ts';
 import { type Anchor, type Derived, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
-import { tracedAt } from '#shared/pace/track.ts';
+import { leadInput, leadSigma } from '#shared/pace/tap-lead.ts';
+import { type Counts, tracedAt, withHeat } from '#shared/pace/track.ts';
 
 /** Which launch was the start, when the time started, and the first anchor. */
 
@@ -19,6 +21,8 @@ const JUMPED_EARLY_US = 10_000_000;
 /** A car that was this far from where it stands at the release had been rolling through. */
 const ROLLING_M = 30;
 const START_VARIANCE = 0.09;
+/** Driven wheels spin 5 to 20 m of counts away at the launch, by (8 m)². Common practice, no source. */
+const SPIN_VARIANCE = 64;
 const ROLLING_VARIANCE = 25;
 
 export function releaseInstant(state: RunState): number | null {
@@ -50,7 +54,7 @@ export function startOf(state: RunState, model: CourseModel): DerivedStart {
   if (raw === null) return standing;
   return {
     derived: { ...standing.derived, start: 'rolling' },
-    anchor: { ...firstAnchor(state, Math.round(gate), d, raw.w, raw.g), variance: START_VARIANCE + ROLLING_VARIANCE },
+    anchor: firstAnchor(state, Math.round(gate), d, { w: raw.w, g: raw.g }, START_VARIANCE + ROLLING_VARIANCE),
   };
 }
 
@@ -83,23 +87,28 @@ function fromRest(state: RunState, standing: StartPart, launch: Launch, d: numbe
   const at = Math.round(launch.first.at);
   return {
     derived: { ...standing, firstMovedAt: at, start: 'from rest' },
-    anchor: firstAnchor(state, at, d, launch.w + launch.first.within / nominalMetres(state), launch.g),
+    anchor: firstAnchor(state, at, d, { w: launch.w + launch.first.within / nominalMetres(state), g: launch.g }, START_VARIANCE),
   };
 }
 
-function firstAnchor(state: RunState, at: number, d: number, w: number, g: number): Anchor {
-  const { mmPerPulse, scaleSigma } = state.pack.wheel;
+function firstAnchor(state: RunState, at: number, d: number, counts: Counts, variance: number): Anchor {
+  const { pack, odometer } = state;
+  const { mmPerPulse, scaleSigma, driven = false } = pack.wheel;
+  const spun = variance + (driven ? SPIN_VARIANCE : 0);
+  const estimated = pack.settings.scaleRule === 'estimator';
   return {
     at,
     d,
-    w,
-    g,
+    ...withHeat(odometer.track, at, counts),
     mmPerPulse,
+    ...(estimated ? firstTyres(pack) : { cold: 0, speed: 0 }),
+    official: 1,
+    belief: estimated ? firstBelief(pack, spun, leadSigma(pack, leadInput(state))) : null,
     scaleVariance: scaleSigma * scaleSigma,
-    variance: START_VARIANCE,
+    variance: spun,
     covariance: 0,
-    scaleFrom: { at, d, w, g },
-    cold: null,
+    scaleFrom: { at, d, ...counts },
+    coldShare: null,
   };
 }
 

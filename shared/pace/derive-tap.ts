@@ -1,17 +1,10 @@
 import type { CourseModel, Place } from '#shared/pace/course-model.ts';
-import { correctScale } from '#shared/pace/derive-scale.ts';
-import { distanceOf, distanceVariance, lossVariance } from '#shared/pace/distance.ts';
 import type { Anchor, DerivedTap, PlacePassing, RunState, TapAct } from '#shared/pace/run-state.ts';
-import { placeSigma } from '#shared/pace/scale.ts';
+import type { Misfit, TakenFor, TapJudge } from '#shared/pace/tap-judge.ts';
+import { estimateJudge } from '#shared/pace/tap-judge-estimate.ts';
+import { simpleJudge } from '#shared/pace/tap-judge-simple.ts';
 
 /** What becomes of one tap, given everything before it and what it is taken for. */
-
-/**
- * plain: a touch at its place, which teaches the scale by its rule. rescale: the same, but the tyre had changed more than tyres
- * do, so less is thought of the scale before it. jump: right, but the distance had jumped before it (counts lost or wrong), so
- * it places and teaches nothing. mistaken: a touch too late or at another place.
- */
-export type TakenFor = 'plain' | 'rescale' | 'jump' | 'mistaken';
 
 export interface TapContext {
   readonly state: RunState;
@@ -42,8 +35,6 @@ const GATE_SIGMAS = 3.5;
 /** One touch is enough within this of the place, or within so many sigmas where distance is less sure. */
 const LEAST_REACH_M = 150;
 const REACH_SIGMAS = 4;
-/** Variance of reading between two pulses, m². */
-const PULSE_VARIANCE = 0.1;
 /** −2 ln of how rare a mistaken touch is (and how far it may be off), and a jump of distance or scale. Own judgement, tried by simulation. */
 const COST_OF_MISTAKE = 23;
 const COST_OF_JUMP = 14;
@@ -59,92 +50,71 @@ export const reachOf = (variance: number): number => Math.max(LEAST_REACH_M, REA
 export function judgeTap(context: TapContext, tap: TapAct, takenFor: TakenFor): JudgedTap {
   const { state, anchors } = context;
   const anchor = anchors[anchors.length - 1];
-  const scale = anchor?.mmPerPulse ?? state.pack.wheel.mmPerPulse;
-  const unused = (
-    verdict: DerivedTap['verdict'],
-    cost = 0,
-    checkpoint = tap.checkpoint,
-    moved = 0,
-    strain: number | null = null,
-  ): JudgedTap => ({
-    tap,
-    verdict: { seq: tap.seq, checkpoint, verdict, moved, scaleBefore: scale, scaleAfter: scale, scaleKept: null },
-    use: null,
-    strain,
-    cost,
-  });
-  if (state.acts.voided.includes(tap.seq)) return unused('voided');
-  if (tap.raw === null) return unused('provisional');
-  if (anchor === undefined || tap.t < anchor.at) return unused('no place near');
+  const idle = (verdict: DerivedTap['verdict']): JudgedTap => unused(tap, verdict, anchor?.mmPerPulse ?? state.pack.wheel.mmPerPulse, 0);
+  if (state.acts.voided.includes(tap.seq)) return idle('voided');
+  if (tap.raw === null) return idle('provisional');
+  if (anchor === undefined || tap.t < (anchors[0] as Anchor).at) return idle('no place near');
   const explicit = movedTo(state, tap.seq);
   const trusted = explicit !== null || state.acts.accepted.includes(tap.seq);
-  if (!trusted && isDoubleTouch(context, tap)) return unused('repeated');
-  const measured = distanceOf(anchor, tap.raw);
-  const grown = distanceVariance(anchor, tap.raw, tap.t, (anchors[0] as Anchor).at, state.odometer.losses);
-  const choice = choosePlace(context, tap, measured, explicit, reachOf(grown));
-  if (choice === 'repeated') return unused(choice);
-  if (choice === 'no place near') return unused(choice, COST_OF_MISTAKE);
-  const place = context.model.places[choice] as Place;
-  const moved = place.d - measured;
-  const sigma = placeSigma(state.pack.settings.tapScatterMs / 1000, tap.raw.v, place.surveySigma);
-  const variance = grown + sigma * sigma + PULSE_VARIANCE;
+  if (!trusted && isDoubleTouch(context, tap)) return idle('repeated');
+  const judge = (anchor.belief === null ? simpleJudge : estimateJudge)({ state, anchors, tap, raw: tap.raw });
+  const choice = choosePlace(context, tap, judge.measured, explicit, reachOf(judge.grown));
+  if (choice === 'repeated') return unused(tap, choice, judge.scale, 0);
+  if (choice === 'no place near') return unused(tap, choice, judge.scale, COST_OF_MISTAKE);
+  return judgeAt(context, tap, judge, choice, trusted ? 'trusted' : takenFor);
+}
+
+const unused = (tap: TapAct, verdict: DerivedTap['verdict'], scale: number, cost: number): JudgedTap => ({
+  tap,
+  verdict: { ...verdictAt(tap, tap.checkpoint, null), verdict, moved: 0, scaleBefore: scale, scaleAfter: scale, scaleKept: null },
+  use: null,
+  strain: null,
+  cost,
+});
+
+type VerdictAt = Omit<DerivedTap, 'verdict' | 'moved' | 'scaleBefore' | 'scaleAfter' | 'scaleKept'>;
+
+function verdictAt(tap: TapAct, checkpoint: string | null, misfit: (Misfit & { surveySigma: number }) | null): VerdictAt {
+  return {
+    seq: tap.seq,
+    checkpoint,
+    input: tap.input,
+    misfit: misfit?.moved ?? 0,
+    variance: misfit?.variance ?? 0,
+    surveySigma: misfit?.surveySigma ?? 0,
+    speed: tap.raw?.v ?? 0,
+  };
+}
+
+/** A tap at a place that it may belong to. */
+function judgeAt({ model }: TapContext, tap: TapAct, judge: TapJudge, choice: number, takenFor: TakenFor | 'trusted'): JudgedTap {
+  const place = model.places[choice] as Place;
+  const misfit = judge.misfit(place);
+  const { moved, variance } = misfit;
   const strain = (moved * moved) / variance;
-  if (takenFor === 'mistaken' && !trusted) return unused('doubted', COST_OF_MISTAKE, place.checkpoint.id, moved, strain);
+  const about = verdictAt(tap, place.checkpoint.id, { ...misfit, surveySigma: place.surveySigma });
+  const scale = judge.scale;
+  if (takenFor === 'mistaken') {
+    const kept = { scaleBefore: scale, scaleAfter: scale, scaleKept: null };
+    return { tap, verdict: { ...about, verdict: 'doubted', moved, ...kept }, use: null, strain, cost: COST_OF_MISTAKE };
+  }
+  const trusted = takenFor === 'trusted';
   const story = trusted ? (strain > GATE_SIGMAS * GATE_SIGMAS ? 'jump' : 'plain') : takenFor;
-  const rarity = story === 'plain' || trusted ? 0 : COST_OF_JUMP;
-  const cost = rarity + likelihoodCost(moved, story === 'plain' ? variance : variance + moved * moved);
-  const used = use(context, tap, { anchor, index: choice, place, sigma, moved, story });
-  return { tap, ...used, strain: trusted ? null : strain, cost };
+  const taken = judge.take(place, story);
+  const scales = { scaleBefore: scale, scaleAfter: taken.scaleAfter, scaleKept: taken.kept };
+  const at = Math.round(tap.t);
+  const passing: PlacePassing = { by: 'tap', at, tap: tap.seq, measured: judge.measured, moved: taken.moved, ...scales };
+  return {
+    tap,
+    verdict: { ...about, verdict: 'used', moved: taken.moved, ...scales },
+    use: { place: choice, passing, anchor: taken.anchor },
+    strain: trusted ? null : strain,
+    cost:
+      (story === 'plain' || trusted ? 0 : COST_OF_JUMP) + likelihoodCost(moved, story === 'plain' ? variance : variance + moved * moved),
+  };
 }
 
 const likelihoodCost = (misfit: number, variance: number): number => (misfit * misfit) / variance + Math.log(variance) + LN_2_PI;
-
-interface Use {
-  readonly anchor: Anchor;
-  readonly index: number;
-  readonly place: Place;
-  readonly sigma: number;
-  readonly moved: number;
-  readonly story: TakenFor;
-}
-
-function use(
-  { state, anchors }: TapContext,
-  tap: TapAct,
-  { anchor, index, place, sigma, moved, story }: Use,
-): Pick<JudgedTap, 'verdict' | 'use'> {
-  const raw = tap.raw as NonNullable<TapAct['raw']>;
-  const at = Math.round(tap.t);
-  const { duty, id } = place.checkpoint;
-  const { kept, ...scale } = correctScale({
-    rule: state.pack.settings.scaleRule,
-    // after a jump the counts of the leg are not to be trusted: it places, and must not teach the scale
-    duty: story === 'jump' && duty === 'scale' ? 'place' : duty,
-    anchor,
-    raw,
-    at,
-    d: place.d,
-    sigma,
-    movedAt: (anchors[0] as Anchor).at,
-    lost: lossVariance(state.odometer.losses, anchor.scaleFrom.at, at),
-    changed: story === 'rescale' && place.d > anchor.d ? (moved / (place.d - anchor.d)) ** 2 : 0,
-  });
-  const here = { at, d: place.d, w: raw.w, g: raw.g };
-  const scales = { scaleBefore: anchor.mmPerPulse, scaleAfter: scale.mmPerPulse, scaleKept: kept };
-  return {
-    verdict: { seq: tap.seq, checkpoint: id, verdict: 'used', moved, ...scales },
-    use: {
-      place: index,
-      passing: { by: 'tap', at, tap: tap.seq, measured: place.d - moved, moved, ...scales },
-      anchor: {
-        ...here,
-        ...scale,
-        variance: sigma * sigma + PULSE_VARIANCE,
-        scaleFrom: kept === null || story === 'jump' || duty === 'settle' ? here : anchor.scaleFrom,
-      },
-    },
-  };
-}
 
 const movedTo = (state: RunState, seq: number): string | null => state.acts.moved.findLast((m) => m.tap === seq)?.checkpoint ?? null;
 

@@ -4,6 +4,7 @@ import type { JudgedTap } from '#shared/pace/derive-tap.ts';
 import { distanceOf } from '#shared/pace/distance.ts';
 import { type Anchor, type Derived, modelOf, type PlacePassing, type RunState, type TapAct } from '#shared/pace/run-state.ts';
 import { likeliestChain } from '#shared/pace/tap-chain.ts';
+import { knotAt } from '#shared/pace/track.ts';
 
 /**
  * The one path from what was recorded to what it means: start, anchors, passings, verdicts. Run anew, from the start of the run,
@@ -14,9 +15,19 @@ export function derive(state: RunState): void {
   const model = modelOf(state);
   const start = startOf(state, model);
   const passings = model.places.map((): PlacePassing => unpassed(state.pack.wheel.mmPerPulse));
-  const derived: Derived = { ...start.derived, anchors: start.anchor === null ? [] : [start.anchor], passings, taps: [], nextD: null };
+  const derived: Derived = {
+    ...start.derived,
+    anchors: start.anchor === null ? [] : [start.anchor],
+    placedAt: start.anchor?.at ?? 0,
+    passings,
+    taps: [],
+    nextD: null,
+  };
   const walk = new Walk(state, model, derived);
-  for (const judged of likeliestChain(state, model, start.anchor).judged) walk.take(judged);
+  for (const step of likeliestChain(state, model, start.anchor).steps) {
+    if (step.kind === 'tap') walk.take(step.judged);
+    else walk.compare(step.anchor);
+  }
   if (start.anchor !== null) {
     walk.passUntil(Number.POSITIVE_INFINITY, null);
     derived.nextD = walk.nextD();
@@ -71,7 +82,22 @@ class Walk {
     if (use === null) return;
     derived.passings[use.place] = use.passing;
     derived.anchors.push(use.anchor);
+    derived.placedAt = use.anchor.at;
     this.snap(use.anchor, use.place, tap);
+  }
+
+  /** A comparison with GNSS moves the distance a little: places jumped over are passed now, none is given back. */
+  compare(anchor: Anchor): void {
+    const before = this.anchor();
+    if (before !== undefined && anchor.at >= this.at) this.passUntil(anchor.at, distanceOf(before, anchor));
+    this.derived.anchors.push(anchor);
+    this.model.places.forEach((place, i) => {
+      const passing = this.derived.passings[i] as PlacePassing;
+      if (passing.by === null && place.d <= anchor.d) this.passByDistance(passing, anchor.at);
+    });
+    this.at = anchor.at;
+    this.d = anchor.d;
+    this.ahead = Number.NEGATIVE_INFINITY;
   }
 
   /** After a snap: places jumped over are passed now; places the car is again before are not passed yet. */
@@ -94,11 +120,12 @@ class Walk {
   /** Passes places by distance up to an instant, whose own distance is given where it is no knot of the trace. */
   passUntil(until: number, dUntil: number | null): void {
     const anchor = this.anchor() as Anchor;
-    const { at, w, g } = this.state.odometer.track.trace;
+    const { trace } = this.state.odometer.track;
+    const { at } = trace;
     let i = this.knot < 0 ? firstAfter(at, this.at) : this.knot;
     while (i < at.length && (at[i] as number) <= this.at) i++;
     for (; i < at.length && (at[i] as number) < until; i++) {
-      this.advance(at[i] as number, distanceOf(anchor, { w: w[i] as number, g: g[i] as number }));
+      this.advance(at[i] as number, distanceOf(anchor, knotAt(trace, i)));
     }
     this.knot = i;
     if (dUntil !== null) this.advance(until, dUntil);

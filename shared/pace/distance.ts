@@ -1,3 +1,4 @@
+import { grownVariance } from '#shared/pace/estimator.ts';
 import type { Anchor, RunState } from '#shared/pace/run-state.ts';
 import { SCALE_DRIFT } from '#shared/pace/scale.ts';
 import type { Raw } from '#shared/pace/track.ts';
@@ -5,9 +6,15 @@ import { rawAt } from '#shared/pace/track.ts';
 
 /** From raw values to official distance and its uncertainty, by the anchor in force. */
 
-/** Official distance of raw values: anchor + count difference × scale, never summed steps. */
-export const distanceOf = (anchor: Anchor, raw: Raw): number =>
-  anchor.d + ((raw.w - anchor.w) * anchor.mmPerPulse) / 1000 + (raw.g - anchor.g);
+/** Official distance of raw values: anchor + differences × scale, never summed steps. */
+export function distanceOf(anchor: Anchor, raw: Raw): number {
+  const counts = raw.w - anchor.w - anchor.cold * (raw.h - anchor.h) + anchor.speed * (raw.u - anchor.u);
+  return anchor.d + anchor.official * ((counts * anchor.mmPerPulse) / 1000 + (raw.g - anchor.g));
+}
+
+/** Official millimetres per pulse at this moment: the scale with what cold and speed do to it. */
+export const scaleNow = (anchor: Anchor, coldness: number, square: number): number =>
+  anchor.official * anchor.mmPerPulse * (1 - anchor.cold * coldness + anchor.speed * square);
 
 /** The anchor in force at an instant: the last one not after it; the first before all. */
 export function anchorAt(anchors: readonly Anchor[], at: number): Anchor | null {
@@ -44,7 +51,7 @@ export function coldShare(movedAt: number, from: number, to: number): number {
 /** Relative variance of the scale over a stretch: its own, and what tyres have done since it was measured. */
 function stretchScaleVariance(anchor: Anchor, movedAt: number, at: number): number {
   // the pack's own scale may have been measured on tyres as warm or as cold as can be
-  const changed = anchor.cold === null ? 1 : anchor.cold - coldShare(movedAt, anchor.at, at);
+  const changed = anchor.coldShare === null ? 1 : anchor.coldShare - coldShare(movedAt, anchor.at, at);
   return anchor.scaleVariance + (COLD_TYRES * changed) ** 2;
 }
 
@@ -63,6 +70,7 @@ export interface Loss {
 
 /** Variance in m² of the distance at raw values, grown since the anchor. `movedAt`: instant of the first anchor, when the tyres began to warm. */
 export function distanceVariance(anchor: Anchor, raw: Raw, at: number, movedAt: number, losses: readonly Loss[]): number {
+  if (anchor.belief !== null) return grownVariance(anchor, anchor.belief, raw) + lossVariance(losses, anchor.at, at);
   const wheel = Math.abs(((raw.w - anchor.w) * anchor.mmPerPulse) / 1000);
   const gnss = Math.abs(raw.g - anchor.g) * GNSS_SHARE;
   const scale = stretchScaleVariance(anchor, movedAt, at) * wheel * wheel + 2 * anchor.covariance * wheel;

@@ -1,11 +1,11 @@
 import { SURELY_MOVING } from '#shared/pace/gnss.ts';
 import type { Odometer } from '#shared/pace/odometer.ts';
-import { type Raw, rateNow } from '#shared/pace/track.ts';
+import { type Counts, rateNow } from '#shared/pace/track.ts';
 
 /** The odometer between records: carried forward, as long as that is honest. */
 
 /** Speed at an instant, m/s, and raw values carried forward from the last knot; null speed where nothing tells it. */
-export interface Now extends Raw {
+export interface Now extends Counts {
   readonly speed: number | null;
   readonly source: 'wheel' | 'gnss' | 'none';
 }

@@ -2,7 +2,9 @@ import type { Pack } from '#shared/course/pack.ts';
 import type { FinishShownV1, RunEndedV1, TapV1 } from '#shared/journal/observation.ts';
 import { type Clock, makeClock } from '#shared/pace/clock.ts';
 import { buildCourseModel, type Changes, type CourseModel, makeChanges } from '#shared/pace/course-model.ts';
+import type { Belief } from '#shared/pace/estimator.ts';
 import { makeOdometer, type Odometer } from '#shared/pace/odometer.ts';
+import type { Raw } from '#shared/pace/track.ts';
 
 /** Raised whenever the same journal may lead to other figures. */
 export const ENGINE_VERSION = '1.1.0';
@@ -66,18 +68,27 @@ export interface TapAct {
   /** The instant that counts: the touch less the navigator's lead. */
   readonly t: number;
   /** Raw values then, and speed in m/s by the nominal scale. Null while no sample at or after it has come. */
-  raw: { w: number; g: number; v: number } | null;
+  raw: TapRaw | null;
   /** False while `raw` was carried forward rather than interpolated: a late sample still replaces it. */
   firm: boolean;
 }
 
-/** Distance from here on: official d at raw (w, g), with this scale, until the next anchor. */
-export interface Anchor {
+export interface TapRaw extends Raw {
+  readonly v: number;
+}
+
+/** Distance from here on: official d at these raw values, with this scale, until the next anchor. */
+export interface Anchor extends Raw {
   readonly at: number;
   readonly d: number;
-  readonly w: number;
-  readonly g: number;
   readonly mmPerPulse: number;
+  /** What the tyres do to the scale: −`cold` × coldness, +`speed` × (v/50)². 0 under the simple rules. */
+  readonly cold: number;
+  readonly speed: number;
+  /** Official metres per metre driven (by GNSS); 1 under the simple rules. */
+  readonly official: number;
+  /** The estimator's covariance here; null under the simple rules, whose own figures follow. */
+  readonly belief: Belief | null;
   /** Relative variance of the scale, variance of d in m², and their covariance in m: the touch that set both errs in both. */
   readonly scaleVariance: number;
   readonly variance: number;
@@ -85,7 +96,7 @@ export interface Anchor {
   /** Where the leg that may correct the scale next begins. */
   readonly scaleFrom: ScaleMark;
   /** Share of the cold tyres' deficit that the scale in force was measured with; null while it is the pack's own. */
-  readonly cold: number | null;
+  readonly coldShare: number | null;
 }
 
 export interface ScaleMark {
@@ -112,6 +123,13 @@ export interface DerivedTap {
   readonly seq: number;
   readonly checkpoint: string | null;
   readonly verdict: 'provisional' | 'used' | 'doubted' | 'no place near' | 'repeated' | 'voided';
+  readonly input: TapV1['input'];
+  /** Official less believed, m, and its variance with the tap's own, m²; the survey's sigma, m; speed at the touch, m/s. 0 where nothing was compared. */
+  readonly misfit: number;
+  readonly variance: number;
+  readonly surveySigma: number;
+  readonly speed: number;
+  /** How far the distance moved, or for a tap not used would have, m. */
   readonly moved: number;
   readonly scaleBefore: number;
   readonly scaleAfter: number;
@@ -126,6 +144,8 @@ export interface Derived {
   /** How the start is known: still standing, from rest, or rolling through. */
   start: 'standing' | 'from rest' | 'rolling';
   anchors: Anchor[];
+  /** Instant of the last tap taken in, or of the start. */
+  placedAt: number;
   passings: PlacePassing[];
   taps: DerivedTap[];
   /** Least official distance whose passing would change anything; null when none is left. */
@@ -153,6 +173,8 @@ export interface HoldMemory {
 
 export function makeRunState(pack: Pack): RunState {
   const changes = makeChanges(pack);
+  const odometer = makeOdometer();
+  odometer.track.perCount = pack.wheel.mmPerPulse / 1000;
   return {
     engine: ENGINE_VERSION,
     pack,
@@ -163,7 +185,7 @@ export function makeRunState(pack: Pack): RunState {
     ignored: 0,
     changes,
     clock: makeClock(),
-    odometer: makeOdometer(),
+    odometer,
     wheelSensor: null,
     buttons: {},
     acts: {
@@ -180,7 +202,17 @@ export function makeRunState(pack: Pack): RunState {
       finishShown: null,
       sensorLostAt: null,
     },
-    derived: { releaseAt: null, startAt: null, firstMovedAt: null, start: 'standing', anchors: [], passings: [], taps: [], nextD: null },
+    derived: {
+      releaseAt: null,
+      startAt: null,
+      firstMovedAt: null,
+      start: 'standing',
+      anchors: [],
+      placedAt: 0,
+      passings: [],
+      taps: [],
+      nextD: null,
+    },
     shown: { advisedAt: null, hold: null, bandLevel: true },
   };
 }

@@ -6,7 +6,7 @@ import { modelOf, type PlacePassing, type RunState } from '#shared/pace/run-stat
 import { targetTimeAt } from '#shared/pace/schedule.ts';
 import { sheetWarnings } from '#shared/pace/sheet-warnings.ts';
 import { finishPoint } from '#shared/pace/situation.ts';
-import { rawAt } from '#shared/pace/track.ts';
+import { knotAt, rawAt } from '#shared/pace/track.ts';
 
 /** The run sheet of a state: derived now, changes nothing. */
 export function sheetOf(state: RunState, header: RunHeader): RunSheet {
@@ -100,7 +100,7 @@ function traceOf(state: RunState, model: CourseModel): RunSheet['trace'] {
   const chosen = decimate(knots);
   return chosen.map((i) => {
     const at = trace.at[i] as number;
-    const d = distanceOf(anchorAt(anchors, at) ?? first, { w: trace.w[i] as number, g: trace.g[i] as number });
+    const d = distanceOf(anchorAt(anchors, at) ?? first, knotAt(trace, i));
     const elapsedS = (at - startAt) / 1e6;
     return {
       d,

@@ -1,12 +1,12 @@
 import { clockSigmaMs } from '#shared/pace/clock.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { startGate } from '#shared/pace/derive-start.ts';
-import { anchorAt, distanceAt, distanceOf, distanceVariance } from '#shared/pace/distance.ts';
+import { anchorAt, distanceAt, distanceOf, distanceVariance, scaleNow } from '#shared/pace/distance.ts';
 import { odometerNow } from '#shared/pace/odometer-now.ts';
 import type { Phase } from '#shared/pace/readout.ts';
 import { type Anchor, modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
 import { targetSpeedAt, targetTimeAt } from '#shared/pace/schedule.ts';
-import { lastKnotAt } from '#shared/pace/track.ts';
+import { heatNow, knotAt, lastKnotAt, tracedAt, withHeat } from '#shared/pace/track.ts';
 
 /** Where the run stands at one instant: what advice, band and readout all rest on. Plain SI numbers. */
 export interface Situation {
@@ -43,13 +43,14 @@ export function situationAt(state: RunState, at: number): Situation {
   const model = modelOf(state);
   const { derived, odometer } = state;
   const anchor = anchorAt(derived.anchors, at);
-  const mmPerPulse = anchor?.mmPerPulse ?? state.pack.wheel.mmPerPulse;
+  const mmPerPulse = scaleInForce(state, anchor);
   const now = odometerNow(odometer, at, mmPerPulse / 1000);
+  const raw = withHeat(odometer.track, at, now);
   const last = lastKnotAt(odometer.track);
   const past = last !== null && at < last ? distanceAt(state, at) : null;
   const beforeStart = model.start - Math.max(0, state.changes.stagedBehindM);
-  const distance = past ?? (anchor === null || at < anchor.at ? beforeStart : distanceOf(anchor, now));
-  const variance = anchor === null ? 0 : distanceVariance(anchor, now, at, (derived.anchors[0] as Anchor).at, odometer.losses);
+  const distance = past ?? (anchor === null || at < anchor.at ? beforeStart : distanceOf(anchor, raw));
+  const variance = anchor === null ? 0 : distanceVariance(anchor, raw, at, (derived.anchors[0] as Anchor).at, odometer.losses);
   const finish = finishPoint(state, model);
   const phase = phaseAt(state, at, finish);
   const over = finish !== null && at >= finish.at;
@@ -71,6 +72,14 @@ export function situationAt(state: RunState, at: number): Situation {
   };
 }
 
+/** Official mm per pulse now: what tyres and speed do to the scale included, where that is estimated. */
+function scaleInForce(state: RunState, anchor: Anchor | null): number {
+  if (anchor === null) return state.pack.wheel.mmPerPulse;
+  const { track } = state.odometer;
+  const { coldness, square } = heatNow(track);
+  return scaleNow(anchor, coldness, square);
+}
+
 /** σ_E = √(P + (0.05·v)² + σ_s²)/V, joined by the clock's. */
 export function timeSigma(state: RunState, model: CourseModel, x: number, variance: number, speed: number, at: number): number {
   const surveyed = (model.places[model.finishIndex] as { surveySigma: number }).surveySigma;
@@ -90,11 +99,13 @@ export function finishPoint(state: RunState, model: CourseModel): FinishPoint | 
 
 function finishSigma(state: RunState, model: CourseModel, passing: PlacePassing, at: number): number {
   const { derived, odometer } = state;
-  const own = derived.anchors.findIndex((a) => a.at === at && a.d === model.finish);
-  const anchor = passing.by === 'tap' && own >= 0 ? derived.anchors[own] : anchorAt(derived.anchors, at - 1);
+  const own = passing.by === 'tap' ? derived.anchors.find((a) => a.at === at) : undefined;
+  const anchor = own ?? anchorAt(derived.anchors, at - 1);
   if (anchor === undefined || anchor === null) return timeSigma(state, model, model.finish, 0, 0, at);
   // counts and metres of GNSS from the anchor to the finish, as far as the run has come: enough for a sigma
-  const way = { w: anchor.w + ((model.finish - anchor.d) * 1000) / anchor.mmPerPulse, g: anchor.g };
+  const { trace } = odometer.track;
+  const there = tracedAt(odometer.track, at) ?? knotAt(trace, 0);
+  const way = { ...there, w: anchor.w + ((model.finish - anchor.d) * 1000) / anchor.mmPerPulse, g: anchor.g };
   const variance = distanceVariance(anchor, way, at, (derived.anchors[0] as Anchor).at, odometer.losses);
   return timeSigma(state, model, model.finish, variance, targetSpeedAt(model.schedule, model.finish), at);
 }

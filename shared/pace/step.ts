@@ -2,6 +2,7 @@ import type { Observation, UnknownObservation } from '#shared/journal/observatio
 import { advise, isAdviceDue } from '#shared/pace/advice.ts';
 import { offerClock, takeClockPair, takeEpoch } from '#shared/pace/clock.ts';
 import { derive } from '#shared/pace/derive.ts';
+import { appendNodes } from '#shared/pace/derive-node.ts';
 import { rolledThrough, startGate } from '#shared/pace/derive-start.ts';
 import { distanceOf } from '#shared/pace/distance.ts';
 import { takeGnss } from '#shared/pace/gnss-source.ts';
@@ -9,7 +10,9 @@ import { changeCourse } from '#shared/pace/grid-changes.ts';
 import { type OdometerChange, takePulse } from '#shared/pace/odometer.ts';
 import { modelOf, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
 import { soundness } from '#shared/pace/sound.ts';
+import { surveyedOf } from '#shared/pace/surveyed.ts';
 import { addTap, pressButton, rewriteTaps, settleTaps } from '#shared/pace/taps.ts';
+import { knotAt } from '#shared/pace/track.ts';
 import { beginAnew } from '#shared/pace/wheel.ts';
 import { never } from '#shared/result.ts';
 
@@ -40,7 +43,7 @@ function take(state: RunState, o: Observation): boolean {
     case 'pulse.v1':
       return takeChange(state, takePulse(state.odometer, o, pack.wheel.channel, pack.raceClass.aids, nominalMetres(state)));
     case 'fix.v1':
-      return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now, nominalMetres(state)));
+      return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now, nominalMetres(state), surveyedOf(state)));
     case 'button.v1':
       return pressButton(state, o);
     case 'clock.v1':
@@ -152,6 +155,7 @@ function isReleased(state: RunState): boolean {
 function takeChange(state: RunState, change: OdometerChange): boolean {
   if (change.rewritten !== null) rewriteTaps(state, change.rewritten);
   const stale = change.rewritten !== null || change.launch !== 'none';
+  if (change.node && !stale && !appendNodes(state)) return true;
   if (!change.traced) return stale;
   return stale || passesNext(state) || rollsThrough(state);
 }
@@ -159,7 +163,8 @@ function takeChange(state: RunState, change: OdometerChange): boolean {
 function passesNext(state: RunState): boolean {
   const { anchors, nextD } = state.derived;
   const anchor = anchors[anchors.length - 1];
-  return anchor !== undefined && nextD !== null && distanceOf(anchor, state.odometer) >= nextD;
+  const { trace } = state.odometer.track;
+  return anchor !== undefined && nextD !== null && distanceOf(anchor, knotAt(trace, trace.at.length - 1)) >= nextD;
 }
 
 function rollsThrough(state: RunState): boolean {

@@ -1,19 +1,24 @@
 import type { CourseModel } from '#shared/pace/course-model.ts';
-import { type JudgedTap, judgeTap, type TakenFor, tapQueue } from '#shared/pace/derive-tap.ts';
+import { type JudgedTap, judgeTap, tapQueue } from '#shared/pace/derive-tap.ts';
+import { estimatesTo } from '#shared/pace/estimate-nodes.ts';
+import type { Estimate } from '#shared/pace/estimator.ts';
 import type { Anchor, RunState, TapAct } from '#shared/pace/run-state.ts';
+import type { TakenFor } from '#shared/pace/tap-judge.ts';
 
 /**
  * All taps of a run, judged together. One tap alone cannot tell a wrong touch from a wrong distance or scale; the taps after it
  * can. So each is taken plainly first, and where one fits badly the most probable story is looked for: this or that tap was
  * mistaken, or distance or scale had jumped before it. A mistaken tap is doubted as soon as it stands out, and taken up again, or an
- * earlier one dropped, when a later tap says so.
+ * earlier one dropped, when a later tap says so. Between taps the estimator compares with GNSS.
  */
 export interface TapChain {
-  /** By the instant that counts. */
-  readonly judged: readonly JudgedTap[];
+  /** Taps, by the instant that counts, and comparisons, in the order in which they count. */
+  readonly steps: readonly ChainStep[];
   /** −2 ln of how probable all of it is. */
   readonly cost: number;
 }
+
+export type ChainStep = { readonly kind: 'tap'; readonly judged: JudgedTap } | { readonly kind: 'node'; readonly anchor: Anchor };
 
 type Story = ReadonlyMap<number, TakenFor>;
 
@@ -25,47 +30,101 @@ const MOST_ROUNDS = 4;
 const MOST_TAPS = 200;
 const WAYS: readonly TakenFor[] = ['plain', 'rescale', 'jump', 'mistaken'];
 
+interface Course {
+  readonly state: RunState;
+  readonly model: CourseModel;
+  /** The anchor at the start; null before it. */
+  readonly first: Anchor | null;
+  readonly queue: readonly TapAct[];
+}
+
 /** The most probable story of all taps, found greedily; deterministic. `first`: the anchor at the start, null before it. */
 export function likeliestChain(state: RunState, model: CourseModel, first: Anchor | null): TapChain {
-  const queue = tapQueue(state);
-  const follow = (story: Story): TapChain => followStory(state, model, first, queue, story);
+  const course: Course = { state, model, first, queue: tapQueue(state) };
   let story: Story = new Map();
-  let best = follow(story);
-  if (queue.length > MOST_TAPS || !best.judged.some((j) => j.strain !== null && j.strain > STRAINED)) return best;
+  let best = follow(course, story);
+  if (course.queue.length > MOST_TAPS || !tapsOf(best).some((j) => j.strain !== null && j.strain > STRAINED)) return best;
   for (let round = 0; round < MOST_ROUNDS; round++) {
-    const before = best.cost;
-    for (const variant of variantsOf(story, best)) {
-      const chain = follow(variant);
+    const before = best;
+    for (const { variant, from } of variantsOf(story, before)) {
+      const chain = follow(course, variant, before, from);
       if (chain.cost >= best.cost) continue;
       best = chain;
       story = variant;
     }
-    if (best.cost === before) break;
+    if (best === before) break;
   }
   return best;
 }
 
-/** Every story that differs in one tap. */
-function variantsOf(story: Story, { judged }: TapChain): Story[] {
-  return judged.flatMap(({ tap, strain }) => {
+const tapsOf = ({ steps }: TapChain): JudgedTap[] => steps.flatMap((s) => (s.kind === 'tap' ? [s.judged] : []));
+
+/** Every story that differs in one tap, and the tap (by number in the queue) from which on it differs. */
+function variantsOf(story: Story, chain: TapChain): { variant: Story; from: number }[] {
+  return tapsOf(chain).flatMap(({ tap, strain }, from) => {
     if (strain === null) return [];
     const now = story.get(tap.seq) ?? 'plain';
-    return WAYS.filter((way) => way !== now).map((way) => new Map(story).set(tap.seq, way));
+    return WAYS.filter((way) => way !== now).map((way) => ({ variant: new Map(story).set(tap.seq, way), from }));
   });
 }
 
-function followStory(state: RunState, model: CourseModel, first: Anchor | null, queue: readonly TapAct[], story: Story): TapChain {
-  const anchors = first === null ? [] : [first];
-  const judged: JudgedTap[] = [];
-  const held = new Set<number>();
-  let cost = 0;
-  for (const tap of queue) {
-    const one = judgeTap({ state, model, anchors, judged, held }, tap, story.get(tap.seq) ?? 'plain');
-    judged.push(one);
-    cost += one.cost;
-    if (one.use === null) continue;
-    anchors.push(one.use.anchor);
-    held.add(one.use.place);
+/** Follows a story; the taps before number `from` are taken from a chain that judged them alike. */
+function follow(course: Course, story: Story, known: TapChain | null = null, from = 0): TapChain {
+  const walk = new ChainWalk(course);
+  let told = 0;
+  for (const step of known?.steps ?? []) {
+    if (told === from) break;
+    walk.add(step);
+    if (step.kind === 'tap') told++;
   }
-  return { judged, cost };
+  for (let i = told; i < course.queue.length; i++) {
+    const tap = course.queue[i] as TapAct;
+    walk.compareTo(tap.t);
+    walk.judge(tap, story.get(tap.seq) ?? 'plain');
+  }
+  walk.compareTo(Number.POSITIVE_INFINITY);
+  return walk;
+}
+
+class ChainWalk implements TapChain {
+  readonly steps: ChainStep[] = [];
+  cost = 0;
+  private readonly anchors: Anchor[];
+  private readonly judged: JudgedTap[] = [];
+  private readonly held = new Set<number>();
+  private placedAt: number;
+
+  constructor(private readonly course: Course) {
+    this.anchors = course.first === null ? [] : [course.first];
+    this.placedAt = course.first?.at ?? 0;
+  }
+
+  judge(tap: TapAct, takenFor: TakenFor): void {
+    const { state, model } = this.course;
+    this.add({
+      kind: 'tap',
+      judged: judgeTap({ state, model, anchors: this.anchors, judged: this.judged, held: this.held }, tap, takenFor),
+    });
+  }
+
+  add(step: ChainStep): void {
+    this.steps.push(step);
+    if (step.kind === 'node') {
+      this.anchors.push(step.anchor);
+      return;
+    }
+    const { judged } = step;
+    this.judged.push(judged);
+    this.cost += judged.cost;
+    if (judged.use === null) return;
+    this.anchors.push(judged.use.anchor);
+    this.held.add(judged.use.place);
+    this.placedAt = judged.use.anchor.at;
+  }
+
+  compareTo(until: number): void {
+    const last = this.anchors[this.anchors.length - 1];
+    if (last === undefined || last.belief === null) return;
+    for (const anchor of estimatesTo(this.course.state, last as Estimate, this.placedAt, until)) this.add({ kind: 'node', anchor });
+  }
 }

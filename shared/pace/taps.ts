@@ -2,7 +2,7 @@ import type { ButtonV1 } from '#shared/journal/observation.ts';
 import type { OdometerChange } from '#shared/pace/odometer.ts';
 import { odometerNow } from '#shared/pace/odometer-now.ts';
 import { nominalMetres, type RunState, type TapAct } from '#shared/pace/run-state.ts';
-import { lastKnotAt, rawAt } from '#shared/pace/track.ts';
+import { lastKnotAt, rawAt, withHeat } from '#shared/pace/track.ts';
 import { wrappedDifference } from '#shared/pace/wheel.ts';
 
 /** Touches as recorded: the instant that counts, and the raw values then. What they mean is `derive`'s to say. */
@@ -80,17 +80,20 @@ function rawWithSpeed(state: RunState, t: number): TapAct['raw'] {
   const [raw, before] = [rawAt(track, t), rawAt(track, t - SPEED_OVER_US)];
   if (raw === null || before === null) return null;
   const metres = (raw.w - before.w) * nominalMetres(state) + (raw.g - before.g);
-  return { w: raw.w, g: raw.g, v: (Math.max(0, metres) * 1e6) / SPEED_OVER_US };
+  return { ...raw, v: (Math.max(0, metres) * 1e6) / SPEED_OVER_US };
 }
 
 function carried(state: RunState, t: number): TapAct['raw'] {
   const now = odometerNow(state.odometer, t, nominalMetres(state));
-  return now.source === 'none' && lastKnotAt(state.odometer.track) === null ? null : { w: now.w, g: now.g, v: now.speed ?? 0 };
+  return now.source === 'none' && lastKnotAt(state.odometer.track) === null
+    ? null
+    : { ...withHeat(state.odometer.track, t, now), v: now.speed ?? 0 };
 }
 
 /** Bridged metres became counts: touches and launches in that stretch are told anew like the track. */
 export function rewriteTaps(state: RunState, { from, w, g, share }: NonNullable<OdometerChange['rewritten']>): void {
   for (const tap of state.acts.taps) {
-    if (tap.t > from && tap.raw !== null) tap.raw = { ...tap.raw, w: w + (tap.raw.g - g) * share, g };
+    if (tap.t <= from || tap.raw === null) continue;
+    tap.raw = { ...withHeat(state.odometer.track, tap.t, { w: w + (tap.raw.g - g) * share, g }), v: tap.raw.v };
   }
 }

@@ -72,8 +72,10 @@ describe('a steady figure', () => {
 
 describe('what is not known of the distance after a correction', () => {
   const HOURS_AGO = -20e9;
+  const simple = { h: 0, u: 0, cold: 0, speed: 0, official: 1, belief: null } as const;
   const start: Anchor = {
-    ...{ at: 0, d: 0, w: 0, g: 0, mmPerPulse: 500, scaleVariance: 9e-6, variance: 25, covariance: 0, cold: null },
+    ...simple,
+    ...{ at: 0, d: 0, w: 0, g: 0, mmPerPulse: 500, scaleVariance: 9e-6, variance: 25, covariance: 0, coldShare: null },
     scaleFrom: { at: 0, d: 0, w: 0, g: 0 },
   };
   /** Placed and corrected at 10 km by a touch with 5 m sigma. */
@@ -93,10 +95,10 @@ describe('what is not known of the distance after a correction', () => {
     } as const;
     const { kept, ...scale } = correctScale(leg);
     expect(kept).toBeNull();
-    return { ...here, ...scale, variance: 25, scaleFrom: here };
+    return { ...simple, ...here, ...scale, variance: 25, scaleFrom: here };
   };
   const varianceAfter = (metres: number, movedAt: number): number =>
-    distanceVariance(corrected(movedAt), { w: 20_000 + metres * 2, g: 0 }, 200e6 + metres * 20_000, movedAt, []);
+    distanceVariance(corrected(movedAt), { w: 20_000 + metres * 2, g: 0, h: 0, u: 0 }, 200e6 + metres * 20_000, movedAt, []);
   /** Slips 6e-4 m²/m, and a scale that wanders by 1.2e-11 a metre: over the leg that measured it (a third), and since. */
   const road = (leg: number, metres: number): number => 6e-4 * metres + 1.2e-11 * ((leg / 3) * metres ** 2 + metres ** 3 / 3);
 

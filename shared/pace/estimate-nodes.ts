@@ -1,0 +1,39 @@
+import { lossVariance } from '#shared/pace/distance.ts';
+import { carry, comparePosition, compareSpeed, type Estimate } from '#shared/pace/estimator.ts';
+import type { RunState } from '#shared/pace/run-state.ts';
+import type { SourceNode } from '#shared/pace/source-node.ts';
+import { type Raw, withHeat } from '#shared/pace/track.ts';
+
+/** What the comparisons with GNSS make of an estimate between two taps. */
+
+type HeatedNode = SourceNode & Raw;
+
+/** Index of the first node after an instant. */
+export function firstNodeAfter(nodes: readonly SourceNode[], at: number): number {
+  let i = nodes.length;
+  while (i > 0 && (nodes[i - 1] as SourceNode).at > at) i--;
+  return i;
+}
+
+/** The estimates at every node after the last one up to an instant. `placedAt`: instant of the last tap taken in, or of the start. */
+export function estimatesTo(state: RunState, last: Estimate, placedAt: number, until: number): Estimate[] {
+  const { sourceNodes: nodes } = state.odometer;
+  const estimates: Estimate[] = [];
+  let estimate = last;
+  for (let i = firstNodeAfter(nodes, last.at); i < nodes.length && (nodes[i] as SourceNode).at <= until; i++) {
+    estimate = estimateAtNode(state, estimate, placedAt, i);
+    estimates.push(estimate);
+  }
+  return estimates;
+}
+
+export function estimateAtNode(state: RunState, last: Estimate, placedAt: number, i: number): Estimate {
+  const { sourceNodes: nodes, losses } = state.odometer;
+  const node = heated(state, nodes[i] as SourceNode);
+  const carried = carry(last, node, node.at, lossVariance(losses, last.at, node.at));
+  const since = nodes[i - 1];
+  const compared = since === undefined ? carried : compareSpeed(carried, heated(state, since), node, placedAt);
+  return comparePosition(compared, node);
+}
+
+const heated = (state: RunState, node: SourceNode): HeatedNode => ({ ...node, ...withHeat(state.odometer.track, node.at, node) });

@@ -1,0 +1,268 @@
+import type { Pack } from '#shared/course/pack.ts';
+import { absorb, add, type Covariance, carryFirst, dot, shrink, times } from '#shared/pace/covariance.ts';
+import type { Anchor } from '#shared/pace/run-state.ts';
+import type { SourceNode } from '#shared/pace/source-node.ts';
+import type { Raw } from '#shared/pace/track.ts';
+
+/**
+ * The estimator: an extended Kalman filter over what the crew cannot see. Distance follows
+ * dD = e^κ · (m·(dw − A·dh + B·du) + dg), where m = m₀·e^λ is the scale of a warm, slow tyre in driven metres per count; A is the
+ * cold tyres' deficit, weighted by coldness (h); B is what speed does, with (v/50)² (u); κ tells official from driven metres. Two
+ * more: the slow error of GNSS positions, and the navigator's lead beyond the one in the pack. Kalman's equations are common
+ * knowledge of estimation theory; the model and its figures are our own, tuned by simulation, no source.
+ */
+
+/** Places in the state vector. */
+const D = 0;
+const SCALE = 1;
+const COLD = 2;
+const SPEED = 3;
+const OFFICIAL = 4;
+const PLACED = 5;
+const LEAD = 6;
+const N = 7;
+
+export interface Belief {
+  readonly covariance: Covariance;
+  /** Slow error of GNSS positions along the course, m. */
+  readonly placed: number;
+  /** The navigator's lead beyond the pack's, s; positive = touches late. */
+  readonly lead: number;
+  /** What the misfits so far say of the scatter of taps: weight in taps, and weighted sum of s². */
+  readonly scatter: { readonly weight: number; readonly sum: number };
+}
+
+/** An anchor under the estimator. */
+export type Estimate = Anchor & { readonly belief: Belief };
+
+/** Deficit of cold tyres and its sigma; growth by speed at 50 m/s and its sigma, and the same for a driven wheel, which slips. */
+const COLD_TYRES = { mean: 0.0035, sigma: 0.0015 };
+const BY_SPEED = { rolling: { mean: 0.00125, sigma: 0.0006 }, driven: { mean: -0.0065, sigma: 0.005 } };
+/** A scale that was not measured on warm tyres may be off by as much as tyres grow. */
+const WARMTH_UNKNOWN = 0.004;
+/** The line driven against the line surveyed. */
+const LINE_SIGMA = 0.001;
+/** Wander of the scale and of the line, relative² per metre. */
+const SCALE_WANDER = 1.2e-11;
+const LINE_WANDER = 4e-12;
+/** Slips and lost pulses, m² per metre. */
+const SLIPS = 6e-4;
+/** GNSS metres that stood in for the wheel, m² per metre. */
+const GNSS_NOISE = 4e-4;
+/** A receiver's speed wanders slowly by so much (m/s) over so long (s): more than what each fix says of itself, m² per second. */
+const SLOW_SPEED = 2 * 0.01 * 0.01 * 60;
+/** Of a position's error this share is slow, over this long (s); the rest changes with every fix. */
+const SLOW_SHARE = 0.95;
+const QUICK_SHARE = 0.35;
+const PLACED_S = 120;
+/** Beyond so many sigmas a comparison or a position is not believed. */
+const GATE = 4;
+/** Reading between two pulses, m². */
+const PULSE_VARIANCE = 0.1;
+/** The pack's scatter of taps is worth so many taps. */
+const SCATTER_WORTH = 6;
+
+/** What is believed before the first metre. `variance`: of the distance at the start, m². `leadSigma` in seconds. */
+export function firstBelief(pack: Pack, variance: number, leadSigma: number): Belief {
+  const { aids } = pack.raceClass;
+  const { scaleSigma, scaleSource, driven } = pack.wheel;
+  const byGnss = aids.gnssSpeed || aids.gnssPosition;
+  const line = LINE_SIGMA * LINE_SIGMA;
+  const covariance = new Array<number>(N * N).fill(0);
+  const set = (i: number, value: number): void => add(covariance, N, i, i, value);
+  set(D, variance);
+  set(SCALE, scaleSigma * scaleSigma + (scaleSource === 'run' ? 0 : WARMTH_UNKNOWN ** 2) + (byGnss ? 0 : line));
+  set(COLD, COLD_TYRES.sigma ** 2);
+  set(SPEED, (driven === true ? BY_SPEED.driven : BY_SPEED.rolling).sigma ** 2);
+  set(OFFICIAL, byGnss ? line : 0);
+  set(LEAD, leadSigma * leadSigma);
+  return { covariance, placed: 0, lead: 0, scatter: { weight: 0, sum: 0 } };
+}
+
+/** The tyres' part of the first anchor: `cold` and `speed`. */
+export function firstTyres(pack: Pack): { readonly cold: number; readonly speed: number } {
+  return { cold: COLD_TYRES.mean, speed: (pack.wheel.driven === true ? BY_SPEED.driven : BY_SPEED.rolling).mean };
+}
+
+interface Way {
+  /** ∂D/∂state, first row of F. */
+  readonly f: number[];
+  /** Driven metres by the wheel, and official metres in all. */
+  readonly wheel: number;
+  readonly official: number;
+  readonly gnss: number;
+}
+
+function wayTo(a: Anchor, raw: Raw): Way {
+  const m = a.mmPerPulse / 1000;
+  const [dw, dh, du, dg] = [raw.w - a.w, raw.h - a.h, raw.u - a.u, raw.g - a.g];
+  const wheel = m * (dw - a.cold * dh + a.speed * du);
+  const official = a.official * (wheel + dg);
+  const f = [1, a.official * wheel, -a.official * m * dh, a.official * m * du, official, 0, 0];
+  return { f, wheel, official, gnss: dg };
+}
+
+/** Variance of the distance at raw values beyond the anchor, m². */
+export function grownVariance(a: Anchor, { covariance: p }: Belief, raw: Raw): number {
+  const way = wayTo(a, raw);
+  return dot(times(p, N, way.f), way.f) + roadVariance(way, (p[OFFICIAL * N + OFFICIAL] as number) > 0);
+}
+
+function roadVariance({ wheel, gnss, official }: Way, byGnss: boolean): number {
+  const [w, all] = [Math.abs(wheel), Math.abs(official)];
+  return SLIPS * w + (SCALE_WANDER * w ** 3) / 3 + GNSS_NOISE * Math.abs(gnss) + (byGnss ? (LINE_WANDER * all ** 3) / 3 : 0);
+}
+
+/** The estimate carried on to raw values at an instant; `lost` m² of what nothing measured on the way. */
+export function carry(a: Estimate, raw: Raw, at: number, lost: number): Estimate {
+  const way = wayTo(a, raw);
+  const p = a.belief.covariance.slice();
+  carryFirst(p, N, way.f);
+  const byGnss = (p[OFFICIAL * N + OFFICIAL] as number) > 0;
+  const [w, all] = [Math.abs(way.wheel), Math.abs(way.official)];
+  add(p, N, D, D, roadVariance(way, byGnss) + lost);
+  add(p, N, D, SCALE, (SCALE_WANDER * w * w) / 2);
+  add(p, N, SCALE, SCALE, SCALE_WANDER * w);
+  if (byGnss) {
+    add(p, N, D, OFFICIAL, (LINE_WANDER * all * all) / 2);
+    add(p, N, OFFICIAL, OFFICIAL, LINE_WANDER * all);
+  }
+  const keep = Math.exp(-Math.max(0, at - a.at) / 1e6 / PLACED_S);
+  shrink(p, N, PLACED, keep);
+  const belief = { ...a.belief, covariance: p, placed: a.belief.placed * keep };
+  return { ...a, at, d: a.d + way.official, w: raw.w, g: raw.g, h: raw.h, u: raw.u, belief };
+}
+
+/** The state after a misfit, by gain `k`. */
+function move(a: Estimate, k: readonly number[], misfit: number, covariance: Covariance): Estimate {
+  const by = (i: number): number => (k[i] as number) * misfit;
+  return {
+    ...a,
+    d: a.d + by(D),
+    mmPerPulse: a.mmPerPulse * Math.exp(by(SCALE)),
+    cold: a.cold + by(COLD),
+    speed: a.speed + by(SPEED),
+    official: a.official * Math.exp(by(OFFICIAL)),
+    belief: { ...a.belief, covariance, placed: a.belief.placed + by(PLACED), lead: a.belief.lead + by(LEAD) },
+  };
+}
+
+function update(a: Estimate, c: readonly number[], s: number, misfit: number, only?: readonly number[]): Estimate {
+  const k = c.map((x, i) => (only === undefined || only.includes(i) ? x / s : 0));
+  const p = a.belief.covariance.slice();
+  absorb(p, N, c, k, s);
+  return move(a, k, misfit, p);
+}
+
+/**
+ * GNSS's metres since the node before against the wheel's. `since`: raw values and instant of that node; `placedAt`: instant of
+ * the last tap: slips before it no longer matter to the distance. The estimate must stand at the node.
+ */
+export function compareSpeed(a: Estimate, since: SourceNode & Raw, node: SourceNode & Raw, placedAt: number): Estimate {
+  if (node.compared === null) return a;
+  const m = a.mmPerPulse / 1000;
+  const [dw, dh, du] = [node.w - since.w, node.h - since.h, node.u - since.u];
+  const wheel = m * (dw - a.cold * dh + a.speed * du);
+  const misfit = node.gnssMetres - since.gnssMetres - (node.g - since.g) - wheel;
+  const seconds = (node.at - since.at) / 1e6;
+  const h = [0, wheel, -m * dh, m * du, 0, 0, 0];
+  const c = times(a.belief.covariance, N, h);
+  const slipped = SLIPS * Math.abs(wheel);
+  const s = dot(c, h) + node.compared + SLOW_SPEED * seconds + slipped;
+  // a slip of the wheel is in the distance and in the misfit alike
+  const share = Math.min(1, Math.max(0, (node.at - placedAt) / Math.max(1, node.at - since.at)));
+  c[D] = (c[D] as number) + a.official * slipped * share;
+  if (misfit * misfit <= GATE * GATE * s) return update(a, c, s, misfit);
+  const p = a.belief.covariance.slice();
+  add(p, N, D, D, node.compared + SLOW_SPEED * seconds);
+  return { ...a, d: a.d + a.official * misfit * share, belief: { ...a.belief, covariance: p } };
+}
+
+/** A position on the surveyed line. The estimate must stand at the node. */
+export function comparePosition(a: Estimate, { position }: SourceNode): Estimate {
+  if (position === null) return a;
+  const { sigma } = position;
+  const p = a.belief.covariance.slice();
+  // the slow error is as large as the receiver says today
+  const slow = (SLOW_SHARE * sigma) ** 2 - (p[PLACED * N + PLACED] as number);
+  add(p, N, PLACED, PLACED, Math.max(0, slow));
+  const h = [1, 0, 0, 0, 0, 1, 0];
+  const c = times(p, N, h);
+  const s = dot(c, h) + (QUICK_SHARE * sigma) ** 2;
+  const misfit = position.d - a.d - a.belief.placed;
+  if (misfit * misfit > GATE * GATE * s) return a;
+  return update({ ...a, belief: { ...a.belief, covariance: p } }, c, s, misfit);
+}
+
+export interface TapMisfit {
+  /** Official less believed, m, and its variance: the estimate's own and the tap's. */
+  readonly misfit: number;
+  readonly variance: number;
+  /** m² of the tap alone. */
+  readonly own: number;
+}
+
+export interface TapAtPlace {
+  /** Official distance of the nose when the navigator's eye passes the place, m, and the survey's sigma. */
+  readonly d: number;
+  readonly surveySigma: number;
+  /** Speed at the touch, m/s. */
+  readonly v: number;
+  /** The pack's scatter of taps, s. */
+  readonly scatter: number;
+  /** Uncertainty of this input's lead, s, where it is not the one that the estimate follows; else null. */
+  readonly otherLead: number | null;
+}
+
+/** Scatter of this navigator's taps, s: the pack's word and what the taps so far say. */
+export function scatterSigma(told: number, { weight, sum }: Belief['scatter']): number {
+  const square = (SCATTER_WORTH * told * told + sum) / (SCATTER_WORTH + weight);
+  return Math.sqrt(Math.min(9 * told * told, Math.max(0.25 * told * told, square)));
+}
+
+const tapRow = ({ v, otherLead }: TapAtPlace): number[] => [1, 0, 0, 0, 0, 0, otherLead === null ? -v : 0];
+
+/** Variance of the tap beside its scatter, m². */
+const besideScatter = ({ v, surveySigma, otherLead }: TapAtPlace): number =>
+  surveySigma ** 2 + PULSE_VARIANCE + ((otherLead ?? 0) * v) ** 2;
+
+/** How far a tap is off, before it is taken in. The estimate must stand at the tap. */
+export function tapMisfit(a: Estimate, tap: TapAtPlace): TapMisfit {
+  const h = tapRow(tap);
+  const own = (scatterSigma(tap.scatter, a.belief.scatter) * tap.v) ** 2 + besideScatter(tap);
+  const misfit = tap.d - a.d - (h[LEAD] as number) * a.belief.lead;
+  return { misfit, variance: dot(times(a.belief.covariance, N, h), h) + own, own };
+}
+
+/** Doubt added before a tap is taken in: m² of the distance, and the metres over which the scale may have done that. */
+export interface Doubt {
+  readonly variance: number;
+  readonly over: number | null;
+}
+
+/** Takes a tap in. `placeOnly`: the crew wants the distance placed and nothing learnt. */
+export function takeTap(before: Estimate, tap: TapAtPlace, placeOnly: boolean, doubt: Doubt): Estimate {
+  const p = before.belief.covariance.slice();
+  add(p, N, D, D, doubt.variance);
+  if (doubt.over !== null) {
+    add(p, N, D, SCALE, doubt.variance / doubt.over);
+    add(p, N, SCALE, SCALE, doubt.variance / doubt.over ** 2);
+  }
+  const a: Estimate = { ...before, belief: { ...before.belief, covariance: p } };
+  const { misfit, variance, own } = tapMisfit(a, tap);
+  const c = times(p, N, tapRow(tap));
+  const after = update(a, c, variance, misfit, placeOnly ? [D, PLACED] : undefined);
+  return doubt.variance > 0
+    ? after
+    : { ...after, belief: { ...after.belief, scatter: learnt(before.belief.scatter, tap, misfit, variance, own) } };
+}
+
+/** Fisher's information on the scatter in one misfit, as a share of a tap that nothing else blurs. */
+function learnt(scatter: Belief['scatter'], tap: TapAtPlace, misfit: number, variance: number, own: number): Belief['scatter'] {
+  if (!(tap.v > 1)) return scatter;
+  const v2 = tap.v * tap.v;
+  const now = (own - besideScatter(tap)) / v2;
+  const weight = ((now * v2) / variance) ** 2;
+  const square = now + (misfit * misfit - variance) / v2;
+  return { weight: scatter.weight + weight, sum: scatter.sum + weight * square };
+}
