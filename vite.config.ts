@@ -53,7 +53,7 @@ const pwa = VitePWA({
     // Workbox leaves files over 2 MiB out of the precache with no more than a warning; a hole there is an app that fails offline.
     maximumFileSizeToCacheInBytes: 16 * 1024 * 1024,
     navigateFallback: 'index.html',
-    navigateFallbackDenylist: [/^\/api(\/|$)/],
+    navigateFallbackDenylist: [/^\/api(\/|$)/, /^\/pulse-box\//],
     // The first visit is offline-ready at once; an update still waits for its prompt.
     clientsClaim: true,
     cleanupOutdatedCaches: true,

@@ -4,7 +4,8 @@ import { wholeField } from './nmea-fields.ts';
  * The sentences of the pulse box, framed as NMEA 0183 with a checksum that is always required:
  *   $PEVLW,<channel>,<cumulative count>,<box us>*hh   a wheel: the count stood at this value at that instant; while the
  *                                                     wheel turns, the instant of the newest counted pulse
- *   $PEVLB,<button>,<press count>,<box us>*hh         a wired button: the instant of the newest counted press
+ *   $PEVLB,<button>,<press count>,<box us>*hh         a wired button: the instant of the newest counted press, which may be
+ *                                                     repeated for a second; later the present instant, as a sign of life
  *   $PEVLT,<box us>*hh                                the edge of the receiver's pulse per second
  * Counts and the box's microseconds wrap at 2^32; channels and buttons are 0..255.
  */
