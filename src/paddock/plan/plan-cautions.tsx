@@ -1,11 +1,10 @@
 import type { ReactNode } from 'react';
-import { printedSpeed } from '#shared/course/convert.ts';
 import { formatSpeed, roundedDigits } from '#shared/course/format.ts';
 import type { Pack } from '#shared/course/pack.ts';
+import { checkTyre } from '#shared/course/tyre-symbol.ts';
 import { Cautions } from '#src/components/cautions.tsx';
 import { FaultNotice } from '#src/components/notice.tsx';
 import type { PackPlan } from './pack-plan.ts';
-import { speedSymbol } from './speed-symbol.ts';
 
 /** What stands against the plan: stop signs first, then limits, then the cautions every plan carries. */
 export function PlanCautions({ pack, plan, tyre }: { readonly pack: Pack; readonly plan: PackPlan; readonly tyre: string | null }) {
@@ -54,27 +53,7 @@ function Outcome({ plan }: { readonly plan: PackPlan }): ReactNode {
   );
 }
 
-/** The cap, not the planned peak, is held against the tyre: the class allows that speed and somebody will drive it. */
 function Tyre({ pack, tyre }: { readonly pack: Pack; readonly tyre: string | null }): ReactNode {
-  const symbol = tyre === null ? null : speedSymbol(tyre);
-  const { cap } = pack.raceClass;
-  if (symbol === null) {
-    return (
-      <p>No speed symbol is noted for the tyres of set-up {pack.wheel.setupName}. Read it off the tyre and compare it with the cap.</p>
-    );
-  }
-  const rated = `${symbol.symbol} (${formatSpeed(symbol.metresPerSecond, pack.settings.speedUnit)} ${pack.settings.speedUnit})`;
-  if (cap === null || printedSpeed(cap) <= symbol.metresPerSecond + 1e-9) {
-    return (
-      <p>
-        Tyres of set-up {pack.wheel.setupName}: speed symbol {rated}
-        {cap === null ? '.' : ', not below the cap.'}
-      </p>
-    );
-  }
-  return (
-    <FaultNotice>
-      Stop: the cap of {cap.text} {cap.unit} is above the tyres' speed symbol {rated}. Fit other tyres or choose another class.
-    </FaultNotice>
-  );
+  const { stop, message } = checkTyre(tyre ?? '', pack.raceClass.cap, pack.wheel.setupName, pack.settings.speedUnit);
+  return stop ? <FaultNotice>{message}</FaultNotice> : <p>{message}</p>;
 }

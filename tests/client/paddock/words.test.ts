@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { timeErrorText } from '#src/paddock/parts/time-error.tsx';
 import { clockInZone, formatDate, relativeAge } from '#src/paddock/parts/when.ts';
-import { speedSymbol } from '#src/paddock/plan/speed-symbol.ts';
 import { keptText, movedText } from '#src/paddock/runs/run-words.ts';
 
 describe('time errors in a table', () => {
@@ -41,23 +40,5 @@ describe('instants and ages', () => {
     [90_000, 'in 1 minute'],
   ])('tell %i ms as %s', (span, words) => {
     expect(relativeAge(1_780_000_000_000 + span, 1_780_000_000_000)).toBe(words);
-  });
-});
-
-describe('speed symbol of a tyre', () => {
-  it.each([
-    ['245/40 R18 97W', 'W', 270],
-    ['255/40 R19 100H', 'H', 210],
-    ['205/55R16 91V XL', 'V', 240],
-    ['275/35 ZR20 (102Y)', 'Y', 300],
-    ['195/65 R15C 106/104T', 'T', 190],
-  ])('%s is %s', (tyre, symbol, kmh) => {
-    const read = speedSymbol(tyre);
-    expect(read?.symbol).toBe(symbol);
-    expect((read?.metresPerSecond ?? 0) * 3.6).toBeCloseTo(kmh, 9);
-  });
-
-  it.each(['', '265/35 R18', '255/40 R17', 'slick', '97'])('%j carries none', (tyre) => {
-    expect(speedSymbol(tyre)).toBeNull();
   });
 });
