@@ -1,8 +1,10 @@
 import { rememberBand } from '#shared/pace/band.ts';
-import { makePlan, type Plan, piecesFrom } from '#shared/pace/plan.ts';
+import { type LivePlan, planLive } from '#shared/pace/plan-live.ts';
+import type { PlannedStretch } from '#shared/pace/plan-profile.ts';
+import { reviewPlan } from '#shared/pace/plan-review.ts';
 import type { HoldMemory, RunState } from '#shared/pace/run-state.ts';
+import { shownSpeed } from '#shared/pace/shown-speed.ts';
 import { type Situation, situationAt } from '#shared/pace/situation.ts';
-import { metresPerSecondPer, type SpeedUnit } from '#shared/units.ts';
 
 /** The speed to hold: solved anew from the present state once a second, shown in the crew's steps and not too often. */
 
@@ -16,64 +18,54 @@ const LEAD_S = 2;
 /** Less than this is not worth a warning. */
 const TRIFLE_S = 0.05;
 
-/** Steps of the shown speed: 2 km/h or 1 mph. */
-const stepOf = (unit: SpeedUnit): number => (unit === 'km/h' ? 2 : 1);
-
-/**
- * A speed in the crew's steps, never above `upper`, never below `lower` (upper wins). Where a bound itself is the advice, it is
- * shown to the whole unit instead of the step.
- */
-export function shownSpeed(wanted: number, upper: number, lower: number, unit: SpeedUnit): number {
-  const per = metresPerSecondPer(unit);
-  const step = stepOf(unit);
-  const dust = 1e-6;
-  const most = Math.floor(upper / per + dust);
-  let shown = Math.round(wanted / per / step) * step;
-  if (wanted >= upper - dust) shown = most;
-  else if (shown > most) shown = Math.floor(upper / per / step + dust) * step;
-  if (shown < lower / per - dust) shown = Math.min(most, Math.ceil(lower / per - dust));
-  return shown * per;
-}
-
 /** At most once a second of session time, driven by whatever happens. */
 export function isAdviceDue(state: RunState): boolean {
   const { advisedAt } = state.shown;
   return advisedAt === null || state.now - advisedAt >= ADVISE_US;
 }
 
-/** Part of the fold: brings the shown hold speed, and what the band remembers, up to date. */
+/** Part of the fold: brings the shown hold speed, and what the displays remember, up to date. */
 export function advise(state: RunState): void {
   const { shown, now } = state;
   shown.advisedAt = now;
   const s = situationAt(state, now);
   rememberBand(state, s);
+  shown.plan.noReturn = null;
   if (s.phase !== 'running' && s.phase !== 'countdown' && s.phase !== 'grid' && s.phase !== 'held') shown.hold = null;
   else if (state.acts.escort || s.distance >= s.model.finish) shown.hold = null;
-  else shown.hold = nextHold(shown.hold, freshHold(state, s), s);
-}
-
-function planFrom({ model, distance, speed }: Situation, t: number): Plan {
-  const pieces = piecesFrom(model.pieces, distance);
-  return makePlan({ ...model.request, from: { x: distance, v: Math.max(0, speed ?? 0), t } }, pieces);
+  else {
+    shown.hold = nextHold(shown.hold, freshHold(state, s), s);
+    if (s.phase === 'running') reviewPlan(state, s);
+  }
 }
 
 function freshHold(state: RunState, s: Situation): HoldMemory {
-  const waiting = s.phase !== 'running' || s.elapsed === null;
-  const plan: Plan = waiting ? s.model.plan : planFrom(s, s.elapsed);
-  let stretch = plan.stretchAt(s.distance);
-  const { brakingFrom } = stretch;
-  const ahead = s.distance + LEAD_S * (s.speed ?? 0);
-  if (brakingFrom !== null && ahead >= brakingFrom && stretch.to < s.model.finish) stretch = plan.stretchAt(stretch.to);
-  const unit = state.pack.settings.speedUnit;
-  const by: number = plan.by;
+  const { plan: memory } = state.shown;
+  const { model, distance, elapsed } = s;
+  const speed = Math.max(0, s.speed ?? 0);
+  const waiting = s.phase !== 'running' || elapsed === null;
+  const live = waiting ? null : planLive(model.live, distance, speed, elapsed, memory.s);
+  memory.s = live?.s ?? null;
+  const by: number = live?.by ?? model.plan.by;
+  const outcome = live?.outcome ?? model.plan.outcome;
+  const stretch = stretchToHold(s, live, speed);
   return {
-    kind: plan.outcome === 'on zero' || by < TRIFLE_S ? 'hold' : plan.outcome,
-    speed: shownSpeed(stretch.hold, stretch.top, s.model.floor ?? 0, unit),
+    kind: outcome === 'on zero' || by < TRIFLE_S ? 'hold' : outcome,
+    speed: shownSpeed(stretch.hold, stretch.top, stretch.floor, state.pack.settings.speedUnit),
     by,
     changedAt: s.at,
     stretch: stretch.to,
     frozen: false,
   };
+}
+
+/** The stretch the car is in, or the slower one it must soon brake for. */
+function stretchToHold({ model, distance }: Situation, live: LivePlan | null, speed: number): PlannedStretch {
+  const here = live?.here ?? model.plan.stretchAt(distance);
+  const { brakingFrom } = here;
+  const brakes = brakingFrom !== null && distance + LEAD_S * speed >= brakingFrom && here.to < model.finish;
+  if (!brakes) return here;
+  return live === null ? model.plan.stretchAt(here.to) : (live.next ?? here);
 }
 
 /** What stays of the shown speed, and what may change. */

@@ -1,8 +1,9 @@
 import { printedFineness, readPrintedMetres, readPrintedSpeed } from '#shared/course/convert.ts';
 import type { Checkpoint, PrintedDistance, PrintedSpeed, Zone } from '#shared/course/course-book.ts';
 import type { Pack } from '#shared/course/pack.ts';
-import { makePlan, type Plan, type PlanRequest, planPieces } from '#shared/pace/plan.ts';
-import type { Piece } from '#shared/pace/plan-solver.ts';
+import { makePlan, type Plan, type PlanRequest } from '#shared/pace/plan.ts';
+import { type LivePlanner, makeLivePlanner } from '#shared/pace/plan-live.ts';
+import { planPieces, reserveWaypoints } from '#shared/pace/plan-pieces.ts';
 import { surveySigma } from '#shared/pace/scale.ts';
 import { makeSchedule, type Schedule } from '#shared/pace/schedule.ts';
 
@@ -49,8 +50,8 @@ export interface CourseModel {
   readonly floor: number | null;
   readonly plan: Plan;
   readonly request: Omit<PlanRequest, 'from'>;
-  /** The whole course cut at every limit, from the place on the grid. */
-  readonly pieces: readonly Piece[];
+  /** Plans from any state of the run; holds the whole course cut at every limit, from the place on the grid. */
+  readonly live: LivePlanner;
 }
 
 export const makeChanges = (pack: Pack): Changes => ({
@@ -80,8 +81,11 @@ export function buildCourseModel(pack: Pack, changes: Changes): CourseModel {
   const top = cap === null ? null : cap * (1 - plan.capMargin);
   const zones = buildZones(pack, changes);
   const mode = schedule.sections.length > 1 ? 'sections' : 'finish';
-  const request = { schedule, zones, top, floor, acceleration: plan.acceleration, deceleration: plan.deceleration, mode } as const;
+  const via = reserveWaypoints(schedule, plan.reserveS ?? 0);
+  const { acceleration, deceleration } = plan;
+  const request = { schedule, zones, top, floor, acceleration, deceleration, mode, via } as const;
   const from = planStart(pack, changes, startPlace.d);
+  const pieces = planPieces({ ...request, from: { ...from, x: Math.min(from.x, startPlace.d - Math.max(0, changes.stagedBehindM)) } });
   return {
     version: changes.version,
     start: startPlace.d,
@@ -94,9 +98,9 @@ export function buildCourseModel(pack: Pack, changes: Changes): CourseModel {
     cap,
     top,
     floor,
-    plan: makePlan({ ...request, from }),
+    plan: makePlan({ ...request, from }, pieces),
     request,
-    pieces: planPieces({ ...request, from: { ...from, x: Math.min(from.x, startPlace.d - Math.max(0, changes.stagedBehindM)) } }),
+    live: makeLivePlanner(request, pieces),
   };
 }
 

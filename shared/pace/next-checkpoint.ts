@@ -1,4 +1,5 @@
 import { reachOf } from '#shared/pace/derive-tap.ts';
+import { planInForce } from '#shared/pace/plan-memory.ts';
 import type { NextCheckpoint } from '#shared/pace/readout.ts';
 import type { PlacePassing, RunState } from '#shared/pace/run-state.ts';
 import type { Situation } from '#shared/pace/situation.ts';
@@ -47,7 +48,7 @@ export function nextCheckpoint(state: RunState, s: Situation): NextCheckpoint | 
     of: s.model.places.length,
     toGo: metres(toGo),
     eta: speed > TOO_SLOW ? seconds(toGo / speed) : null,
-    planned: seconds(place.d >= s.model.finish ? 0 : s.model.plan.plannedErrorAt(place.d)),
+    planned: seconds(place.d >= s.model.finish ? 0 : planInForce(state, s.model).plannedErrorAt(place.d)),
     nearness: Math.min(1, Math.max(0, 1 - Math.abs(toGo) / fills)),
     inReach: state.derived.anchors.length > 0 && Math.abs(toGo) <= reachOf(s.variance),
   };

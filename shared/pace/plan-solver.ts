@@ -13,20 +13,25 @@ export interface Piece {
   readonly top: number;
   /** The unknown's weight: 1 = cruise speed; a section's target speed = ratio to every average. */
   readonly weight: number;
-}
-
-export interface CarLimits {
-  /** m/s², both positive. */
-  readonly acceleration: number;
-  readonly deceleration: number;
-  /** Speed advice never falls under, m/s; a limit below it wins. 0 for none. */
+  /** Lowest speed here, m/s; a limit below it wins. 0 for none. */
   readonly floor: number;
 }
 
-/** Speed at every cut, the pieces' limits, the time in seconds and its derivative by s. */
+/** m/s², both positive. */
+export interface CarLimits {
+  readonly acceleration: number;
+  readonly deceleration: number;
+}
+
+/**
+ * Speed at every cut, the pieces' limits, the time in seconds and its derivative by s. One is made for a course and filled again
+ * by every evaluation: a plan is made every second of a run, and of every run that is replayed.
+ */
 export interface Evaluation {
   readonly nodes: Float64Array;
   readonly limits: Float64Array;
+  /** Derivatives by s of the squared speeds at the cuts. */
+  readonly slopes: Float64Array;
   time: number;
   slope: number;
 }
@@ -34,79 +39,113 @@ export interface Evaluation {
 export const makeEvaluation = (pieces: number): Evaluation => ({
   nodes: new Float64Array(pieces + 1),
   limits: new Float64Array(pieces),
+  slopes: new Float64Array(pieces + 1),
   time: 0,
   slope: 0,
 });
 
-const limitOf = (piece: Piece, floor: number, s: number): number => Math.min(piece.top, Math.max(floor, s * piece.weight));
-const isFree = (piece: Piece, floor: number, s: number): boolean => s * piece.weight < piece.top && s * piece.weight > floor;
+/** Where on the pieces a plan begins: in which piece, at which place, how fast. */
+export interface Standing {
+  readonly first: number;
+  readonly x: number;
+  readonly v: number;
+}
 
-/** Time for all pieces from speed v0 with unknown s. Fills and returns `out`. O(pieces). */
-export function evaluate(pieces: readonly Piece[], car: CarLimits, v0: number, s: number, out: Evaluation): Evaluation {
-  const { nodes, limits } = out;
-  const slopes = nodeSpeeds(pieces, car, v0, s, out);
+export const atBeginning = (pieces: readonly Piece[], v: number): Standing => ({ first: 0, x: (pieces[0] as Piece).from, v });
+
+/** Index of the piece that holds x; the number of pieces where x lies at or past their end. */
+export function pieceAt(pieces: readonly Piece[], x: number): number {
+  let i = 0;
+  while (i < pieces.length && (pieces[i] as Piece).to <= x) i++;
+  return i;
+}
+
+/** Time from where the car stands to the end of the pieces with unknown s. Fills `out` from there on and returns it. O(pieces). */
+export function evaluate(pieces: readonly Piece[], car: CarLimits, from: Standing, s: number, out: Evaluation): Evaluation {
+  findNodes(pieces, car, from, s, out);
+  const { nodes, limits, slopes } = out;
+  const { acceleration: a, deceleration: d } = car;
   let time = 0;
   let slope = 0;
-  for (let i = 0; i < pieces.length; i++) {
+  let begin = from.x;
+  let v0 = Math.sqrt(nodes[from.first] as number);
+  nodes[from.first] = v0;
+  for (let i = from.first; i < pieces.length; i++) {
     const piece = pieces[i] as Piece;
-    const part = pieceMotion(piece.to - piece.from, nodes[i] as number, nodes[i + 1] as number, limits[i] as number, car);
-    const { acceleration: a, deceleration: d } = car;
-    time += part.time;
-    if (part.atLimit && isFree(piece, car.floor, s)) slope -= part.cruise / (part.peak * s);
+    const length = piece.to - begin;
+    const limit = limits[i] as number;
+    const v1 = Math.sqrt(nodes[i + 1] as number);
+    nodes[i + 1] = v1;
+    // the same cases as `pieceMotion`, without an object for each
+    const over = v0 > limit;
+    const square = over ? 0 : (2 * a * d * length + d * v0 * v0 + a * v1 * v1) / (a + d);
+    const atLimit = over || limit * limit < square;
+    const peak = Math.max(atLimit ? limit : Math.sqrt(Math.max(0, square)), over ? 0 : v0, v1);
+    const rate = over ? -d : a;
+    const rampIn = Math.min(length, (peak * peak - v0 * v0) / (2 * rate));
+    const cruise = atLimit ? Math.max(0, length - rampIn - (peak * peak - v1 * v1) / (2 * d)) : 0;
+    time += (peak - v0) / rate + (peak - v1) / d + (cruise > 0 ? cruise / peak : 0);
+    if (cruise > 0) {
+      const asked = s * piece.weight;
+      if (asked < piece.top && asked > piece.floor) slope -= cruise / (peak * s);
+    }
     // speeds at the cuts move with s too, where the slower of two averages holds them
-    const rampIn = (nodes[i] as number) > part.peak ? d : -a;
-    slope += ((slopes[i] as number) / rampIn) * (1 - (nodes[i] as number) / part.peak);
-    slope += (-(slopes[i + 1] as number) / d) * (1 - (nodes[i + 1] as number) / part.peak);
+    if (slopes[i] !== 0 && v0 > 0) slope -= (((slopes[i] as number) / (2 * v0)) * (1 - v0 / peak)) / rate;
+    if (slopes[i + 1] !== 0 && v1 > 0) slope -= (((slopes[i + 1] as number) / (2 * v1)) * (1 - v1 / peak)) / d;
+    begin = piece.to;
+    v0 = v1;
   }
   out.time = time;
   out.slope = slope;
   return out;
 }
 
-/** Fills node speeds and limits; returns their derivatives by s. */
-function nodeSpeeds(pieces: readonly Piece[], car: CarLimits, v0: number, s: number, { nodes, limits }: Evaluation): Float64Array {
-  const { acceleration: a, deceleration: d, floor } = car;
+/** Limits, and the squared speeds at the cuts with their derivatives by s: squares need no root, and change evenly with the way. */
+function findNodes(pieces: readonly Piece[], car: CarLimits, from: Standing, s: number, { nodes, limits, slopes }: Evaluation): void {
+  const { acceleration: a, deceleration: d } = car;
+  const { first, x, v } = from;
   const n = pieces.length;
-  const slopes = new Float64Array(n + 1);
-  for (let i = 0; i < n; i++) limits[i] = limitOf(pieces[i] as Piece, floor, s);
-  nodes[0] = v0;
-  // the least speed that braking all the way can reach: above a limit it cannot be helped
-  let least = v0;
-  for (let i = 0; i < n; i++) {
+  for (let i = first; i < n; i++) {
     const piece = pieces[i] as Piece;
-    const length = piece.to - piece.from;
-    const before = nodes[i] as number;
-    least = Math.sqrt(Math.max(0, least * least - 2 * d * length));
-    const next = i + 1 < n ? i + 1 : i;
-    const binding = (limits[next] as number) < (limits[i] as number) ? next : i;
-    const wanted = limits[binding] as number;
-    const reachable = Math.sqrt(before * before + 2 * a * length);
+    limits[i] = Math.min(piece.top, Math.max(piece.floor, s * piece.weight));
+  }
+  nodes[first] = v * v;
+  slopes[first] = 0;
+  // the least that braking all the way can reach: above a limit it cannot be helped
+  let least = v * v;
+  let begin = x;
+  for (let i = first; i < n; i++) {
+    const length = (pieces[i] as Piece).to - begin;
+    begin = (pieces[i] as Piece).to;
+    least = Math.max(0, least - 2 * d * length);
+    const next = i + 1 < n && (limits[i + 1] as number) < (limits[i] as number) ? i + 1 : i;
+    const limit = limits[next] as number;
+    const wanted = limit * limit;
+    const reachable = (nodes[i] as number) + 2 * a * length;
     if (reachable < Math.max(wanted, least)) {
       nodes[i + 1] = reachable;
-      slopes[i + 1] = reachable > 0 ? ((slopes[i] as number) * before) / reachable : 0;
+      slopes[i + 1] = slopes[i] as number;
     } else {
       nodes[i + 1] = Math.max(wanted, least);
-      slopes[i + 1] = wanted > least && isFree(pieces[binding] as Piece, floor, s) ? (pieces[binding] as Piece).weight : 0;
+      const { top, weight, floor } = pieces[next] as Piece;
+      const free = wanted > least && limit < top && limit > floor;
+      slopes[i + 1] = free ? 2 * limit * weight : 0;
     }
   }
-  for (let i = n - 1; i > 0; i--) {
-    const piece = pieces[i] as Piece;
-    const after = nodes[i + 1] as number;
-    const most = Math.sqrt(after * after + 2 * d * (piece.to - piece.from));
+  for (let i = n - 1; i > first; i--) {
+    const most = (nodes[i + 1] as number) + 2 * d * ((pieces[i] as Piece).to - (pieces[i] as Piece).from);
     if ((nodes[i] as number) <= most) continue;
     nodes[i] = most;
-    slopes[i] = most > 0 ? ((slopes[i + 1] as number) * after) / most : 0;
+    slopes[i] = slopes[i + 1] as number;
   }
-  return slopes;
 }
 
 export interface Motion {
   readonly time: number;
   readonly peak: number;
-  /** Lengths of the first ramp, the steady middle and the last ramp, metres. */
+  /** Lengths of the first ramp and the steady middle, metres; what is left is the last ramp. */
   readonly rampIn: number;
   readonly cruise: number;
-  readonly atLimit: boolean;
 }
 
 /** One piece: ramp from v0 to the peak, steady, ramp down to v1. The peak is the limit, or less where the piece is too short. */
@@ -117,7 +156,7 @@ export function pieceMotion(length: number, v0: number, v1: number, limit: numbe
     const rampIn = Math.min(length, (v0 * v0 - peak * peak) / (2 * d));
     const rampOut = (peak * peak - v1 * v1) / (2 * d);
     const cruise = Math.max(0, length - rampIn - rampOut);
-    return { time: (v0 - v1) / d + cruise / peak, peak, rampIn, cruise, atLimit: true };
+    return { time: (v0 - v1) / d + (cruise > 0 ? cruise / peak : 0), peak, rampIn, cruise };
   }
   const highest = Math.sqrt(Math.max(0, (2 * a * d * length + d * v0 * v0 + a * v1 * v1) / (a + d)));
   const atLimit = limit < highest;
@@ -125,47 +164,64 @@ export function pieceMotion(length: number, v0: number, v1: number, limit: numbe
   const rampIn = (peak * peak - v0 * v0) / (2 * a);
   const rampOut = (peak * peak - v1 * v1) / (2 * d);
   const cruise = atLimit ? Math.max(0, length - rampIn - rampOut) : 0;
-  return { time: (peak - v0) / a + (peak - v1) / d + (cruise > 0 ? cruise / peak : 0), peak, rampIn, cruise, atLimit };
+  return { time: (peak - v0) / a + (peak - v1) / d + (cruise > 0 ? cruise / peak : 0), peak, rampIn, cruise };
 }
 
-export type Solution =
-  | { readonly kind: 'solved'; readonly s: number; readonly evaluation: Evaluation; readonly iterations: number }
-  /** Even flat out under every limit it takes `by` seconds too long. */
-  | { readonly kind: 'short'; readonly s: number; readonly by: number; readonly evaluation: Evaluation }
-  /** Even at the lowest speed it takes `by` seconds less than the time given. */
-  | { readonly kind: 'long'; readonly s: number; readonly by: number; readonly evaluation: Evaluation };
+/** short: flat out under every limit it takes `by` seconds too long. long: at the lowest speed it takes `by` seconds too few. */
+export interface Solution {
+  readonly kind: 'solved' | 'short' | 'long';
+  readonly s: number;
+  readonly by: number;
+  readonly iterations: number;
+}
 
 const CLOSE_ENOUGH = 1e-7;
 const MOST_ITERATIONS = 60;
 
-/** Finds s such that the pieces take `time` seconds from speed v0. */
-export function solve(pieces: readonly Piece[], car: CarLimits, v0: number, time: number): Solution {
-  const evaluation = makeEvaluation(pieces.length);
+/**
+ * Finds s such that the pieces take `time` seconds from where the car stands; `out` then holds that evaluation. `near` is where to
+ * begin: the s of a second ago is an evaluation or two away. Above 60 rounds the nearest so far is the answer; none was seen.
+ */
+export function solve(
+  pieces: readonly Piece[],
+  car: CarLimits,
+  from: Standing,
+  time: number,
+  out: Evaluation,
+  near: number | null = null,
+): Solution {
   let highest = 0;
+  let lowest = Number.POSITIVE_INFINITY;
   let average = 0;
-  let heaviest = 0;
-  for (const piece of pieces) {
-    highest = Math.max(highest, piece.top / piece.weight);
-    heaviest = Math.max(heaviest, piece.weight);
-    average += (piece.to - piece.from) / piece.weight;
+  let begin = from.x;
+  for (let i = from.first; i < pieces.length; i++) {
+    const { to, top, weight, floor } = pieces[i] as Piece;
+    highest = Math.max(highest, top / weight);
+    lowest = Math.min(lowest, floor / weight);
+    average += (to - begin) / weight;
+    begin = to;
   }
-  const fastest = evaluate(pieces, car, v0, highest, evaluation).time;
-  if (fastest > time + CLOSE_ENOUGH) return { kind: 'short', s: highest, by: fastest - time, evaluation };
-  let low = car.floor > 0 ? car.floor / heaviest : 0;
-  if (low > 0) {
-    const slowest = evaluate(pieces, car, v0, low, evaluation).time;
-    if (slowest < time - CLOSE_ENOUGH) return { kind: 'long', s: low, by: time - slowest, evaluation };
-  }
-  let high = highest;
-  let s = Math.min(highest, Math.max(low, average / time));
+  let [low, high] = [lowest, highest];
+  // at a standstill it takes for ever: without a floor the lower end needs no look
+  let [lowSeen, highSeen] = [lowest <= 0, false];
+  let s = Math.min(highest, Math.max(lowest, near ?? (time > 0 ? average / time : highest)));
   let iterations = 0;
   for (; iterations < MOST_ITERATIONS; iterations++) {
-    const off = evaluate(pieces, car, v0, s, evaluation).time - time;
+    const off = evaluate(pieces, car, from, s, out).time - time;
     if (Math.abs(off) < CLOSE_ENOUGH) break;
-    if (off > 0) low = s;
-    else high = s;
-    const newton = evaluation.slope < 0 ? s - off / evaluation.slope : Number.NaN;
-    s = newton > low && newton < high ? newton : newton >= high && off > 0 ? high : (low + high) / 2;
+    if (off > 0) {
+      if (s >= highest) return { kind: 'short', s, by: off, iterations };
+      low = s;
+      lowSeen = true;
+    } else {
+      if (s <= lowest) return { kind: 'long', s, by: -off, iterations };
+      high = s;
+      highSeen = true;
+    }
+    const newton = out.slope < 0 ? s - off / out.slope : off * Number.POSITIVE_INFINITY;
+    if (newton > low && newton < high) s = newton;
+    else if (newton >= high) s = highSeen ? (low + high) / 2 : high;
+    else s = lowSeen ? (low + high) / 2 : low;
   }
-  return { kind: 'solved', s, evaluation, iterations };
+  return { kind: 'solved', s, by: 0, iterations };
 }

@@ -41,6 +41,7 @@ export function readoutAt(state: RunState, at: Micros): Readout {
     sigma: seconds(s.sigma),
     band: bandOf(state, s),
     hold: holdOf(state, s),
+    noReturn: noReturnOf(state, s),
     next: nextCheckpoint(state, s),
     ...zonesOf(s),
     source: s.source,
@@ -57,6 +58,12 @@ function holdOf(state: RunState, s: Situation): Hold {
   const speed = metresPerSecond(hold.speed);
   if (hold.kind === 'hold') return { kind: 'hold', speed, frozen: hold.frozen };
   return { kind: hold.kind, by: seconds(hold.by), speed };
+}
+
+function noReturnOf({ shown, acts }: RunState, s: Situation): Readout['noReturn'] {
+  const { noReturn } = shown.plan;
+  if (noReturn === null || s.phase !== 'running' || acts.escort) return null;
+  return { at: metres(noReturn.x), in: seconds(Math.max(0, (noReturn.at - s.at) / 1e6)) };
 }
 
 function zonesOf(s: Situation): Pick<Readout, 'zone' | 'zoneAhead'> {

@@ -19,7 +19,7 @@ export interface Readout {
   readonly scale: { readonly mmPerPulse: number; readonly changedBy: number };
   /** Positive = late, negative = early; against the schedule. Null before the start. */
   readonly timeError: Seconds | null;
-  /** Planned time error here. */
+  /** Planned time error here, by the plan in force. */
   readonly planned: Seconds;
   /** timeError - planned: positive = below plan (less in hand than planned), negative = above. */
   readonly againstPlan: Seconds | null;
@@ -27,6 +27,8 @@ export interface Readout {
   readonly sigma: Seconds;
   readonly band: Band | null;
   readonly hold: Hold;
+  /** The place after which zero cannot be reached if the present speed is held; null while that is over a minute away, or never. */
+  readonly noReturn: { readonly at: Metres; readonly in: Seconds } | null;
   readonly next: NextCheckpoint | null;
   readonly zone: ZoneAhead | null;
   readonly zoneAhead: ZoneAhead | null;

@@ -4,6 +4,7 @@ import { type Clock, makeClock } from '#shared/pace/clock.ts';
 import { buildCourseModel, type Changes, type CourseModel, makeChanges } from '#shared/pace/course-model.ts';
 import type { Belief } from '#shared/pace/estimator.ts';
 import { makeOdometer, type Odometer } from '#shared/pace/odometer.ts';
+import { makePlanMemory, type PlanMemory } from '#shared/pace/plan-memory.ts';
 import type { Raw } from '#shared/pace/track.ts';
 
 /** Raised whenever the same journal may lead to other figures. */
@@ -158,6 +159,7 @@ export interface Shown {
   advisedAt: number | null;
   hold: HoldMemory | null;
   bandLevel: boolean;
+  plan: PlanMemory;
 }
 
 export interface HoldMemory {
@@ -213,7 +215,7 @@ export function makeRunState(pack: Pack): RunState {
       taps: [],
       nextD: null,
     },
-    shown: { advisedAt: null, hold: null, bandLevel: true },
+    shown: { advisedAt: null, hold: null, bandLevel: true, plan: makePlanMemory() },
   };
 }
 

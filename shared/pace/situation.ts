@@ -3,6 +3,7 @@ import type { CourseModel } from '#shared/pace/course-model.ts';
 import { startGate } from '#shared/pace/derive-start.ts';
 import { anchorAt, distanceAt, distanceOf, distanceVariance, scaleNow } from '#shared/pace/distance.ts';
 import { odometerNow } from '#shared/pace/odometer-now.ts';
+import { planInForce } from '#shared/pace/plan-memory.ts';
 import type { Phase } from '#shared/pace/readout.ts';
 import { type Anchor, modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
 import { targetSpeedAt, targetTimeAt } from '#shared/pace/schedule.ts';
@@ -65,7 +66,7 @@ export function situationAt(state: RunState, at: number): Situation {
     mmPerPulse,
     elapsed,
     timeError: over ? finish.timeError : elapsed === null ? null : elapsed - targetTimeAt(model.schedule, distance),
-    planned: distance >= model.finish ? 0 : model.plan.plannedErrorAt(distance),
+    planned: distance >= model.finish ? 0 : planInForce(state, model).plannedErrorAt(distance),
     sigma: over ? finish.sigma : timeSigma(state, model, distance, variance, now.speed ?? 0, at),
     variance,
     finish: over ? finish : null,

@@ -1,8 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Pack } from '#shared/course/pack.ts';
-import { shownSpeed } from '#shared/pace/advice.ts';
 import { begin, readout, step } from '#shared/pace/run.ts';
+import { shownSpeed } from '#shared/pace/shown-speed.ts';
 import { micros } from '#shared/units.ts';
 import { clockCheck, fromRest, instantOf, journal, type Motion, pulses, RELEASE_US } from '#tests/unit/pace/drives.ts';
 import { act, look, sheetOf } from '#tests/unit/pace/folds.ts';

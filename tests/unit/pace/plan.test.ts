@@ -1,7 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { fastestTime, makePlan, type PlanRequest, pointOfNoReturn } from '#shared/pace/plan.ts';
-import { evaluate, makeEvaluation, type Piece, pieceMotion } from '#shared/pace/plan-solver.ts';
+import { makePlan, type PlanRequest } from '#shared/pace/plan.ts';
+import { fastestTime, pointOfNoReturn } from '#shared/pace/plan-bounds.ts';
+import { atBeginning, evaluate, makeEvaluation, type Piece, pieceMotion } from '#shared/pace/plan-solver.ts';
 import { type Schedule, targetTimeAt } from '#shared/pace/schedule.ts';
 import { metres, metresPerSecond, seconds } from '#shared/units.ts';
 
@@ -58,13 +59,14 @@ describe('worked values', () => {
     const pieces = (zones: boolean): Piece[] =>
       zones
         ? [
-            { from: 0, to: zone.from, top: 58, weight: 1 },
-            { from: zone.from, to: zone.to, top: zone.limit, weight: 1 },
-            { from: zone.to, to: 120_000, top: 58, weight: 1 },
+            { from: 0, to: zone.from, top: 58, weight: 1, floor: 0 },
+            { from: zone.from, to: zone.to, top: zone.limit, weight: 1, floor: 0 },
+            { from: zone.to, to: 120_000, top: 58, weight: 1, floor: 0 },
           ]
-        : [{ from: 0, to: 120_000, top: 58, weight: 1 }];
-    const car = { acceleration: 2.5, deceleration: 4, floor: 0 };
-    const time = (zones: boolean): number => evaluate(pieces(zones), car, 0, s, makeEvaluation(zones ? 3 : 1)).time;
+        : [{ from: 0, to: 120_000, top: 58, weight: 1, floor: 0 }];
+    const car = { acceleration: 2.5, deceleration: 4 };
+    const time = (zones: boolean): number =>
+      evaluate(pieces(zones), car, atBeginning(pieces(zones), 0), s, makeEvaluation(zones ? 3 : 1)).time;
     const loss = 1000 * (1 / 30 - 1 / s) + ((s - 30) ** 2 / (2 * s)) * (1 / 2.5 + 1 / 4);
     expect(time(true) - time(false)).toBeCloseTo(loss, 8);
   });
@@ -128,7 +130,7 @@ describe('worked values', () => {
   });
 
   it('13: a piece too short to reach the limit; the fastest that can still brake', () => {
-    const car = { acceleration: 2.5, deceleration: 4, floor: 0 };
+    const car = { acceleration: 2.5, deceleration: 4 };
     expect(pieceMotion(100, 10, 12, 58, car).peak).toBeCloseTo(20.6062, 4);
     const into = (v: number): boolean =>
       makePlan({ ...bare, zones: [{ from: 60_150, to: 60_650, limit: 32 }], from: { x: 60_000, v, t: 1200 } }).cannotBrake;
@@ -247,11 +249,13 @@ describe('whatever the course', () => {
           to: s.to as number,
           top: 45,
           weight: request.mode === 'finish' ? 1 : (s.speed as number),
+          floor: 0,
         }));
         const s = request.mode === 'finish' ? ratio * 30 : ratio;
-        const car = { acceleration: 2.5, deceleration: 4, floor: 0 };
-        const time = (x: number): number => evaluate(pieces, car, request.from.v, x, makeEvaluation(pieces.length)).time;
-        const { slope } = evaluate(pieces, car, request.from.v, s, makeEvaluation(pieces.length));
+        const car = { acceleration: 2.5, deceleration: 4 };
+        const time = (x: number): number =>
+          evaluate(pieces, car, atBeginning(pieces, request.from.v), x, makeEvaluation(pieces.length)).time;
+        const { slope } = evaluate(pieces, car, atBeginning(pieces, request.from.v), s, makeEvaluation(pieces.length));
         const h = s * 1e-6;
         const [left, right] = [(time(s) - time(s - h)) / h, (time(s + h) - time(s)) / h];
         expect(time(s + h)).toBeLessThanOrEqual(time(s) + 1e-9);
