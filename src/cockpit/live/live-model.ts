@@ -90,6 +90,7 @@ export function structureKey(readout: Readout): string {
     readout.targetTime,
     readout.band?.side,
     readout.hold.kind,
+    readout.noReturn === null,
     readout.next?.checkpoint.id,
     readout.next?.inReach,
     readout.zone === null,

@@ -60,6 +60,10 @@ export function holdWords(hold: Hold): readonly string[] {
   }
 }
 
+/** How long the present speed may still be held. */
+export const noReturnWords = ({ noReturn }: Pick<Readout, 'noReturn'>): string =>
+  noReturn === null ? '' : `at this speed late for good in ${roundedDigits(noReturn.in, 0)} s`;
+
 /** What became of the last touch, short enough to be read out. */
 export function verdictWords(tap: TapVerdict): string {
   const off = Math.abs(tap.moved);

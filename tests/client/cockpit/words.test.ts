@@ -1,7 +1,16 @@
 import { describe, expect, it } from 'vitest';
 import type { TapVerdict } from '#shared/pace/readout.ts';
 import { metres, metresPerSecond, seconds } from '#shared/units.ts';
-import { distanceText, durationText, errorText, holdWords, sideWord, toGoText, verdictWords } from '#src/cockpit/view/words.ts';
+import {
+  distanceText,
+  durationText,
+  errorText,
+  holdWords,
+  noReturnWords,
+  sideWord,
+  toGoText,
+  verdictWords,
+} from '#src/cockpit/view/words.ts';
 import { sureText } from '#src/components/sure-text.ts';
 
 const tap = (change: Partial<TapVerdict>): TapVerdict => ({
@@ -51,6 +60,11 @@ describe('words of the cockpit', () => {
     expect(holdWords({ kind: 'cannot be made up', by: seconds(3.24), speed }).join(' ')).toBe('cannot be made up, 3.2 s short');
     expect(holdWords({ kind: 'cannot be given back', by: seconds(0.5), speed }).join(' ')).toBe('cannot be given back, 0.5 s over');
     expect(holdWords({ kind: 'none' })).toEqual([]);
+  });
+
+  it('says for how long the present speed may still be held', () => {
+    expect(noReturnWords({ noReturn: { at: metres(28_100), in: seconds(41.6) } })).toBe('at this speed late for good in 42 s');
+    expect(noReturnWords({ noReturn: null })).toBe('');
   });
 
   it('says what became of a touch', () => {
