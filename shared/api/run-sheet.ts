@@ -20,6 +20,22 @@ const legRowSchema = z.object({
   scaleKept: z.string().nullable(),
 });
 
+const tapRowSchema = z.object({
+  seq: z.number(),
+  checkpoint: z.string().nullable(),
+  verdict: z.enum(['provisional', 'used', 'doubted', 'no place near', 'repeated', 'voided']),
+  movedM: z.number(),
+  figures: z
+    .object({
+      input: z.enum(['glass', 'wired']),
+      misfitM: z.number(),
+      varianceM2: z.number(),
+      surveySigmaM: z.number(),
+      speed: z.number(),
+    })
+    .exactOptional(),
+});
+
 /** The story of a run afterwards. Metres, seconds (positive = late), millimetres per pulse. */
 export const runSheetSchema = z.object({
   engine: z.string(),
@@ -35,7 +51,7 @@ export const runSheetSchema = z.object({
   shown: z.object({ engine: z.string(), elapsedS: z.number(), timeErrorS: z.number(), agrees: z.boolean() }).nullable(),
   trace: z.array(z.object({ d: z.number(), elapsedS: z.number(), timeErrorS: z.number(), plannedS: z.number(), speed: z.number() })),
   stops: z.array(z.object({ fromS: z.number(), toS: z.number().nullable(), d: z.number() })),
-  taps: z.array(z.object({ seq: z.number(), checkpoint: z.string().nullable(), verdict: z.string(), movedM: z.number() })),
+  taps: z.array(tapRowSchema),
   aidsUsed: z.array(z.enum(['wheel', 'gnss speed', 'gnss position'])),
   pulses: z.number(),
   observations: z.number(),

@@ -80,7 +80,7 @@ function verdictAt(tap: TapAct, checkpoint: string | null, misfit: (Misfit & { s
     checkpoint,
     input: tap.input,
     misfit: misfit?.moved ?? 0,
-    variance: misfit?.variance ?? 0,
+    variance: misfit === null ? 0 : misfit.variance - misfit.own,
     surveySigma: misfit?.surveySigma ?? 0,
     speed: tap.raw?.v ?? 0,
   };

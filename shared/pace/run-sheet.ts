@@ -1,3 +1,5 @@
+import type { DerivedTap } from '#shared/pace/run-state.ts';
+
 /** The story of a run afterwards, told by leg. Plain JSON: metres, seconds (positive = late), mm per pulse. */
 export interface RunSheet {
   readonly engine: string;
@@ -22,13 +24,29 @@ export interface RunSheet {
     readonly speed: number;
   }[];
   readonly stops: readonly { readonly fromS: number; readonly toS: number | null; readonly d: number }[];
-  readonly taps: readonly { readonly seq: number; readonly checkpoint: string | null; readonly verdict: string; readonly movedM: number }[];
+  readonly taps: readonly TapRow[];
   readonly aidsUsed: readonly ('wheel' | 'gnss speed' | 'gnss position')[];
   readonly pulses: number;
   readonly observations: number;
   /** Types this engine did not know: the result needs a newer Evenline. */
   readonly unknownTypes: readonly string[];
   readonly warnings: readonly string[];
+}
+
+export interface TapRow {
+  readonly seq: number;
+  readonly checkpoint: string | null;
+  readonly verdict: DerivedTap['verdict'];
+  readonly movedM: number;
+  /** What the navigator's lead and scatter are learnt from. Left out by engines before 2.0. */
+  readonly figures?: {
+    readonly input: DerivedTap['input'];
+    /** Official less believed, m, and the variance of what was believed, m². */
+    readonly misfitM: number;
+    readonly varianceM2: number;
+    readonly surveySigmaM: number;
+    readonly speed: number;
+  };
 }
 
 export interface LegRow {

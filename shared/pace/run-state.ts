@@ -8,7 +8,7 @@ import { makePlanMemory, type PlanMemory } from '#shared/pace/plan-memory.ts';
 import type { Raw } from '#shared/pace/track.ts';
 
 /** Raised whenever the same journal may lead to other figures. */
-export const ENGINE_VERSION = '1.1.0';
+export const ENGINE_VERSION = '2.0.0';
 
 /**
  * Everything a run knows: plain data (arrays, objects, numbers, text, booleans, null), so that it can be stored as JSON and
@@ -125,7 +125,7 @@ export interface DerivedTap {
   readonly checkpoint: string | null;
   readonly verdict: 'provisional' | 'used' | 'doubted' | 'no place near' | 'repeated' | 'voided';
   readonly input: TapV1['input'];
-  /** Official less believed, m, and its variance with the tap's own, m²; the survey's sigma, m; speed at the touch, m/s. 0 where nothing was compared. */
+  /** Official less believed, m; variance of the believed distance, the lead's part included, m²; the survey's sigma, m; speed at the touch, m/s. 0 where nothing was compared. */
   readonly misfit: number;
   readonly variance: number;
   readonly surveySigma: number;

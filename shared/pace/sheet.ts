@@ -1,8 +1,8 @@
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { CourseModel, Place } from '#shared/pace/course-model.ts';
 import { anchorAt, distanceOf } from '#shared/pace/distance.ts';
-import type { LegRow, RunSheet } from '#shared/pace/run-sheet.ts';
-import { modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
+import type { LegRow, RunSheet, TapRow } from '#shared/pace/run-sheet.ts';
+import { type DerivedTap, modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
 import { targetTimeAt } from '#shared/pace/schedule.ts';
 import { sheetWarnings } from '#shared/pace/sheet-warnings.ts';
 import { finishPoint } from '#shared/pace/situation.ts';
@@ -28,7 +28,7 @@ export function sheetOf(state: RunState, header: RunHeader): RunSheet {
     shown: shownOf(state, finish),
     trace: traceOf(state, model),
     stops: acts.stops.map((stop) => stopRow(state, stop)),
-    taps: derived.taps.map((t) => ({ seq: t.seq, checkpoint: t.checkpoint, verdict: t.verdict, movedM: t.moved })),
+    taps: derived.taps.map(tapRow),
     aidsUsed: [
       ...(odometer.usedWheel ? (['wheel'] as const) : []),
       ...(odometer.usedGnssSpeed ? (['gnss speed'] as const) : []),
@@ -40,6 +40,14 @@ export function sheetOf(state: RunState, header: RunHeader): RunSheet {
     warnings: sheetWarnings(state, model),
   };
 }
+
+const tapRow = (t: DerivedTap): TapRow => ({
+  seq: t.seq,
+  checkpoint: t.checkpoint,
+  verdict: t.verdict,
+  movedM: t.moved,
+  figures: { input: t.input, misfitM: t.misfit, varianceM2: t.variance, surveySigmaM: t.surveySigma, speed: t.speed },
+});
 
 function legRow(state: RunState, model: CourseModel, place: Place, passing: PlacePassing): LegRow {
   const { startAt } = state.derived;

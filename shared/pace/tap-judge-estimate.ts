@@ -23,8 +23,8 @@ export function estimateJudge({ state, anchors, tap, raw }: TapAt): TapJudge {
     grown: here.belief.covariance[0] as number,
     scale: scaleOf(here),
     misfit(place) {
-      const { misfit, variance } = tapMisfit(here, tapAt(place));
-      return { moved: misfit, variance };
+      const { misfit, variance, own } = tapMisfit(here, tapAt(place));
+      return { moved: misfit, variance, own };
     },
     take(place, story) {
       const placeOnly = place.checkpoint.duty === 'place';

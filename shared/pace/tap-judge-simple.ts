@@ -18,7 +18,10 @@ export function simpleJudge({ state, anchors, tap, raw }: TapAt): TapJudge {
     measured,
     grown,
     scale: anchor.mmPerPulse,
-    misfit: (place) => ({ moved: place.d - measured, variance: grown + sigmaAt(place.surveySigma) ** 2 + PULSE_VARIANCE }),
+    misfit(place) {
+      const own = sigmaAt(place.surveySigma) ** 2 + PULSE_VARIANCE;
+      return { moved: place.d - measured, variance: grown + own, own };
+    },
     take(place, story) {
       const at = Math.round(tap.t);
       const d = place.d + seat;

@@ -21,9 +21,10 @@ export interface TapJudge {
 }
 
 export interface Misfit {
-  /** Official less believed, m; and its variance with the tap's own, m². */
+  /** Official less believed, m; its variance, m²; and how much of that is this tap's own (hand and survey). */
   readonly moved: number;
   readonly variance: number;
+  readonly own: number;
 }
 
 export interface Taken {

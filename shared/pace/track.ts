@@ -79,6 +79,15 @@ function pushTrace({ trace, perCount }: Track, at: number, w: number, g: number)
   trace.u.push(0);
   trace.cold.push(COLD);
   if (last >= 0) sumHeat(trace, last + 1, perCount);
+  if (trace.at.length > MOST_TRACED) thin(trace);
+}
+
+/** Four and a half hours of driving; a longer trace keeps every other knot of its older half, so that memory stays bounded. */
+const MOST_TRACED = 65_536;
+
+function thin(trace: Trace): void {
+  const kept = (_: number, i: number): boolean => i >= MOST_TRACED / 2 || i % 2 === 0;
+  for (const column of ['at', 'w', 'g', 'h', 'u', 'cold'] as const) trace[column] = trace[column].filter(kept);
 }
 
 /** Coldness and sums of one knot of the trace, from the knot before. */
