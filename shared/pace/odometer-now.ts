@@ -1,5 +1,6 @@
 import { SURELY_MOVING } from '#shared/pace/gnss.ts';
 import type { Odometer } from '#shared/pace/odometer.ts';
+import { carriedThrough } from '#shared/pace/pulse-gap.ts';
 import { type Counts, rateNow } from '#shared/pace/track.ts';
 
 /** The odometer between records: carried forward, as long as that is honest. */
@@ -36,15 +37,20 @@ function gnssNow(o: Odometer, at: number, age: number): Now {
   return { w: o.w, g: o.g + (speed * Math.min(age, CARRY_US)) / 1e6, speed, source: 'gnss' };
 }
 
+/** Last record of the wheel that measures now. */
+const heardAt = ({ wheel, second }: Odometer): number => (second.standing === null ? wheel.at : second.channel.at);
+
 function wheelNow(o: Odometer, at: number, age: number, metresPerPulse: number): Now {
-  const { wheel, g, w } = o;
+  const { g, w } = o;
+  if (o.gap.phase !== 'steady' && o.second.standing === null) return gapNow(o, at, metresPerPulse);
   const rate = rateNow(o.track);
   const speed = rate * metresPerPulse;
   const steps = (rate * age) / 1e6;
-  if (at - wheel.at > FRESH_US) return quietWheel(o, at, age, rate, speed);
+  const heard = heardAt(o);
+  if (at - heard > FRESH_US) return quietWheel(o, at, age, rate, speed);
   // alive and unchanged: the next pulse has not come, so the car is less than one pulse further
-  if (wheel.at > o.wheelKnot.at) {
-    const unchanged = (wheel.at - o.wheelKnot.at) / 1e6;
+  if (heard > o.wheelKnot.at) {
+    const unchanged = (heard - o.wheelKnot.at) / 1e6;
     const most = unchanged < BRIEF_S ? rate : Math.sign(rate) * Math.min(Math.abs(rate), 1 / unchanged);
     return { w: w + clampStep(steps), g, speed: most * metresPerPulse, source: 'wheel' };
   }
@@ -52,14 +58,30 @@ function wheelNow(o: Odometer, at: number, age: number, metresPerPulse: number):
   return { w: w + carried, g, speed, source: 'wheel' };
 }
 
+/** The count fell short of what any braking explains: on at the last speed, or at rest where GNSS says so. */
+function gapNow(o: Odometer, at: number, metresPerPulse: number): Now {
+  const { g, w, gap } = o;
+  const rest = restBy(o, at);
+  if (rest !== null) return { w, g, speed: rest, source: 'wheel' };
+  if (gap.phase === 'lost' || at - gap.at > CARRY_US + FRESH_US) return { w, g, speed: null, source: 'none' };
+  const through = w - o.wheelKnot.total + gap.total + carriedThrough(gap, at);
+  return { w: Math.max(w, through), g, speed: gap.rate * metresPerPulse, source: 'wheel' };
+}
+
+/** Speed where GNSS says that the car hardly moves, else null. */
+function restBy({ gnss }: Odometer, at: number): number | null {
+  const fix = gnss.recent[gnss.recent.length - 1];
+  if (fix === undefined || at - fix.at > GNSS_FRESH_US || fix.speed > SURELY_MOVING) return null;
+  return fix.speed < AT_REST ? 0 : fix.speed;
+}
+
 /** No record for a second: a box that only speaks when the wheel turns is standing still, if it was slow or GNSS says so. */
 function quietWheel(o: Odometer, at: number, age: number, rate: number, speed: number): Now {
-  const { g, w, wheel, wheelKnot } = o;
+  const { g, w, wheelKnot } = o;
   const standing: Now = { w: w + clampStep((rate * age) / 1e6), g, speed: 0, source: 'wheel' };
-  if (Math.abs(speed) <= CARRY_SPEED || wheel.at - wheelKnot.at > FRESH_US) return standing;
-  const fix = o.gnss.recent[o.gnss.recent.length - 1];
-  if (fix !== undefined && at - fix.at <= GNSS_FRESH_US && fix.speed <= SURELY_MOVING)
-    return { ...standing, speed: fix.speed < AT_REST ? 0 : fix.speed };
+  if (Math.abs(speed) <= CARRY_SPEED || heardAt(o) - wheelKnot.at > FRESH_US) return standing;
+  const rest = restBy(o, at);
+  if (rest !== null) return { ...standing, speed: rest };
   const source = age <= CARRY_US ? 'wheel' : 'none';
   return { w: w + (rate * Math.min(age, CARRY_US)) / 1e6, g, speed: null, source };
 }

@@ -7,13 +7,14 @@ import { rolledThrough, startGate } from '#shared/pace/derive-start.ts';
 import { distanceOf } from '#shared/pace/distance.ts';
 import { takeGnss } from '#shared/pace/gnss-source.ts';
 import { changeCourse } from '#shared/pace/grid-changes.ts';
-import { type OdometerChange, takePulse } from '#shared/pace/odometer.ts';
+import type { OdometerChange } from '#shared/pace/odometer.ts';
 import { modelOf, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
 import { soundness } from '#shared/pace/sound.ts';
 import { surveyedOf } from '#shared/pace/surveyed.ts';
 import { addTap, pressButton, rewriteTaps, settleTaps } from '#shared/pace/taps.ts';
 import { knotAt } from '#shared/pace/track.ts';
 import { beginAnew } from '#shared/pace/wheel.ts';
+import { takePulse } from '#shared/pace/wheel-source.ts';
 import { never } from '#shared/result.ts';
 
 /**
@@ -41,7 +42,7 @@ function take(state: RunState, o: Observation): boolean {
   const { acts, pack } = state;
   switch (o.type) {
     case 'pulse.v1':
-      return takeChange(state, takePulse(state.odometer, o, pack.wheel.channel, pack.raceClass.aids, nominalMetres(state)));
+      return takeChange(state, takePulse(state.odometer, o, pack.wheel, pack.raceClass.aids, nominalMetres(state)));
     case 'fix.v1':
       return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now, nominalMetres(state), surveyedOf(state)));
     case 'button.v1':
@@ -72,6 +73,7 @@ function gainWheel(state: RunState, sensor: string): void {
   state.acts.sensorLostAt = null;
   if (state.wheelSensor !== null && state.wheelSensor !== sensor) {
     beginAnew(state.odometer.wheel);
+    beginAnew(state.odometer.second.channel);
     state.buttons = {};
   }
   state.wheelSensor = sensor;

@@ -79,7 +79,9 @@ describe('first movement', () => {
   });
 
   it('a stop on the road later is not the start', () => {
-    const motion: Motion = { metresAt: (t) => fromRest(2.5, 40, 0.4).metresAt(Math.min(t, 60)) + fromRest(2.5, 40, 100).metresAt(t) };
+    // at 40 m/s until 55 s, then 8 m/s² down to rest at 60 s
+    const stop = (t: number): number => fromRest(2.5, 40, 0.4).metresAt(Math.min(t, 60)) - 4 * Math.max(0, Math.min(t, 60) - 55) ** 2;
+    const motion: Motion = { metresAt: (t) => stop(t) + fromRest(2.5, 40, 100).metresAt(t) };
     const sheet = sheetOf(pack, journal(...drive(motion, 160)));
     expect(sheet.reactionS).toBeCloseTo(0.4, 1);
     expect(leg(sheet, 'settle').elapsedS).toBeCloseTo(instantOf(motion, 4_000), 1);

@@ -1,0 +1,127 @@
+import type { Aids } from '#shared/course/race-class.ts';
+import type { PulseV1 } from '#shared/journal/observation.ts';
+import { gnssMetresAt, SURELY_MOVING } from '#shared/pace/gnss.ts';
+import { handBack, noteGnss } from '#shared/pace/gnss-source.ts';
+import type { Odometer, OdometerChange } from '#shared/pace/odometer.ts';
+import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
+import { restartGap, watchGap } from '#shared/pace/pulse-gap.ts';
+import { returnToFirst, takeSecond } from '#shared/pace/second-wheel.ts';
+import { rateNow } from '#shared/pace/track.ts';
+import { beginAnew, takeRecord } from '#shared/pace/wheel.ts';
+
+/** The wheel as the source of distance: its count, what it missed, and the second wheel beside it. */
+
+/** Unchanged for longer than this is a rest. */
+const RESTED_US = 700_000;
+const GNSS_FRESH_US = 1_500_000;
+
+export interface WheelChannels {
+  /** The measuring one, and another to compare with. */
+  readonly channel: number;
+  readonly secondChannel?: number;
+}
+
+/** Takes a record of a wheel channel; the measuring one counts. */
+export function takePulse(
+  o: Odometer,
+  pulse: PulseV1,
+  { channel, secondChannel }: WheelChannels,
+  aids: Aids,
+  metresPerPulse: number,
+): OdometerChange {
+  if (!aids.wheel) return UNREMARKABLE;
+  if (pulse.channel === channel) return takeFirst(o, pulse, metresPerPulse);
+  if (pulse.channel === secondChannel) return takeSecond(o, pulse, metresPerPulse);
+  o.otherRecords++;
+  return UNREMARKABLE;
+}
+
+function takeFirst(o: Odometer, pulse: PulseV1, metresPerPulse: number): OdometerChange {
+  const { wheel } = o;
+  const { at: before, total } = wheel;
+  // the second stood in and GNSS took over from it: what this one counted meanwhile is told already
+  if (o.mode === 'gnss' && o.second.standing !== null) {
+    o.second.standing = null;
+    beginAnew(wheel);
+  }
+  const verdict = takeRecord(wheel, pulse, metresPerPulse);
+  if (verdict === 'held' || verdict === 'stale') return UNREMARKABLE;
+  if (verdict === 'same' || verdict === 'moved') {
+    if (verdict === 'moved') o.usedWheel = true;
+    if (o.mode === 'wheel') return takeCount(o, before, wheel.total - total, metresPerPulse);
+    if (verdict === 'same') return UNREMARKABLE;
+  }
+  o.usedWheel = true;
+  restartGap(o.gap, wheel.at, wheel.total);
+  if (o.mode === 'gnss') return handBack(o, verdict, metresPerPulse);
+  if (verdict === 'restarted')
+    return o.second.standing === null ? restart(o, before, metresPerPulse) : returnToFirst(o, 0, false, metresPerPulse);
+  o.mode = 'wheel';
+  o.wheelKnot = { at: wheel.at, total: wheel.total };
+  return knot(o, wheel.at, o.w, o.g, metresPerPulse);
+}
+
+function takeCount(o: Odometer, before: number, step: number, metresPerPulse: number): OdometerChange {
+  const { wheel, gap } = o;
+  const help = o.second.standing !== null ? 'second' : gap.phase === 'open' && isAtRest(o) ? 'rest' : 'none';
+  const { at, total } = wheel;
+  const verdict = watchGap(gap, at, total, step, at - before, help, metresPerPulse);
+  if (verdict === 'hold') return UNREMARKABLE;
+  if (help === 'second') {
+    const isBack = verdict !== 'count' || (step !== 0 && gap.phase === 'steady' && gap.at === at);
+    return isBack ? returnToFirst(o, gap.rate, verdict !== 'found', metresPerPulse) : UNREMARKABLE;
+  }
+  if (verdict !== 'count') return fillGap(o, metresPerPulse);
+  if (step === 0) {
+    o.stillAt = at;
+    return UNREMARKABLE;
+  }
+  const pulses = total - o.wheelKnot.total;
+  // one pulse more may have been on its way all the time; several were not, and neither was one after a rest
+  if (Math.abs(pulses) > 1 || o.stillAt - o.wheelKnot.at > RESTED_US) keepStill(o);
+  o.wheelKnot.at = at;
+  o.wheelKnot.total = total;
+  return knot(o, at, o.w + pulses, o.g, metresPerPulse);
+}
+
+/** GNSS says that the car hardly moves. */
+function isAtRest({ gnss, wheel }: Odometer): boolean {
+  const fix = gnss.recent[gnss.recent.length - 1];
+  return fix !== undefined && fix.speed <= SURELY_MOVING && wheel.at - fix.at <= GNSS_FRESH_US;
+}
+
+/** The count of this record, what was held, and the pulses that were missed. */
+function fillGap(o: Odometer, metresPerPulse: number): OdometerChange {
+  const { wheel, fills } = o;
+  const { filled: missed, sigma } = o.gap;
+  const w = o.w + wheel.total - o.wheelKnot.total + missed;
+  if (missed > 0) {
+    fills.count++;
+    fills.metres += missed * metresPerPulse;
+    fills.at = wheel.at;
+  }
+  noteLoss(o, wheel.at, sigma * metresPerPulse);
+  o.wheelKnot.at = wheel.at;
+  o.wheelKnot.total = wheel.total;
+  return knot(o, wheel.at, w, o.g, metresPerPulse);
+}
+
+/** The box restarted between two records, or another took over: GNSS may know the gap, else only what it has counted since is known. */
+function restart(o: Odometer, before: number, metresPerPulse: number): OdometerChange {
+  const { wheel, gnss } = o;
+  const gap = (wheel.at - before) / 1e6;
+  const from = Math.max(before, o.wheelKnot.at);
+  const [g0, g1] = [gnssMetresAt(gnss, from), gnssMetresAt(gnss, wheel.at)];
+  const covered = gnss.recent.length > 1 && (gnss.recent[0] as { at: number }).at <= from && g0 !== null && g1 !== null;
+  const metres = covered ? Math.max(0, g1 - g0) : 0;
+  if (covered) noteGnss(o);
+  else noteLoss(o, wheel.at, Math.abs(rateNow(o.track)) * metresPerPulse * gap);
+  const w = covered ? o.w : o.w + (wheel.total - o.wheelKnot.total);
+  o.wheelKnot = { at: wheel.at, total: wheel.total };
+  return knot(o, wheel.at, w, o.g + metres, metresPerPulse);
+}
+
+/** A car that had not moved lost nothing. */
+function noteLoss(o: Odometer, at: number, sigma: number): void {
+  if (sigma > 0) o.losses.push({ at, sigma });
+}
