@@ -28,11 +28,12 @@ export function takeGnss(
   now: number,
   metresPerPulse: number,
   surveyed: Surveyed | null = null,
+  driven = false,
 ): OdometerChange {
   if (!takeFix(o.gnss, fix, aids, now)) return UNREMARKABLE;
   if (surveyed !== null && aids.gnssPosition) projectFix(o.secondLook.projected, fix, o.gnss, surveyed);
   const change = carryOn(o, metresPerPulse);
-  return lookAgain(o) ? { ...change, node: true } : change;
+  return lookAgain(o, { metresPerPulse, driven }) ? { ...change, node: true } : change;
 }
 
 function carryOn(o: Odometer, metresPerPulse: number): OdometerChange {

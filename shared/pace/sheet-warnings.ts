@@ -17,7 +17,8 @@ export function sheetWarnings(state: RunState, model: CourseModel): string[] {
   say(wheel.wild > 0, `${count(wheel.wild, 'wheel record')} did not follow from the others and ${were(wheel.wild)} dropped.`);
   say(wheel.restarts > 0, `The pulse box restarted ${times(wheel.restarts)}; its count went on from there.`);
   say(odometer.bridges > 0, `The wheel fell silent ${times(odometer.bridges)}; GNSS carried the distance on.`);
-  say(odometer.losses.length > 0, `Distance was lost ${times(odometer.losses.length)}: nothing measured it.`);
+  const unmeasured = odometer.losses.filter((loss) => loss.by !== 'slip').length;
+  say(unmeasured > 0, `Distance was lost ${times(unmeasured)}: nothing measured it.`);
   for (const { byMs } of clock.slept)
     lines.push(`The device's clocks came apart by ${Math.round(byMs)} ms: it slept, or its wall clock was set.`);
   const source = clock.chosen?.source;

@@ -1,6 +1,7 @@
 import { type GnssKnot, metresAtArrival, OUTAGE_US, SURELY_MOVING } from '#shared/pace/gnss.ts';
 import type { Odometer } from '#shared/pace/odometer.ts';
 import { makeProjectedFixes, type ProjectedFixes, positionAt } from '#shared/pace/projected-fixes.ts';
+import { compareSources, type WheelKind } from '#shared/pace/source-comparison.ts';
 import { NODE_US, type SourceNode } from '#shared/pace/source-node.ts';
 import { rawAt } from '#shared/pace/track.ts';
 
@@ -28,7 +29,7 @@ const MOVES = 1;
 const WAIT_US = 2_000_000;
 
 /** Looks at the fixes that both sources now reach; true when a node was made. */
-export function lookAgain(o: Odometer): boolean {
+export function lookAgain(o: Odometer, wheel: WheelKind): boolean {
   const { recent } = o.gnss;
   const look = o.secondLook;
   let i = recent.length;
@@ -36,6 +37,7 @@ export function lookAgain(o: Odometer): boolean {
   let made = false;
   for (; i < recent.length && isReached(o, recent[i] as GnssKnot); i++) {
     const fix = recent[i] as GnssKnot;
+    compareSources(o, fix, recent[i - 1], wheel);
     if (takeNode(o, fix, recent[i - 1])) made = true;
     look.seenAt = fix.at;
   }

@@ -7,6 +7,9 @@ import { pack, withClass } from '#tests/unit/pace/packs.ts';
 
 const motion = fromRest(2.5, 40, 0.4);
 const clock = [clockCheck(pack)];
+/** Sentences, and a tablet's own location, come this late where nothing tells how late they are. */
+const RECEIVER_S = 0.15;
+const TABLET_S = 0.6;
 const aids = (change: Partial<Aids>) => withClass(pack, { aids: { ...pack.raceClass.aids, ...change } });
 const between = (list: NewObservation[], from: number, to: number): NewObservation[] =>
   list.filter((o) => o.at > us(from) && o.at < us(to));
@@ -18,7 +21,7 @@ function positions(m: Motion, until: number, hz = 5): NewObservation[] {
   const list: NewObservation[] = [];
   for (let t = -5; t <= until; t += 1 / hz) {
     const lat = 45 + m.metresAt(t) / 111_131.745;
-    list.push({ type: 'fix.v1', at: us(t), via: 'nmea', lat, lon: 7, speed: null, course: null, accuracy: 3, utcMs: null });
+    list.push({ type: 'fix.v1', at: us(t + RECEIVER_S), via: 'nmea', lat, lon: 7, speed: null, course: null, accuracy: 3, utcMs: null });
   }
   return list;
 }
@@ -204,7 +207,7 @@ describe('the wheel falls silent', () => {
 });
 
 describe('what the class permits', () => {
-  const gnss = fixes(motion, { until: 200, hz: 5 });
+  const gnss = fixes(motion, { until: 200, hz: 5, latency: RECEIVER_S });
   const wheel = pulses(motion, { until: 200 });
 
   it('no wheel: GNSS speed measures, and the wheel is not used', () => {
@@ -238,7 +241,7 @@ describe('what the class permits', () => {
   });
 
   it('the tablet’s own location stays out while the receiver talks', () => {
-    const own = gnss.map((o) => ({ ...o, at: o.at + 100_000, via: 'geolocation' as const }) as NewObservation);
+    const own = gnss.map((o) => ({ ...o, at: o.at + us(TABLET_S - RECEIVER_S) - us(0), via: 'geolocation' as const }) as NewObservation);
     const p = aids({ wheel: false });
     const [a, b] = [look(p, journal(clock, gnss), [150]), look(p, journal(clock, gnss, own), [150])];
     expect(b[0]?.distance).toBe(a[0]?.distance);
@@ -258,8 +261,8 @@ describe('what the class permits', () => {
 describe('gnss gaps', () => {
   it('a short outage is bridged by the trapezoid, a long one by the straight line between positions', () => {
     const p = aids({ wheel: false });
-    const both = fixes(motion, { until: 300, hz: 2 }).map(
-      (o) => ({ ...o, lat: 45 + motion.metresAt((o.at - RELEASE_US) / 1e6) / 111_131.745, lon: 7 }) as NewObservation,
+    const both = fixes(motion, { until: 300, hz: 2, latency: RECEIVER_S }).map(
+      (o) => ({ ...o, lat: 45 + motion.metresAt((o.at - RELEASE_US) / 1e6 - RECEIVER_S) / 111_131.745, lon: 7 }) as NewObservation,
     );
     const [short] = look(p, journal(clock, outside(both, 100, 115)), [130]);
     const [long] = look(p, journal(clock, outside(both, 100, 160)), [200]);
@@ -272,7 +275,7 @@ describe('gnss gaps', () => {
   it('a tap settles on GNSS alone', () => {
     const p = aids({ wheel: false });
     const t = instantOf(motion, 4_000);
-    const sheet = sheetOf(p, journal(clock, fixes(motion, { until: 200, hz: 1 }), [tapAt(t)]));
+    const sheet = sheetOf(p, journal(clock, fixes(motion, { until: 200, hz: 1, latency: RECEIVER_S }), [tapAt(t)]));
     expect(leg(sheet, 'settle')).toMatchObject({ by: 'tap', scaleKept: 'settle' });
     expect(Math.abs(leg(sheet, 'settle').movedM as number)).toBeLessThan(1);
   });

@@ -1,0 +1,116 @@
+import { type Latency, rebase } from '#shared/pace/gnss-latency.ts';
+
+/**
+ * Does the wheel count what the car drives? GNSS's reading is held against what the wheel made of it since a mark some seconds
+ * ago. Counts too many: the wheel slips. Too few: it is locked, or pulses are lost. What differs follows GNSS, and teaches nothing.
+ */
+export interface SlipWatch {
+  /** Readings expected from some seconds ago on, by the wheel alone; the older one judges. */
+  marks: Mark[];
+  /** Slipping or losing now: since when, metres to be added to the wheel's so far, samples in a row without more. */
+  active: { from: number; metres: number; quiet: number } | null;
+  /** What is over. */
+  done: Slip[];
+}
+
+export interface Slip {
+  readonly from: number;
+  readonly to: number;
+  /** Driven less counted, metres: negative where the wheel slipped. */
+  readonly metres: number;
+}
+
+interface Mark {
+  readonly at: number;
+  /** Speed and the expected reading's variance then. */
+  readonly v: number;
+  readonly variance: number;
+  /** Expected reading now, and nominal metres by the wheel since. */
+  reading: number;
+  wheel: number;
+  /** Variance gathered since, m². */
+  gathered: number;
+}
+
+export const makeSlipWatch = (): SlipWatch => ({ marks: [], active: null, done: [] });
+
+/** A mark judges until it is twice this old, µs. */
+const MARK_US = 3_000_000;
+const GATE = 4;
+/** Less than this is not worth the word, m. */
+const LEAST_M = 1.2;
+/** Samples in a row that agree end it. */
+const QUIET = 3;
+const AGREES = 2.5;
+/** More than this in one look is no slip: one of the two is broken, and what to believe is not decided here. */
+const MOST_M = 60;
+
+/** Carries the marks on by what the wheel says, m, and the variance it and GNSS gathered. */
+export function carryMarks(watch: SlipWatch, expected: number, wheel: number, gathered: number): void {
+  for (const mark of watch.marks) {
+    mark.reading += expected;
+    mark.wheel += wheel;
+    mark.gathered += gathered;
+  }
+}
+
+/** A new mark, and the oldest dropped. `variance`: of the reading expected here. */
+function setMark(watch: SlipWatch, at: number, reading: number, v: number, variance: number): void {
+  watch.marks.push({ at, v, variance, reading, wheel: 0, gathered: 0 });
+  if (watch.marks.length > 2) watch.marks.shift();
+}
+
+/** Forgets the past: from here on the two agree by definition. */
+export function restartMarks(watch: SlipWatch, at: number, reading: number, v: number, variance: number): void {
+  watch.marks = [];
+  setMark(watch, at, reading, v, variance);
+}
+
+/** One reading. */
+export interface Reading {
+  readonly at: number;
+  readonly reading: number;
+  readonly v: number;
+  /** Its noise against the wheel, m². */
+  readonly noise: number;
+}
+
+/** Metres to be added to the wheel's from here on, with one sigma; null where the two agree. */
+export function judge(watch: SlipWatch, f: Latency, r: Reading): { readonly metres: number; readonly sigma: number } | null {
+  const mark = watch.marks[0];
+  if (mark === undefined) return null;
+  const off = r.reading - mark.reading;
+  const variance = mark.variance + mark.gathered + r.noise + mark.wheel * mark.wheel * f.p[3] + (r.v - mark.v) ** 2 * f.p[5];
+  const sigma = Math.sqrt(variance);
+  if (watch.active === null) {
+    const last = watch.marks[watch.marks.length - 1] as Mark;
+    if (Math.abs(off) <= Math.max(GATE * sigma, LEAST_M)) {
+      if (r.at - last.at >= MARK_US) setMark(watch, r.at, f.reading, r.v, f.p[0]);
+      return null;
+    }
+    watch.active = { from: mark.at, metres: 0, quiet: 0 };
+    doubtRatio(f, off, mark.wheel);
+  } else watch.active.quiet = Math.abs(off) <= AGREES * sigma ? watch.active.quiet + 1 : 0;
+  rebase(f, r.reading, r.noise);
+  restartMarks(watch, r.at, r.reading, r.v, r.noise);
+  const { active } = watch;
+  const metres = Math.abs(off) > MOST_M ? 0 : off;
+  active.metres += metres;
+  if (active.quiet >= QUIET) finish(watch, r.at);
+  return { metres, sigma };
+}
+
+/** It is over, or can no longer be told. */
+export function finish(watch: SlipWatch, at: number): void {
+  const { active } = watch;
+  if (active === null) return;
+  watch.done.push({ from: active.from, to: at, metres: active.metres });
+  watch.active = null;
+}
+
+/** What looks like a slip and goes on is another ratio: it may be learnt again afterwards. */
+function doubtRatio(f: Latency, off: number, wheel: number): void {
+  const share = wheel > 1 ? off / wheel / 2 : 0;
+  f.p[3] = Math.max(f.p[3], Math.min(share * share, 1e-4));
+  f.p[4] = 0;
+}
