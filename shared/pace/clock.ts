@@ -1,104 +1,138 @@
-import type { ClockPairV1, ClockV1, EpochV1 } from '#shared/journal/observation.ts';
+import type { ClockV1 } from '#shared/journal/observation.ts';
+import { type ClockFilter, type ClockSource, clockEstimate, RATE_WALK, UNKNOWN_RATE, WARMTH } from './clock-filter.ts';
+import { makePpsEdges, type PpsEdges } from './clock-pps.ts';
 
-/** Which clock sample the run trusts. Official unix ms at an instant = at/1000 + offset. */
+/**
+ * The official clock of the run. Samples of every source go into one filter; what the run goes by is `chosen`, a line that follows
+ * the filter until the release and stands from then on, save where the filter has become clearly surer than the line: so the
+ * instant of the start does not wander during the run. A wall clock that is set does nothing to either.
+ */
 export interface Clock {
-  /** The chosen sample; null before any. */
+  /** The line in force; null before any sample. */
   chosen: ClockChoice | null;
   /** Clock samples of any kind seen so far. */
   samples: number;
-  /** What page lives added to the uncertainty since the sample was taken, ms². */
+  /** Null before the first sample that can be checked against the officials. */
+  filter: ClockFilter | null;
+  pps: PpsEdges;
+  /** Which kinds of source have been believed. */
+  heard: { tap: boolean; server: boolean; receiver: boolean };
+  /** Samples that were not believed: by how much, how often in a row, and whether that still stands. The last few. */
+  doubts: ClockDoubt[];
+  /** What page lives and sleeps added to the uncertainty since the line was chosen, ms². */
   bridgedVariance: number;
-  /** The page life that began last, and what bridging to it by a guess adds to that variance until the guess is replaced. */
-  life: { n: number; guessed: number } | null;
+  /** The page life that began last, and what bridging to it by a guess added, to the line and to the filter, until a better word. */
+  life: { n: number; guessed: number; guessedFilter: number } | null;
   pair: { mono: number; wall: number } | null;
   /** Instants at which the device's two clocks came apart (sleep, or a stepped wall clock), and by how many ms. */
   slept: { at: number; byMs: number }[];
+  /** The last of them while it may have been a sleep that nothing has mended yet. */
+  asleep: { at: number; byMs: number; box: number | null; added: number; addedFilter: number } | null;
+  /** Session less box, µs, at the last line of the box; null before any. */
+  box: number | null;
 }
 
+/** Official unix ms at an instant = at/1000 + offsetMs + rate·(at − this at). */
 export interface ClockChoice {
   readonly at: number;
   readonly offsetMs: number;
+  /** ms a second: official seconds are longer by it than the session's. */
+  readonly rate: number;
   readonly sigmaMs: number;
+  readonly cross: number;
+  readonly rateVariance: number;
   readonly source: ClockV1['source'] | 'device';
 }
 
-export const makeClock = (): Clock => ({ chosen: null, samples: 0, bridgedVariance: 0, life: null, pair: null, slept: [] });
+export interface ClockDoubt {
+  readonly source: ClockSource;
+  at: number;
+  byMs: number;
+  times: number;
+  open: boolean;
+}
 
-/** The device's crystal against the official clock, relative, per second of age. */
-const DRIFT = 1e-6;
-/** Nobody set the device's own clock for this job. ms, judgement. */
-const DEVICE_SIGMA_MS = 2000;
-const SLEPT_MS = 50;
+export const makeClock = (): Clock => ({
+  chosen: null,
+  samples: 0,
+  filter: null,
+  pps: makePpsEdges(),
+  heard: { tap: false, server: false, receiver: false },
+  doubts: [],
+  bridgedVariance: 0,
+  life: null,
+  pair: null,
+  slept: [],
+  asleep: null,
+  box: null,
+});
+
 /** During a run only a clearly better clock may take over. */
 const CLEARLY_BETTER = 0.5;
 
-/** checked against the officials / the device's wall clock by request / read at the page's birth. */
-const RANK: Readonly<Record<ClockChoice['source'], number>> = { exchange: 2, pps: 2, nmea: 2, tap: 2, wall: 1, device: 0 };
+/** Official unix ms at an instant of the session clock. */
+export const officialMsAt = ({ at, offsetMs, rate }: ClockChoice, instant: number): number =>
+  instant / 1000 + offsetMs + (rate * (instant - at)) / 1e6;
 
-/** One sigma of the official clock at an instant, ms: the sample's own, 1 ppm of its age, and what page lives added. */
+/** The session instant, microseconds, at which the official clock reads so. */
+export const instantOfOfficial = ({ at, offsetMs, rate }: ClockChoice, officialMs: number): number =>
+  at + ((officialMs - offsetMs - at / 1000) * 1000) / (1 + rate / 1000);
+
+/** Official seconds between two session instants. */
+export const officialSeconds = ({ chosen }: Clock, from: number, to: number): number =>
+  ((to - from) / 1e6) * (1 + (chosen === null ? 0 : chosen.rate / 1000));
+
+/**
+ * One sigma of the official clock at an instant, ms. While nothing is heard it grows with the age τ:
+ * σ² = σ_θ² + 2τP_θρ + τ²(σ_ρ² + (1 ppm)²) + qτ³/3, the sources' common errors being part of σ_θ; and what page lives added.
+ */
 export function clockSigmaMs(clock: Clock, at: number): number {
   const { chosen } = clock;
   if (chosen === null) return Number.POSITIVE_INFINITY;
-  return Math.sqrt(sampleVariance(chosen, at) + clock.bridgedVariance);
+  return Math.sqrt(holdoverVariance(chosen, (at - chosen.at) / 1e6) + clock.bridgedVariance);
 }
 
-function sampleVariance(sample: ClockChoice, at: number): number {
-  const drift = (DRIFT * Math.abs(at - sample.at)) / 1000;
-  return sample.sigmaMs * sample.sigmaMs + drift * drift;
+/** @param seconds since the line was fixed, either way. Never less for more of them. */
+export function holdoverVariance({ sigmaMs, cross, rateVariance }: ClockChoice, seconds: number): number {
+  const tau = Math.abs(seconds);
+  const grown = 2 * tau * Math.max(0, cross) + tau * tau * (rateVariance + WARMTH * WARMTH) + (RATE_WALK * tau ** 3) / 3;
+  return sigmaMs * sigmaMs + grown;
 }
 
-/** Offers a sample; true when it was chosen. `started`: the release has passed, so the choice is frozen but for a clearly better one. */
-export function offerClock(clock: Clock, o: ClockV1, now: number, started: boolean): boolean {
-  clock.samples++;
-  return consider(
-    clock,
-    { at: o.at, offsetMs: o.officialMs - o.at / 1000, sigmaMs: Math.abs(o.uncertaintyMs), source: o.source },
-    now,
-    started,
-  );
-}
-
-function consider(clock: Clock, sample: ClockChoice, now: number, started: boolean): boolean {
+/** The filter becomes the line in force where it may. */
+export function publish(clock: Clock, filter: ClockFilter, source: ClockSource | null, now: number, started: boolean): boolean {
+  const { offset, rate, variance, cross, rateVariance } = clockEstimate(filter);
+  const sigmaMs = Math.sqrt(variance);
   const { chosen } = clock;
-  if (chosen !== null) {
-    const [rank, best] = [RANK[sample.source], RANK[chosen.source]];
-    if (rank < best) return false;
-    const [sigma, sigmaBest] = [Math.sqrt(sampleVariance(sample, now)), clockSigmaMs(clock, now)];
-    const wins = started ? sigma < CLEARLY_BETTER * sigmaBest : rank > best || sigma < sigmaBest;
-    if (!wins) return false;
-  }
-  clock.chosen = sample;
-  clock.bridgedVariance = 0;
-  if (clock.life !== null) clock.life.guessed = 0;
+  if (started && chosen !== null && sigmaMs >= CLEARLY_BETTER * clockSigmaMs(clock, Math.max(now, filter.at))) return false;
+  const kept = chosen === null || chosen.source === 'wall' || chosen.source === 'device' ? 'nmea' : chosen.source;
+  choose(clock, { at: filter.at, offsetMs: offset, rate, sigmaMs, cross, rateVariance, source: source ?? kept });
   return true;
 }
 
-/** A page life began: its wall clock is the last resort, and bridging it to the last life has cost some certainty. */
-export function takeEpoch(clock: Clock, o: EpochV1, now: number, started: boolean): boolean {
-  clock.pair = { mono: o.mono, wall: o.wall };
-  if (o.bridgedBy !== 'first') bridge(clock, o);
-  return consider(clock, { at: o.at, offsetMs: o.wall - o.at / 1000, sigmaMs: DEVICE_SIGMA_MS, source: 'device' }, now, started);
+function choose(clock: Clock, choice: ClockChoice): void {
+  clock.chosen = choice;
+  clock.bridgedVariance = 0;
+  if (clock.life !== null) clock.life.guessed = 0;
+  clock.asleep = null;
 }
 
-/**
- * A life is first bridged by a wall clock or another page, then, once it is heard, by the box: the better word replaces the guess
- * for the same life. What the box says of a later sleep within that life is a gap of its own and adds up.
- */
-function bridge(clock: Clock, o: EpochV1): void {
-  const added = o.uncertaintyMs * o.uncertaintyMs;
-  const replaced = clock.life !== null && clock.life.n === o.n ? clock.life.guessed : 0;
-  clock.bridgedVariance = Math.max(0, clock.bridgedVariance - replaced) + added;
-  clock.life = { n: o.n, guessed: o.bridgedBy === 'wall' || o.bridgedBy === 'page' ? added : 0 };
-}
+const RANK = { wall: 1, device: 0 } as const;
 
-/** True when the device's monotonic and wall clock came apart by more than 50 ms since the last pair. */
-export function takeClockPair(clock: Clock, o: ClockPairV1): boolean {
-  const before = clock.pair;
-  clock.pair = { mono: o.mono, wall: o.wall };
-  if (before === null) return false;
-  const byMs = o.wall - before.wall - (o.mono - before.mono);
-  if (Math.abs(byMs) <= SLEPT_MS) return false;
-  clock.slept.push({ at: o.at, byMs });
+/** Only where nothing can be checked against the officials: the device's wall clock by request, or as read at the page's birth. */
+export function fallBack(
+  clock: Clock,
+  s: { readonly at: number; readonly offsetMs: number; readonly sigmaMs: number; readonly source: 'wall' | 'device' },
+  started: boolean,
+): boolean {
+  const { chosen } = clock;
+  if (chosen !== null) {
+    if (chosen.source !== 'wall' && chosen.source !== 'device') return false;
+    const [sigma, best] = [s.sigmaMs, clockSigmaMs(clock, s.at)];
+    const wins = started ? sigma < CLEARLY_BETTER * best : RANK[s.source] > RANK[chosen.source] || sigma < best;
+    if (!wins || RANK[s.source] < RANK[chosen.source]) return false;
+  }
+  choose(clock, { ...s, rate: 0, cross: 0, rateVariance: UNKNOWN_RATE ** 2 });
   return true;
 }
 

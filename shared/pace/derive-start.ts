@@ -1,3 +1,4 @@
+import { instantOfOfficial } from '#shared/pace/clock.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { firstBelief, firstTyres } from '#shared/pace/estimator.ts';
 import type { Launch } from '#shared/pace/launch.ts';
@@ -28,7 +29,7 @@ const ROLLING_VARIANCE = 25;
 export function releaseInstant(state: RunState): number | null {
   const { releaseMs } = state.changes;
   const { chosen } = state.clock;
-  return releaseMs === null || chosen === null ? null : Math.round((releaseMs - chosen.offsetMs) * 1000);
+  return releaseMs === null || chosen === null ? null : Math.round(instantOfOfficial(chosen, releaseMs));
 }
 
 /** The instant around which the start is looked for: the release, or the crew's own mark of the flag or beam, whichever is first. */

@@ -1,5 +1,5 @@
 import { bandOf } from '#shared/pace/band.ts';
-import { clockSigmaMs } from '#shared/pace/clock.ts';
+import { clockSigmaMs, officialMsAt } from '#shared/pace/clock.ts';
 import { zoneAt } from '#shared/pace/course-model.ts';
 import { startGate } from '#shared/pace/derive-start.ts';
 import { nextCheckpoint } from '#shared/pace/next-checkpoint.ts';
@@ -23,7 +23,7 @@ export function readoutAt(state: RunState, at: Micros): Readout {
       chosen === null
         ? null
         : {
-            now: unixMs(at / 1000 + chosen.offsetMs),
+            now: unixMs(officialMsAt(chosen, at)),
             sigma: seconds(clockSigmaMs(clock, at) / 1000),
             source: chosen.source,
             age: seconds((at - chosen.at) / 1e6),

@@ -105,6 +105,7 @@ export type Warning =
         | 'over-limit'
         | 'over-cap'
         | 'newer-evenline'
-        | 'slept';
+        | 'slept'
+        | 'clock-disagrees';
     }
   | { readonly code: 'checkpoint-missed'; readonly checkpoint: string };

@@ -21,6 +21,8 @@ export function sheetWarnings(state: RunState, model: CourseModel): string[] {
   say(unmeasured > 0, `Distance was lost ${times(unmeasured)}: nothing measured it.`);
   for (const { byMs } of clock.slept)
     lines.push(`The device's clocks came apart by ${Math.round(byMs)} ms: it slept, or its wall clock was set.`);
+  for (const { source, byMs, times } of clock.doubts)
+    lines.push(`${SOURCE[source]} contradicted the official clock by ${(byMs / 1000).toFixed(3)} s (${times} in a row).`);
   const source = clock.chosen?.source;
   say(source === undefined, 'No official clock was known.');
   say(source === 'wall' || source === 'device', "The official clock was never checked: the device's own was taken.");
@@ -35,6 +37,7 @@ export function sheetWarnings(state: RunState, model: CourseModel): string[] {
   return lines;
 }
 
+const SOURCE = { exchange: 'The server', nmea: 'The receiver’s time', pps: 'The pulse per second', tap: 'A set of touches' } as const;
 const count = (n: number, noun: string): string => `${n} ${noun}${n === 1 ? '' : 's'}`;
 const were = (n: number): string => (n === 1 ? 'was' : 'were');
 const times = (n: number): string => (n === 1 ? 'once' : `${n} times`);

@@ -1,4 +1,5 @@
 import type { RunHeader } from '#shared/journal/run-header.ts';
+import { officialSeconds } from '#shared/pace/clock.ts';
 import type { CourseModel, Place } from '#shared/pace/course-model.ts';
 import { anchorAt, distanceOf } from '#shared/pace/distance.ts';
 import type { LegRow, RunSheet, TapRow } from '#shared/pace/run-sheet.ts';
@@ -52,7 +53,7 @@ const tapRow = (t: DerivedTap): TapRow => ({
 function legRow(state: RunState, model: CourseModel, place: Place, passing: PlacePassing): LegRow {
   const { startAt } = state.derived;
   const skipped = passing.by !== 'tap' && state.acts.skipped.includes(place.checkpoint.id);
-  const elapsedS = passing.at === null || startAt === null ? null : (passing.at - startAt) / 1e6;
+  const elapsedS = passing.at === null || startAt === null ? null : officialSeconds(state.clock, startAt, passing.at);
   const targetS = targetTimeAt(model.schedule, place.d);
   return {
     checkpointId: place.checkpoint.id,
@@ -109,7 +110,7 @@ function traceOf(state: RunState, model: CourseModel): RunSheet['trace'] {
   return chosen.map((i) => {
     const at = trace.at[i] as number;
     const d = distanceOf(anchorAt(anchors, at) ?? first, knotAt(trace, i));
-    const elapsedS = (at - startAt) / 1e6;
+    const elapsedS = officialSeconds(state.clock, startAt, at);
     return {
       d,
       elapsedS,

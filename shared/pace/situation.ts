@@ -1,4 +1,4 @@
-import { clockSigmaMs } from '#shared/pace/clock.ts';
+import { clockSigmaMs, officialSeconds } from '#shared/pace/clock.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { startGate } from '#shared/pace/derive-start.ts';
 import { anchorAt, distanceAt, distanceOf, distanceVariance, scaleNow } from '#shared/pace/distance.ts';
@@ -55,7 +55,11 @@ export function situationAt(state: RunState, at: number): Situation {
   const finish = finishPoint(state, model);
   const phase = phaseAt(state, at, finish);
   const over = finish !== null && at >= finish.at;
-  const elapsed = over ? finish.elapsed : derived.startAt === null || at < derived.startAt ? null : (at - derived.startAt) / 1e6;
+  const elapsed = over
+    ? finish.elapsed
+    : derived.startAt === null || at < derived.startAt
+      ? null
+      : officialSeconds(state.clock, derived.startAt, at);
   return {
     at,
     model,
@@ -94,7 +98,7 @@ export function finishPoint(state: RunState, model: CourseModel): FinishPoint | 
   const { derived } = state;
   const passing = derived.passings[model.finishIndex];
   if (passing === undefined || passing.at === null || derived.startAt === null) return null;
-  const elapsed = (passing.at - derived.startAt) / 1e6;
+  const elapsed = officialSeconds(state.clock, derived.startAt, passing.at);
   return { at: passing.at, elapsed, timeError: elapsed - model.schedule.targetTime, sigma: finishSigma(state, model, passing, passing.at) };
 }
 

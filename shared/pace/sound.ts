@@ -20,7 +20,7 @@ const printed: Check = (v) =>
 const FIELDS: { readonly [T in Observation['type']]: Readonly<Record<string, Check>> } = {
   'pulse.v1': { channel: number, count: counter, boxUs: counter },
   'button.v1': { button: number, presses: counter },
-  'pps.v1': {},
+  'pps.v1': { boxUs: counter },
   'fix.v1': { via: oneOf('nmea', 'geolocation'), lat: numberOrNull, lon: numberOrNull, speed: numberOrNull },
   'sensor-gained.v1': { sensor: text },
   'sensor-lost.v1': { sensor: text },

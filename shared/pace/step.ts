@@ -1,6 +1,7 @@
 import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
 import { advise, isAdviceDue } from '#shared/pace/advice.ts';
-import { offerClock, takeClockPair, takeEpoch } from '#shared/pace/clock.ts';
+import { offerClock, takePps } from '#shared/pace/clock-hear.ts';
+import { hearBox, takeClockPair, takeEpoch } from '#shared/pace/clock-life.ts';
 import { derive } from '#shared/pace/derive.ts';
 import { appendNodes } from '#shared/pace/derive-node.ts';
 import { rolledThrough, startGate } from '#shared/pace/derive-start.ts';
@@ -42,6 +43,7 @@ function take(state: RunState, o: Observation): boolean {
   const { acts, pack } = state;
   switch (o.type) {
     case 'pulse.v1':
+      hearBox(state.clock, o.at, o.boxUs);
       return takeChange(state, takePulse(state.odometer, o, pack.wheel, pack.raceClass.aids, nominalMetres(state)));
     case 'fix.v1':
       return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now, nominalMetres(state), surveyedOf(state)));
@@ -50,7 +52,7 @@ function take(state: RunState, o: Observation): boolean {
     case 'clock.v1':
       return offerClock(state.clock, o, state.now, isReleased(state));
     case 'epoch.v1':
-      return takeEpoch(state.clock, o, state.now, isReleased(state));
+      return takeEpoch(state.clock, o, isReleased(state));
     case 'clock-pair.v1':
       takeClockPair(state.clock, o);
       return false;
@@ -61,6 +63,8 @@ function take(state: RunState, o: Observation): boolean {
       if (o.sensor !== 'geolocation') gainWheel(state, o.sensor);
       return false;
     case 'pps.v1':
+      hearBox(state.clock, o.at, o.boxUs);
+      return takePps(state.clock, o.at, state.now, isReleased(state));
     case 'note.v1':
       return false;
     default:

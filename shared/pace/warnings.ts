@@ -12,6 +12,8 @@ const WHEEL_SILENT_US = 2_000_000;
 const GNSS_SILENT_US = 3_000_000;
 /** How long the crew is told of clocks that came apart. */
 const SLEPT_US = 60_000_000;
+/** How long the crew is told that a source of the official clock contradicted the others. */
+const DISAGREES_US = 120_000_000;
 
 export function warningsAt(state: RunState, s: Situation): Warning[] {
   const warnings: Warning[] = [];
@@ -25,8 +27,10 @@ export function warningsAt(state: RunState, s: Situation): Warning[] {
   if (moving && s.speed !== null && zone !== null && s.speed > zone.limit + TOLERANCE) warnings.push({ code: 'over-limit' });
   if (moving && s.speed !== null && s.model.cap !== null && s.speed > s.model.cap + TOLERANCE) warnings.push({ code: 'over-cap' });
   if (state.unknownTypes.length > 0) warnings.push({ code: 'newer-evenline' });
-  const slept = state.clock.slept[state.clock.slept.length - 1];
-  if (slept !== undefined && s.at - slept.at < SLEPT_US) warnings.push({ code: 'slept' });
+  const { slept, asleep, doubts } = state.clock;
+  const last = slept[slept.length - 1];
+  if (asleep !== null || (last !== undefined && s.at - last.at < SLEPT_US)) warnings.push({ code: 'slept' });
+  if (doubts.some((d) => s.at - d.at < DISAGREES_US)) warnings.push({ code: 'clock-disagrees' });
   const missed = missedPlace(state, s);
   if (moving && missed !== null) warnings.push({ code: 'checkpoint-missed', checkpoint: missed });
   return warnings;

@@ -1,6 +1,6 @@
 import type { NewObservation } from '#shared/journal/observation.ts';
 import { aheadMs, type DeviceClocks, type SessionClock } from './clock.ts';
-import { type ExchangeResult, exchangeResult, exchangeSigma, leastDelay } from './official-clock.ts';
+import { type BestExchange, type ExchangeResult, exchangeResult, leastDelay } from './official-clock.ts';
 
 const EXCHANGES = 16;
 
@@ -9,7 +9,7 @@ export async function checkOfficialClock(
   ask: () => Promise<{ readonly t2: number; readonly t3: number } | null>,
   clocks: DeviceClocks,
   go: () => boolean,
-): Promise<ExchangeResult | null> {
+): Promise<BestExchange | null> {
   const results: ExchangeResult[] = [];
   for (let i = 0; i < EXCHANGES && go(); i++) {
     const t1 = clocks.mono();
@@ -22,7 +22,7 @@ export async function checkOfficialClock(
 }
 
 /** What the exchange says about now, to be journalled. A session clock that runs faster takes official time along with it. */
-export function clockSample({ offset, delay }: ExchangeResult, clock: SessionClock, clocks: DeviceClocks): NewObservation {
+export function clockSample({ offset, sigma }: BestExchange, clock: SessionClock, clocks: DeviceClocks): NewObservation {
   const mono = clocks.mono();
   const at = clock.at(mono);
   return {
@@ -30,6 +30,6 @@ export function clockSample({ offset, delay }: ExchangeResult, clock: SessionClo
     at,
     source: 'exchange',
     officialMs: mono + offset + aheadMs(at, clock.rate),
-    uncertaintyMs: exchangeSigma(delay),
+    uncertaintyMs: sigma,
   };
 }

@@ -3,7 +3,6 @@ import { type RunState, readout } from '#shared/pace/run.ts';
 import { fail, ok, type Result } from '#shared/result.ts';
 import type { SessionClock } from './clock.ts';
 import { checkOfficialClock, clockSample } from './clock-check.ts';
-import { exchangeSigma } from './official-clock.ts';
 import type { OpenRunOptions } from './open-run.ts';
 import type { RunEnvironment } from './run-environment.ts';
 import type { RunFailure } from './run-session-contract.ts';
@@ -41,7 +40,7 @@ export function createClockKeeper({ state, clock, exchangeTime, environment, act
     if (best === null || stopped) return fail(NO_CONNECTION);
     act(() => clockSample(best, clock, clocks));
     lastGood = clocks.mono();
-    return ok({ uncertaintyMs: exchangeSigma(best.delay) });
+    return ok({ uncertaintyMs: best.sigma });
   };
   const look = (): void => {
     if (exchangeTime !== undefined && clocks.mono() - lastGood >= AGAIN_AFTER_MS && permitted()) void check();

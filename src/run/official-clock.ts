@@ -17,15 +17,32 @@ export interface ExchangeResult {
   readonly delay: number;
 }
 
-export const exchangeResult = ({ t1, t2, t3, t4 }: Exchange): ExchangeResult => clockExchange(t1, t2, t3, t4);
-
-/** The exchange with the least delay, never a mean: a queue on the way makes a sample late, and only ever late. Null for none. */
-export function leastDelay(results: readonly ExchangeResult[]): ExchangeResult | null {
-  return results.reduce<ExchangeResult | null>((best, next) => (best === null || next.delay < best.delay ? next : best), null);
+/** The one believed of several, with one sigma of its offset. */
+export interface BestExchange extends ExchangeResult {
+  readonly sigma: number;
 }
+
+export const exchangeResult = ({ t1, t2, t3, t4 }: Exchange): ExchangeResult => clockExchange(t1, t2, t3, t4);
 
 /** The server's stamps are milliseconds, cut; nothing known through them is finer. */
 const FINEST_MS = 0.5;
+/** One sigma of what the two ways differ by, halved, over the round trip: 60 to 40. Judgement. */
+const ASYMMETRY = 0.1;
+/** What queues leave on the least of several round trips, over the mean excess and the root of their number. By simulation. */
+const QUEUE = 0.25;
+/** Fewer round trips say nothing about queues. */
+const TELLING = 4;
 
-/** One sigma of the offset, ms: the error is anywhere within half the delay, and evenly spread that is delay / sqrt(12). */
-export const exchangeSigma = (delay: number): number => Math.max(FINEST_MS, delay / Math.sqrt(12));
+/**
+ * The exchange with the least delay, never a mean: a queue on the way makes a sample late, and only ever late. Null for none.
+ * Its error lies within half the delay; evenly spread that is delay / sqrt(12), and no more is known from a few. Many show how far
+ * the queues reach: then what is left is the asymmetry of the way itself and a small share of the queues.
+ */
+export function leastDelay(results: readonly ExchangeResult[]): BestExchange | null {
+  const best = results.reduce<ExchangeResult | null>((least, next) => (least === null || next.delay < least.delay ? next : least), null);
+  if (best === null) return null;
+  const bound = best.delay / Math.sqrt(12);
+  const excess = results.reduce((sum, { delay }) => sum + delay - best.delay, 0) / results.length;
+  const likely = Math.hypot(ASYMMETRY * best.delay, (QUEUE * excess) / Math.sqrt(results.length));
+  return { ...best, sigma: Math.max(FINEST_MS, results.length < TELLING ? bound : Math.min(bound, likely)) };
+}

@@ -114,6 +114,8 @@ function warningText(warning: Warning, readout: Readout): string {
       return 'needs a newer Evenline';
     case 'slept':
       return 'the tablet slept';
+    case 'clock-disagrees':
+      return 'clocks disagree: check';
     case 'checkpoint-missed':
       return '';
   }

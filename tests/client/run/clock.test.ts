@@ -7,7 +7,7 @@ import type { ClockV1 } from '#shared/journal/observation.ts';
 import { micros } from '#shared/units.ts';
 import { type BoxSample, boxShift } from '#src/run/box-bridge.ts';
 import { createSessionClock, measureClockOffset } from '#src/run/clock.ts';
-import { exchangeResult, exchangeSigma, leastDelay } from '#src/run/official-clock.ts';
+import { exchangeResult, leastDelay } from '#src/run/official-clock.ts';
 import { must } from '#tests/client/storage/device.ts';
 import { Car } from './car.ts';
 import { Rig } from './rig.ts';
@@ -43,10 +43,14 @@ describe('the arithmetic of an exchange', () => {
     expect(leastDelay([])).toBeNull();
     const slow = { offset: 90, delay: 200 };
     const quick = { offset: 12, delay: 20 };
-    expect(leastDelay([slow, quick, { offset: 40, delay: 60 }])).toBe(quick);
-    // Evenly spread over ±10 ms: 20 / sqrt(12) = 5.7735.
-    expect(exchangeSigma(20)).toBeCloseTo(5.7735, 4);
-    expect(exchangeSigma(0)).toBe(0.5);
+    // Of three no more is known than the bound, evenly spread over ±10 ms: 20 / sqrt(12) = 5.7735.
+    const few = leastDelay([slow, quick, { offset: 40, delay: 60 }]);
+    expect(few).toMatchObject(quick);
+    expect(few?.sigma).toBeCloseTo(5.7735, 4);
+    expect(leastDelay([{ offset: 0, delay: 0 }])?.sigma).toBe(0.5);
+    // Sixteen show how far the queues reach: a tenth of the way itself, and a quarter of the mean queue of 4 ms over sqrt(16).
+    const many = Array.from({ length: 16 }, (_, i) => ({ offset: 0, delay: i === 0 ? 20 : 20 + (4 * 16) / 15 }));
+    expect(leastDelay(many)?.sigma).toBeCloseTo(Math.hypot(2, 0.25), 9);
   });
 });
 

@@ -208,15 +208,17 @@ describe('clock samples', () => {
     return lines(`GPZDA,${t.slice(11, 13)}${t.slice(14, 16)}${t.slice(17, 19)}.00,01,06,2026,00,00`);
   };
 
-  it('come from RMC and ZDA, at most one in ten seconds, on the least delay seen', () => {
+  it('come from RMC and ZDA, at once and then of windows of 10, 20, 40, 60 s, on the least delay seen', () => {
     const reader = createSentenceReader();
     const offsetMs = 40_000;
     // Sentence k leaves the receiver 150 ms after its second and is jittered by 0..60 ms more, never less.
-    const samples = Array.from({ length: 60 }, (_, k) => {
+    const samples = Array.from({ length: 140 }, (_, k) => {
       const jitter = (k * 37) % 61;
       return ofType(reader.push(bytesOf(zda(k)), (k * 1000 + offsetMs + 150 + jitter) * 1000), 'clock.v1');
     }).flat();
-    expect(samples).toHaveLength(6);
+    const gaps = samples.slice(1).map((s, i) => (s.at - (samples[i]?.at ?? 0)) / 1e6);
+    for (const [i, least] of [10, 20, 40, 60].entries()) expect(gaps[i]).toBeGreaterThanOrEqual(least);
+    for (const [i, most] of [12, 22, 42, 62].entries()) expect(gaps[i]).toBeLessThan(most);
     const errors = samples.map((s) => s.officialMs - (Date.UTC(2026, 5, 1, 12, 0, 0) + s.at / 1000 - offsetMs));
     for (const [i, sample] of samples.entries()) {
       expect(sample.source).toBe('nmea');
