@@ -5,7 +5,7 @@ import { ByteWriter } from './byte-writer.ts';
 import { crc32 } from './crc32.ts';
 import { JSON_TAG, readJsonRecord, writeJsonRecord } from './json-records.ts';
 import type { Observation, UnknownObservation } from './observation.ts';
-import { createPulseDecoder, createPulseEncoder, PULSE_TAG } from './pulse-records.ts';
+import { createPulseEncoder, PulseDecoder } from './pulse-records.ts';
 
 /**
  * A block: the row of the database, the frame of the mirror, the unit of upload. Layout in FORMAT.md.
@@ -88,11 +88,14 @@ export function decodeBlock(bytes: Uint8Array, offset = 0): Result<Block, BlockF
   const format = bytes[offset + 2];
   if (format !== BLOCK_FORMAT) return fail(blockFault('newer-format', offset, firstSeq, `block format ${String(format)}`));
   const reader = new ByteReader(bytes, offset + HEADER_BYTES, nextOffset - CRC_BYTES);
-  const pulses = createPulseDecoder(reader);
+  const pulses = new PulseDecoder();
   const observations: Journalled[] = [];
-  for (let seq = firstSeq; seq < firstSeq + count; seq++) {
+  while (observations.length < count) {
+    pulses.readRun(reader, firstSeq + observations.length, firstSeq + count, observations);
+    if (observations.length === count) break;
+    const seq = firstSeq + observations.length;
     const tag = reader.byte();
-    const observation = tag >= PULSE_TAG ? pulses.read(tag, seq) : tag === JSON_TAG ? readJsonRecord(bytes, reader, seq) : null;
+    const observation = tag === JSON_TAG ? readJsonRecord(bytes, reader, seq) : null;
     if (observation === null || reader.short) {
       return fail(blockFault('bad-record', offset, seq, `observation ${seq} (record kind ${tag}) cannot be read`));
     }

@@ -1,7 +1,7 @@
 /** Reads what `ByteWriter` wrote. Running past the end never throws: `short` becomes and stays true. */
 export class ByteReader {
-  private readonly bytes: Uint8Array;
-  private readonly end: number;
+  readonly bytes: Uint8Array;
+  readonly end: number;
   private position: number;
 
   constructor(bytes: Uint8Array, from: number, end: number) {
@@ -62,6 +62,10 @@ export class ByteReader {
 
   skip(length: number): void {
     this.position += length;
+  }
+
+  moveTo(position: number): void {
+    this.position = position;
   }
 }
 

@@ -27,7 +27,8 @@ export function readJsonRecord(bytes: Uint8Array, reader: ByteReader, seq: numbe
   if (typeof value !== 'object' || value === null) return null;
   const { at, type } = value as { readonly at?: unknown; readonly type?: unknown };
   if (typeof type !== 'string' || !Number.isSafeInteger(at)) return null;
-  return upcast({ ...value, seq, at: at as number, type });
+  // fresh from the text, so that it may be numbered in place
+  return upcast(Object.assign(value, { seq, at: at as number, type }));
 }
 
 function parsed(text: string): unknown {
