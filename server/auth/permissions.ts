@@ -26,6 +26,7 @@ const table = {
   'release.set': { team: PREPARERS, event: ['organiser', 'timekeeper'], grant: false },
   // A pack holds the team's own places: no office of the event may load it.
   'pack.load': { team: PREPARERS, event: [], grant: false },
+  'cockpit-settings.set': { team: PREPARERS, event: [], grant: false },
   'runs.read': { team: EVERYONE, event: [], grant: false },
   // Any member may hold the tablet after the finish; what it adds can only be added.
   'run.upload': { team: EVERYONE, event: [], grant: true },

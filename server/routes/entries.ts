@@ -1,9 +1,20 @@
+import { setCockpitSettings } from '#server/services/entries/set-cockpit-settings.ts';
 import { setCountingRun } from '#server/services/entries/set-counting-run.ts';
 import { revokeGrants } from '#server/services/packs/revoke-grants.ts';
-import { setCountingRunRequestSchema } from '#shared/api/entries.ts';
+import { cockpitSettingsRequestSchema, setCountingRunRequestSchema } from '#shared/api/entries.ts';
 import { answer, idParam, parseBody, type Route } from './route.ts';
 
 export const entryRoutes: readonly Route[] = [
+  {
+    method: 'patch',
+    path: '/entries/:id/cockpit-settings',
+    access: 'cockpit-settings.set',
+    body: 'json',
+    async handle({ ctx, request }) {
+      const settings = parseBody(cockpitSettingsRequestSchema, request);
+      return answer(await setCockpitSettings(ctx, idParam(request, 'id'), settings));
+    },
+  },
   {
     method: 'post',
     path: '/entries/:id/counting-run',

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { cockpitSettingsRequestSchema } from './entries.ts';
 import { digestSchema, idSchema, unixMsSchema } from './fields.ts';
 import { eventRulesSchema, raceClassSchema } from './race-class.ts';
 import { runSummarySchema } from './runs.ts';
@@ -42,6 +43,8 @@ export const entrySchema = z.object({
   raceClassId: idSchema,
   /** True where the caller may load packs, set releases and choose the counting run. */
   mayPrepare: z.boolean(),
+  /** What a pack loaded now would carry. Null for another team's entry. */
+  settings: cockpitSettingsRequestSchema.nullable(),
   attempts: z.array(attemptSchema),
 });
 

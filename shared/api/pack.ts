@@ -24,14 +24,18 @@ const wheelSchema = z.strictObject({
   secondChannel: z.number().int().min(0).max(15).exactOptional(),
 });
 
+/** Seconds in hand. */
+export const reserveSchema = z.number().min(0).max(30);
+
 const planSettingsSchema = z.strictObject({
   acceleration: z.number().positive().max(15),
   deceleration: z.number().positive().max(15),
   capMargin: z.number().min(0).max(0.5),
-  reserveS: z.number().min(0).max(30).exactOptional(),
+  reserveS: reserveSchema.exactOptional(),
 });
 
-const cockpitSettingsSchema = z.strictObject({
+/** What a crew chooses for its screen and its engine. */
+export const cockpitSettingsSchema = z.strictObject({
   speedUnit: z.enum(['km/h', 'mph']),
   scaleRule: z.enum(['estimator', 'gain', 'ratio', 'place only']),
   tapLeadMs: z.strictObject({ glass: z.number().min(-1000).max(1000), wired: z.number().min(-1000).max(1000) }),

@@ -4,6 +4,9 @@ import { idSchema, unixMsSchema } from './fields.ts';
 
 export const carSummarySchema = z.object({ id: idSchema, name: z.string(), dialReadsHighPercent: z.number() });
 
+/** Metres behind the car's nose. */
+export const behindNoseSchema = z.object({ seatM: z.number(), aerialM: z.number() });
+
 /** GET /api/teams/:teamId */
 export const teamResponseSchema = z.object({
   team: z.object({ id: idSchema, name: z.string(), kind: z.enum(TEAM_KINDS) }),
@@ -31,12 +34,17 @@ export const wheelSetupSchema = z.object({
   tyre: z.string(),
   channel: z.number().int(),
   pulsesPerTurn: z.number().int(),
+  /** The engine drives the measured wheel. */
+  driven: z.boolean(),
+  /** Channel of another wheel to compare with; null where only one is counted. */
+  secondChannel: z.number().int().nullable(),
   /** Newest first; the first is the one in use. */
   scales: z.array(wheelScaleSchema),
 });
 
 /** GET /api/teams/:teamId/garage */
 export const garageResponseSchema = z.object({
-  cars: z.array(carSummarySchema.extend({ wheelSetups: z.array(wheelSetupSchema) })),
+  /** `behindNose` null where nobody has measured. */
+  cars: z.array(carSummarySchema.extend({ behindNose: behindNoseSchema.nullable(), wheelSetups: z.array(wheelSetupSchema) })),
 });
 export type GarageResponse = z.infer<typeof garageResponseSchema>;

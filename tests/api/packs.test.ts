@@ -1,9 +1,11 @@
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { sha256Hex } from '#server/auth/tokens.ts';
+import { cars } from '#server/db/schema/cars.ts';
 import { ownCheckpoints } from '#server/db/schema/own-checkpoints.ts';
 import { packs } from '#server/db/schema/packs.ts';
 import { wheelScales } from '#server/db/schema/wheel-scales.ts';
+import { wheelSetups } from '#server/db/schema/wheel-setups.ts';
 import { eventsResponseSchema } from '#shared/api/events.ts';
 import { packResponseSchema, packSchema } from '#shared/api/pack.ts';
 import { canonicalJson } from '#shared/canonical-json.ts';
@@ -51,6 +53,23 @@ describe('a pack', () => {
     expect(released.pack).toEqual({ ...loaded.pack, attempt: { ...loaded.pack.attempt, releaseMs } });
     expect(await currentDigest()).toBe(released.digest);
     await person.patch(`/api/attempts/${loaded.attemptId}`, { releaseMs: null }).expect(200);
+    expect((await load()).digest).toBe(loaded.digest);
+  });
+
+  it('says where seat and aerial are and what turns which wheel once that is known, and nothing of it before', async () => {
+    expect(loaded.pack.car).not.toHaveProperty('behindNose');
+    expect(loaded.pack.wheel).not.toHaveProperty('driven');
+    expect(loaded.pack.wheel).not.toHaveProperty('secondChannel');
+    const { db } = house.connection;
+    const car = eq(cars.id, loaded.pack.car.id);
+    const setup = eq(wheelSetups.id, loaded.pack.wheel.setupId);
+    await db.update(cars).set({ seatBehindNoseM: 2.1, aerialBehindNoseM: 0 }).where(car);
+    await db.update(wheelSetups).set({ driven: true, secondChannel: 3 }).where(setup);
+    const { pack } = await load();
+    expect(pack.car).toEqual({ ...loaded.pack.car, behindNose: { seatM: 2.1, aerialM: 0 } });
+    expect(pack.wheel).toEqual({ ...loaded.pack.wheel, driven: true, secondChannel: 3 });
+    await db.update(cars).set({ seatBehindNoseM: null, aerialBehindNoseM: null }).where(car);
+    await db.update(wheelSetups).set({ driven: false, secondChannel: null }).where(setup);
     expect((await load()).digest).toBe(loaded.digest);
   });
 

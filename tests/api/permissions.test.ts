@@ -57,6 +57,11 @@ const MATRIX: Readonly<Record<string, Row>> = {
     answers: { ...entryPreparers, organiser: 'yes' },
   },
   'post /attempts/:id/pack': { ask: (c, { team }) => c.post(`/api/attempts/${team.loaded.attemptId}/pack`), answers: entryPreparers },
+  'patch /entries/:id/cockpit-settings': {
+    ask: (c, { team: { loaded } }) =>
+      c.patch(`/api/entries/${loaded.entryId}/cockpit-settings`, { ...loaded.pack.settings, reserveS: loaded.pack.plan.reserveS ?? 0 }),
+    answers: entryPreparers,
+  },
   'post /entries/:id/counting-run': {
     ask: (c, { team }) => c.post(`/api/entries/${team.loaded.entryId}/counting-run`, { runId: team.header.runId }),
     answers: entryPreparers,

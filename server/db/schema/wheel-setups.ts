@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm';
-import { check, integer, pgTable, text, unique, uuid } from 'drizzle-orm/pg-core';
+import { boolean, check, integer, pgTable, text, unique, uuid } from 'drizzle-orm/pg-core';
 import { cars } from './cars.ts';
 import { createdAt, id } from './columns.ts';
 
@@ -16,6 +16,10 @@ export const wheelSetups = pgTable(
     /** Wheel channel of the pulse sentences that measures distance. */
     channel: integer('channel').notNull(),
     pulsesPerTurn: integer('pulses_per_turn').notNull(),
+    /** The engine drives the measured wheel. */
+    driven: boolean('driven').notNull().default(false),
+    /** Channel of another wheel to compare with; null where only one is counted. */
+    secondChannel: integer('second_channel'),
     createdAt: createdAt(),
   },
   (t) => [
@@ -25,5 +29,7 @@ export const wheelSetups = pgTable(
     unique('wheel_setups_id_car_id_key').on(t.id, t.carId),
     check('wheel_setups_channel_range', sql`${t.channel} between 0 and 15`),
     check('wheel_setups_pulses_range', sql`${t.pulsesPerTurn} between 1 and 100000`),
+    check('wheel_setups_second_channel_range', sql`${t.secondChannel} between 0 and 15`),
+    check('wheel_setups_second_channel_other', sql`${t.secondChannel} <> ${t.channel}`),
   ],
 );

@@ -2,11 +2,14 @@ import { cars } from '#server/db/schema/cars.ts';
 import { wheelScales } from '#server/db/schema/wheel-scales.ts';
 import { wheelSetups } from '#server/db/schema/wheel-setups.ts';
 import type { ServiceContext } from '#server/services/context.ts';
+import type { CarInPack } from '#shared/course/pack.ts';
 
 export interface NewCar {
   readonly name: string;
   readonly dialReadsHighPercent: number;
-  readonly setup: { readonly name: string; readonly tyre: string; readonly channel: number; readonly pulsesPerTurn: number };
+  /** Left out where nobody has measured. */
+  readonly behindNose?: CarInPack['behindNose'];
+  readonly setup: Pick<typeof wheelSetups.$inferInsert, 'name' | 'tyre' | 'channel' | 'pulsesPerTurn' | 'driven' | 'secondChannel'>;
   /** Oldest first. */
   readonly scales: readonly {
     readonly mmPerPulse: number;
@@ -23,8 +26,12 @@ export async function insertCar(
   teamId: string,
   car: NewCar,
 ): Promise<{ readonly carId: string; readonly wheelSetupId: string }> {
-  const { name, dialReadsHighPercent } = car;
-  const [carRow] = await ctx.db.insert(cars).values({ teamId, name, dialReadsHighPercent }).returning({ id: cars.id });
+  const { name, dialReadsHighPercent, behindNose } = car;
+  const offsets = behindNose === undefined ? {} : { seatBehindNoseM: behindNose.seatM, aerialBehindNoseM: behindNose.aerialM };
+  const [carRow] = await ctx.db
+    .insert(cars)
+    .values({ teamId, name, dialReadsHighPercent, ...offsets })
+    .returning({ id: cars.id });
   if (!carRow) throw new Error('insert returned no row');
   const [setupRow] = await ctx.db
     .insert(wheelSetups)

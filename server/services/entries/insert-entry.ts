@@ -46,12 +46,13 @@ export async function insertEntry(
 /** How a crew that has said nothing yet is set up. Common practice, no source. */
 export const USUAL_PLAN: PlanSettings = { acceleration: 2.5, deceleration: 4, capMargin: 0.02 };
 /**
- * A navigator's lead is learned, so it begins at nothing. The gain ratio uses each leg for what it is worth and needs no
- * shortest leg. Own simulations of long runs, no outside source.
+ * The estimator judges distance, scale, tyres and lead together; the simple rules stay as choices. A navigator's lead is
+ * learnt, so it begins at nothing and counts as unlearnt: nothing is said of how well it is known. Own simulations of long
+ * runs, no outside source.
  */
 export const USUAL_COCKPIT: CockpitSettings = {
   speedUnit: 'km/h',
-  scaleRule: 'gain',
+  scaleRule: 'estimator',
   tapLeadMs: { glass: 0, wired: 0 },
   tapScatterMs: 100,
   buttonSide: 'right',

@@ -9,6 +9,7 @@ import { users } from '#server/db/schema/users.ts';
 import { wheelSetups } from '#server/db/schema/wheel-setups.ts';
 import type { TeamAccess } from '#server/services/access/require-team.ts';
 import type { ServiceContext } from '#server/services/context.ts';
+import { cockpitSettingsOf } from '#server/services/entries/set-cockpit-settings.ts';
 import { attemptsOf } from './attempts-of.ts';
 import type { BookSummary } from './book-summaries.ts';
 
@@ -51,6 +52,7 @@ export async function entriesOf(ctx: ServiceContext, access: TeamAccess, eventId
         crew: crew.filter((member) => member.entryId === entry.id).map(({ name, role }) => ({ name, role })),
         raceClassId: entry.raceClassId,
         mayPrepare: own && mayPrepare,
+        settings: own ? cockpitSettingsOf(entry) : null,
         attempts: await attemptsOf(ctx, entry.id, own, books),
       };
     }),

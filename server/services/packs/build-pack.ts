@@ -7,7 +7,7 @@ import { canonicalJson } from '#shared/canonical-json.ts';
 import { checkRaceClass } from '#shared/course/check.ts';
 import { printedMetres } from '#shared/course/convert.ts';
 import type { Checkpoint, Zone } from '#shared/course/course-book.ts';
-import type { Pack } from '#shared/course/pack.ts';
+import type { CarInPack, Pack, WheelInPack } from '#shared/course/pack.ts';
 import { fail, ok, type Result } from '#shared/result.ts';
 import { raceClassOf } from './race-class-of.ts';
 import { type PackRows, readPackRows } from './read-pack-rows.ts';
@@ -58,18 +58,29 @@ function assemble(rows: PackRows & { readonly scale: NonNullable<PackRows['scale
     raceClass: raceClassOf(rows.raceClass),
     ownCheckpoints: rows.places.map(ownCheckpointOf).sort((a, b) => printedMetres(a.at) - printedMetres(b.at)),
     crewZones: rows.zones.map(crewZoneOf).sort((a, b) => printedMetres(a.from) - printedMetres(b.from)),
-    car: { id: car.id, name: car.name, dialReadsHighPercent: car.dialReadsHighPercent },
-    wheel: {
-      setupId: setup.id,
-      setupName: setup.name,
-      channel: setup.channel,
-      pulsesPerTurn: setup.pulsesPerTurn,
-      mmPerPulse: scale.mmPerPulse,
-      scaleSigma: scale.scaleSigma,
-      scaleSource: scale.source,
-    },
+    car: carInPack(car),
+    wheel: wheelInPack(setup, scale),
     plan: entry.planSettings,
     settings: entry.cockpitSettings,
+  };
+}
+
+/** What nobody has measured is left out, so that an old row gives the pack it always gave. */
+function carInPack({ id, name, dialReadsHighPercent, seatBehindNoseM: seatM, aerialBehindNoseM: aerialM }: PackRows['car']): CarInPack {
+  return { id, name, dialReadsHighPercent, ...(seatM === null || aerialM === null ? {} : { behindNose: { seatM, aerialM } }) };
+}
+
+function wheelInPack(setup: PackRows['setup'], scale: NonNullable<PackRows['scale']>): WheelInPack {
+  return {
+    setupId: setup.id,
+    setupName: setup.name,
+    channel: setup.channel,
+    pulsesPerTurn: setup.pulsesPerTurn,
+    mmPerPulse: scale.mmPerPulse,
+    scaleSigma: scale.scaleSigma,
+    scaleSource: scale.source,
+    ...(setup.driven ? { driven: true } : {}),
+    ...(setup.secondChannel === null ? {} : { secondChannel: setup.secondChannel }),
   };
 }
 

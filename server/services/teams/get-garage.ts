@@ -38,8 +38,23 @@ export async function getGarage(ctx: ServiceContext, teamId: string): Promise<Ga
   const setupsOf = (carId: string) =>
     setupRows
       .filter(({ setup }) => setup.carId === carId)
-      .map(({ setup: { id, name, tyre, channel, pulsesPerTurn } }) => ({ id, name, tyre, channel, pulsesPerTurn, scales: scalesOf(id) }));
+      .map(({ setup: { id, name, tyre, channel, pulsesPerTurn, driven, secondChannel } }) => ({
+        id,
+        name,
+        tyre,
+        channel,
+        pulsesPerTurn,
+        driven,
+        secondChannel,
+        scales: scalesOf(id),
+      }));
   return {
-    cars: carRows.map(({ id, name, dialReadsHighPercent }) => ({ id, name, dialReadsHighPercent, wheelSetups: setupsOf(id) })),
+    cars: carRows.map(({ id, name, dialReadsHighPercent, seatBehindNoseM: seatM, aerialBehindNoseM: aerialM }) => ({
+      id,
+      name,
+      dialReadsHighPercent,
+      behindNose: seatM === null || aerialM === null ? null : { seatM, aerialM },
+      wheelSetups: setupsOf(id),
+    })),
   };
 }

@@ -90,6 +90,7 @@ export function sampleEvents(attempts: readonly Attempt[]): EventsResponse {
             crew: samplePack.entry.crew.map((member) => ({ ...member })),
             raceClassId: IDS.raceClass,
             mayPrepare: true,
+            settings: { ...samplePack.settings, reserveS: 0 },
             attempts: [...attempts],
           },
         ],
@@ -115,6 +116,7 @@ export const sampleGarage: GarageResponse = {
       id: IDS.car,
       name: 'Blue estate',
       dialReadsHighPercent: 3.5,
+      behindNose: { seatM: 2.1, aerialM: 1.6 },
       wheelSetups: [
         {
           id: IDS.setup,
@@ -122,6 +124,8 @@ export const sampleGarage: GarageResponse = {
           tyre: '255/40 R19 100H',
           channel: 0,
           pulsesPerTurn: 4,
+          driven: true,
+          secondChannel: null,
           scales: [
             {
               id: IDS.run,
