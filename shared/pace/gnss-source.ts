@@ -1,6 +1,6 @@
 import type { Aids } from '#shared/course/race-class.ts';
 import type { FixV1 } from '#shared/journal/observation.ts';
-import { gnssMetresAt, SURELY_MOVING, takeFix } from '#shared/pace/gnss.ts';
+import { gnssMetresAt, OUTAGE_US, SURELY_MOVING, takeFix } from '#shared/pace/gnss.ts';
 import { rewriteLaunches } from '#shared/pace/launch.ts';
 import type { Odometer, OdometerChange } from '#shared/pace/odometer.ts';
 import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
@@ -54,8 +54,22 @@ function carryOn(o: Odometer, metresPerPulse: number): OdometerChange {
   if (at >= lastAt && g <= o.g) o.stillAt = at;
   if (at < lastAt || g <= o.g) return UNREMARKABLE;
   noteGnss(o);
+  noteOutage(o, at, arrival, g - o.g);
   keepStill(o);
   return knot(o, at, o.w, g, metresPerPulse);
+}
+
+/** Of a car in traffic: how fast the variance of its speed grows from a known one, m²/s³. Judgement, held against a recorded drive. */
+const SPEED_WANDER = 1;
+/** What a straight line may leave out of a road, one sigma as a share. Judgement, no source. */
+const LINE_SHARE = 0.3;
+
+/** Speeds that wander between two known ones over T seconds leave a variance of qT³/12 in the distance (a Brownian bridge, integrated). */
+function noteOutage({ gnss, losses }: Odometer, at: number, arrival: number, metres: number): void {
+  const before = gnss.recent[gnss.recent.length - 2];
+  const us = before === undefined ? 0 : arrival - before.at;
+  if (us <= OUTAGE_US) return;
+  losses.push({ at, sigma: gnss.by === 'speed' ? Math.sqrt((SPEED_WANDER * (us / 1e6) ** 3) / 12) : LINE_SHARE * metres });
 }
 
 function wheelFellSilent(o: Odometer, at: number): boolean {

@@ -8,6 +8,8 @@
  */
 export interface PulseGap {
   phase: 'steady' | 'open' | 'lost';
+  /** The sensor has made its first step. */
+  begun: boolean;
   /** Last record that advanced as a car does. */
   at: number;
   total: number;
@@ -31,6 +33,7 @@ export interface PulseGap {
 
 export const makePulseGap = (): PulseGap => ({
   phase: 'steady',
+  begun: false,
   at: 0,
   total: 0,
   rate: 0,
@@ -85,6 +88,7 @@ const UNRESUMED_SHARE = 0.3;
 /** A new baseline: nothing is known of the speed before. */
 export function restartGap(gap: PulseGap, at: number, total: number): void {
   gap.phase = 'steady';
+  gap.begun = false;
   gap.rate = 0;
   gap.at = gap.fromAt = gap.nextAt = at;
   gap.total = gap.fromTotal = gap.nextTotal = total;
@@ -124,6 +128,12 @@ function beginBack(gap: PulseGap, at: number, total: number): void {
 }
 
 function advance(gap: PulseGap, at: number, total: number): void {
+  // the first step of a sensor is no speed: its two records may lie anyhow beside each other
+  if (!gap.begun) {
+    restartGap(gap, at, total);
+    gap.begun = true;
+    return;
+  }
   gap.at = at;
   gap.total = total;
   if (at - gap.nextAt >= WINDOW_US && Math.abs(total - gap.nextTotal) >= WINDOW_PULSES) {
@@ -177,6 +187,7 @@ function goOn(gap: PulseGap, at: number, total: number, rate: number): void {
   restartGap(gap, at, total);
   gap.fromAt = fromAt;
   gap.fromTotal = fromTotal;
+  gap.begun = true;
   gap.rate = rate;
   gap.span = (at - fromAt) / 1e6;
 }
