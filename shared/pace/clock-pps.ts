@@ -23,9 +23,13 @@ const STRAY_MS = 50;
 const STRAYS = 5;
 /** ms in a second; crystals differ by less than 100 ppm. */
 const STEEPEST = 0.1;
-/** Of an even spread of lateness the envelope keeps this much of the mean, over the count; and scatters by as much. By simulation. */
+/**
+ * Of an even spread of lateness the envelope keeps `KEPT` of the mean over the count, and scatters by `SCATTER` of it. The line
+ * itself takes from what few edges show of their spread, as degrees of freedom. By simulation.
+ */
 const KEPT = 3.7;
 const SCATTER = 2.8;
+const TAKEN = 4;
 const FINEST_MS = 0.05;
 
 /** A whole second of the official clock began at `at` (session microseconds, fractions), give or take `sigmaMs`. */
@@ -68,5 +72,5 @@ function closeWindow(pps: PpsEdges): PpsSecond | null {
   // the envelope at the middle, carried to the whole second beside it
   const second = Math.round(line.x);
   const late = line.y + line.slope * (second - line.x) - (KEPT * line.excess) / n;
-  return { at: from + second * 1e6 + late * 1000, sigmaMs: Math.hypot(FINEST_MS, (SCATTER * line.excess) / n) };
+  return { at: from + second * 1e6 + late * 1000, sigmaMs: Math.hypot(FINEST_MS, (SCATTER * line.excess) / (n - TAKEN)) };
 }

@@ -26,8 +26,8 @@ export const exchangeResult = ({ t1, t2, t3, t4 }: Exchange): ExchangeResult => 
 
 /** The server's stamps are milliseconds, cut; nothing known through them is finer. */
 const FINEST_MS = 0.5;
-/** One sigma of what the two ways differ by, halved, over the round trip: 60 to 40. Judgement. */
-const ASYMMETRY = 0.1;
+/** One sigma of half of what the two ways differ by, over the round trip: ways of 59 and 41 %. Judgement. */
+const ASYMMETRY = 0.09;
 /** What queues leave on the least of several round trips, over the mean excess and the root of their number. By simulation. */
 const QUEUE = 0.25;
 /** Fewer round trips say nothing about queues. */
