@@ -3,38 +3,10 @@ import { describe, expect, it } from 'vitest';
 import { makePlan, type PlanRequest } from '#shared/pace/plan.ts';
 import { fastestTime, pointOfNoReturn } from '#shared/pace/plan-bounds.ts';
 import { atBeginning, evaluate, makeEvaluation, type Piece, pieceMotion } from '#shared/pace/plan-solver.ts';
-import { type Schedule, targetTimeAt } from '#shared/pace/schedule.ts';
-import { metres, metresPerSecond, seconds } from '#shared/units.ts';
+import { targetTimeAt } from '#shared/pace/schedule.ts';
+import { bare, base, requestArb, scheduleOf } from '#tests/unit/pace/plan-requests.ts';
 
 /** Expected figures: the worked values of the project's pace mathematics, computed there by other code. */
-
-function scheduleOf(edges: readonly (readonly [to: number, speed: number])[]): Schedule {
-  let [from, begins] = [0, 0];
-  const sections = edges.map(([to, speed]) => {
-    const section = { from: metres(from), to: metres(to), begins: seconds(begins), speed: metresPerSecond(speed), neutral: false };
-    begins += (to - from) / speed;
-    from = to;
-    return section;
-  });
-  return { start: metres(0), finish: metres(from), targetTime: seconds(begins), difference: seconds(0), sections };
-}
-
-const base: PlanRequest = {
-  schedule: scheduleOf([[120_000, 50]]),
-  zones: [
-    { from: 18_000, to: 19_000, limit: 35 },
-    { from: 40_000, to: 40_600, limit: 28 },
-    { from: 70_000, to: 72_000, limit: 40 },
-    { from: 100_000, to: 100_800, limit: 32 },
-  ],
-  top: 58,
-  floor: null,
-  acceleration: 2.5,
-  deceleration: 4,
-  from: { x: 0, v: 0, t: 0 },
-  mode: 'finish',
-};
-const bare: PlanRequest = { ...base, zones: [] };
 
 describe('worked values', () => {
   it('5: a start to the target speed costs v/2a; to another speed v/a − v²/2aV', () => {
@@ -168,32 +140,6 @@ describe('edges of a plan', () => {
     expect(plan.speedAt(10_500)).toBe(30);
   });
 });
-
-const zoneArb = fc.record({
-  from: fc.double({ min: 500, max: 28_000, noNaN: true }),
-  length: fc.double({ min: 20, max: 1_500, noNaN: true }),
-  limit: fc.double({ min: 5, max: 45, noNaN: true }),
-});
-const requestArb = fc
-  .record({
-    zones: fc.array(zoneArb, { maxLength: 8 }),
-    averages: fc.array(fc.double({ min: 10, max: 40, noNaN: true }), { minLength: 1, maxLength: 4 }),
-    stretch: fc.double({ min: 1.0, max: 1.4, noNaN: true }),
-    v: fc.double({ min: 0, max: 45, noNaN: true }),
-    mode: fc.constantFrom('finish' as const, 'sections' as const),
-  })
-  .map(({ zones, averages, stretch, v, mode }): PlanRequest => {
-    const speeds = averages.map((a) => a / stretch);
-    const schedule = scheduleOf(speeds.map((speed, i) => [((i + 1) * 30_000) / speeds.length, speed]));
-    return {
-      ...base,
-      schedule,
-      zones: zones.map((z) => ({ from: z.from, to: z.from + z.length, limit: z.limit })),
-      top: 45,
-      from: { x: 0, v, t: 0 },
-      mode,
-    };
-  });
 
 describe('whatever the course', () => {
   it('a solved plan ends on zero, keeps every limit and asks no more of the car than it has', () => {
