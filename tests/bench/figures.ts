@@ -8,13 +8,25 @@ export interface Figure {
 
 export type Figures = Readonly<Record<string, Figure | number>>;
 
+/** A bench with more to say than a list of figures answers with its own text and JSON. */
+export interface Report {
+  readonly text: string;
+  readonly json: object;
+}
+
 export interface BenchOptions {
   /** End within 40 s, with fewer rounds. */
   readonly quick: boolean;
+  /** Of the accuracy bench: settings, methods and drives a setting; all where left out. */
+  readonly only?: readonly string[];
+  readonly methods?: readonly string[];
+  readonly drives?: number;
 }
 
 /** `tests/bench/NAME.bench.ts` exports this as `bench`. */
-export type Bench = (options: BenchOptions) => Figures | Promise<Figures>;
+export type Bench = (options: BenchOptions) => Figures | Report | Promise<Figures | Report>;
+
+export const isReport = (answer: Figures | Report): answer is Report => typeof (answer as Report).text === 'string';
 
 const plain = (figure: Figure | number): Figure => (typeof figure === 'number' ? { value: figure, unit: '' } : figure);
 const NUMBER = new Intl.NumberFormat('en', { maximumSignificantDigits: 4 });

@@ -1,0 +1,21 @@
+import type { Pack } from '#shared/course/pack.ts';
+import type { Observation } from '#shared/journal/observation.ts';
+import { begin, step } from '#shared/pace/run.ts';
+import { situationAt } from '#shared/pace/situation.ts';
+import type { Follower } from './follower.ts';
+
+/** The engine itself, fed as a tablet feeds it. */
+export function followByEngine(pack: Pack): Follower {
+  const state = begin(pack);
+  let seq = 0;
+  const take: Follower['take'] = (o) => step(state, { ...o, seq: seq++ } as Observation);
+  // under escort the engine works out no advice, which nobody reads here, and everything else as ever
+  take({ type: 'run-resumed.v1', at: 0, as: 'escort' });
+  return {
+    take,
+    shown(at) {
+      const { timeError, planned, sigma } = situationAt(state, at);
+      return timeError === null ? null : { timeError, planned, sigma };
+    },
+  };
+}
