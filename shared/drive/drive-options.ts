@@ -27,7 +27,7 @@ export interface DriveOptions {
 }
 
 export interface DriveFaults {
-  /** The measured wheel is driven: it spins at the launch and slips with speed. */
+  /** The measured wheel is driven: it spins at the launch and slips with speed. Left out: as the pack says. */
   readonly driven?: boolean;
   /** Pulses get lost now and then. */
   readonly dropouts?: boolean;

@@ -1,5 +1,5 @@
 import { printedMetres } from '#shared/course/convert.ts';
-import type { SurveyedPoint } from '#shared/course/course-book.ts';
+import type { CourseBook, SurveyedPoint } from '#shared/course/course-book.ts';
 import type { Pack } from '#shared/course/pack.ts';
 import { createRandom } from './random.ts';
 
@@ -19,13 +19,20 @@ interface Node {
   readonly lon: number;
 }
 
-/** Straight from checkpoint to checkpoint where at least two have positions, else an invented road on open water. */
-export function makeDriveRoad(pack: Pack, seed: number): DriveRoad {
-  const nodes = pack.courseBook.checkpoints
-    .flatMap((c): Node[] => (c.position === null ? [] : [{ distance: printedMetres(c.at), ...c.position }]))
-    .sort((a, b) => a.distance - b.distance);
+/**
+ * Along the surveyed line where the book carries one; else straight from checkpoint to checkpoint where at least two have
+ * positions, else an invented road on open water.
+ */
+export function makeDriveRoad({ courseBook }: Pack, seed: number): DriveRoad {
+  const surveyed = courseBook.geometry?.map(({ d: distance, lat, lon }): Node => ({ distance, lat, lon })) ?? [];
+  const nodes = surveyed.length >= 2 ? surveyed : checkpointNodes(courseBook);
   return nodes.length >= 2 ? roadThrough((distance) => pairAround(nodes, distance)) : inventRoad(seed);
 }
+
+const checkpointNodes = ({ checkpoints }: CourseBook): Node[] =>
+  checkpoints
+    .flatMap((c): Node[] => (c.position === null ? [] : [{ distance: printedMetres(c.at), ...c.position }]))
+    .sort((a, b) => a.distance - b.distance);
 
 /** The line along which the officials measured that road. */
 export function surveyRoad(road: DriveRoad, from: number, to: number): readonly SurveyedPoint[] {
@@ -37,10 +44,15 @@ export function surveyRoad(road: DriveRoad, from: number, to: number): readonly 
   return points;
 }
 
+/** The two nodes between which a distance lies; the first two or the last two beyond the ends. */
 function pairAround(nodes: readonly Node[], distance: number): readonly [Node, Node] {
-  const after = nodes.findIndex((node, i) => i > 0 && node.distance >= distance);
-  const i = after > 0 ? after : nodes.length - 1;
-  return [nodes[i - 1] as Node, nodes[i] as Node];
+  let [low, high] = [0, nodes.length - 1];
+  while (high - low > 1) {
+    const middle = (low + high) >> 1;
+    if ((nodes[middle] as Node).distance < distance) low = middle;
+    else high = middle;
+  }
+  return [nodes[low] as Node, nodes[high] as Node];
 }
 
 function roadThrough(nodesAround: (distance: number) => readonly [Node, Node]): DriveRoad {

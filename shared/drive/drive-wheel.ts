@@ -36,7 +36,7 @@ const UNDRIVEN_SPIN = { low: 0, high: 1 };
 export function createDriveWheel({ pack, seed, faults, parameters, courseEnd, beside }: DriveWheelOptions): DriveWheel {
   const { tyre, driven } = parameters;
   const ending = beside === undefined ? '' : ' 2';
-  const isDriven = faults.driven === true && beside === undefined;
+  const isDriven = (faults.driven ?? pack.wheel.driven) === true && beside === undefined;
   const random = createRandom(seed, `wheel${ending}`);
   const perPulse = pack.wheel.mmPerPulse / 1000;
   const fixed = tyre.offset + random.gauss(tyre.sigma ?? pack.wheel.scaleSigma);

@@ -4,8 +4,10 @@ import { DEMO_PASSWORD } from '#server/services/demo/demo-cast.ts';
 import { demoNotes, seedDemo } from '#server/services/demo/seed-demo.ts';
 import { meResponseSchema } from '#shared/api/auth.ts';
 import { eventsResponseSchema } from '#shared/api/events.ts';
+import { packResponseSchema } from '#shared/api/pack.ts';
 import { type RunResponse, runResponseSchema, runsResponseSchema } from '#shared/api/runs.ts';
 import { garageResponseSchema } from '#shared/api/teams.ts';
+import { canonicalJson } from '#shared/canonical-json.ts';
 import { callerOf } from './support/caller.ts';
 import { type House, openHouse } from './support/house.ts';
 import { newManager } from './support/people.ts';
@@ -93,6 +95,28 @@ describe('the demo', () => {
       expect((attempt.releaseMs ?? 0) < nowMs).toBe(driven);
       expect(attempt.countingRunId !== null).toBe(driven);
       expect(attempt.runs.every((run) => run.status === 'ready')).toBe(true);
+    }
+  });
+
+  it('has packs with a surveyed road, learnt leads and the place of seat and aerial, small enough for a slow line', async () => {
+    const navigator = await signedIn('navigator');
+    const { events } = eventsResponseSchema.parse((await navigator.get(`/api/teams/${navigator.teamId}/events`).expect(200)).body);
+    const entries = events.flatMap((event) => event.entries);
+    const packs = await Promise.all(
+      entries.map(async ({ attempts: [first] }) => {
+        const response = await navigator.post(`/api/attempts/${first?.id}/pack`).expect(200);
+        return packResponseSchema.parse(response.body).pack;
+      }),
+    );
+    expect(packs.map(({ settings }) => settings.scaleRule).sort()).toEqual(['estimator', 'ratio']);
+    expect(packs.map(({ wheel }) => wheel.driven ?? false).sort()).toEqual([false, true]);
+    for (const pack of packs) {
+      expect(pack.settings.tapLeadSigmaMs).toEqual({ glass: 60, wired: 60 });
+      expect(pack.car.behindNose).toEqual({ seatM: 2.1, aerialM: 1.6 });
+      expect(Buffer.byteLength(canonicalJson(pack))).toBeLessThan(400_000);
+      const distances = pack.courseBook.geometry?.map(({ d }) => d) ?? [];
+      expect([distances[0], distances.at(-1)]).toEqual([expect.closeTo(-200, 9), expect.closeTo(62_600, 9)]);
+      for (const [i, d] of distances.slice(1).entries()) expect(d - (distances[i] ?? 0)).toBe(50);
     }
   });
 

@@ -41,8 +41,10 @@ export interface DemoCar {
   readonly navigator: string;
   readonly dialReadsHighPercent: number;
   readonly tyre: string;
-  /** One crew trusts the plain ratio, the other the gain ratio: both can be seen on their run sheets. */
-  readonly scaleRule: 'ratio' | 'gain';
+  /** The engine drives the wheel whose pulses are counted. */
+  readonly driven: boolean;
+  /** One crew leaves it to the estimator, the other trusts the plain ratio: both can be seen on their run sheets. */
+  readonly scaleRule: 'estimator' | 'ratio';
   readonly nominal: number;
   readonly measured: number;
 }
@@ -55,7 +57,8 @@ export const CARS: readonly DemoCar[] = [
     navigator: 'navigator',
     dialReadsHighPercent: 4,
     tyre: '265/35 R18',
-    scaleRule: 'gain',
+    driven: false,
+    scaleRule: 'estimator',
     nominal: 84.9,
     measured: 85.31,
   },
@@ -66,6 +69,7 @@ export const CARS: readonly DemoCar[] = [
     navigator: 'navigator2',
     dialReadsHighPercent: 3,
     tyre: '255/40 R17',
+    driven: true,
     scaleRule: 'ratio',
     nominal: 81.7,
     measured: 82.06,

@@ -1,11 +1,14 @@
 import type { CourseContent } from '#server/services/course-books/publish-course-book.ts';
 import type { Checkpoint, Duty, Zone } from '#shared/course/course-book.ts';
 import type { EventRules, RaceClass } from '#shared/course/race-class.ts';
+import { demoPosition, surveyedLine } from './demo-road.ts';
 
-/** 61 km out in the morning, the same road back in the afternoon. Every name is invented; there is no such road. */
+/** 61 km out in the morning, the same road back in the afternoon, surveyed. Every name is invented; there is no such road. */
 
 const LENGTH_M = 61_000;
 const STOP_BOARD_M = 1400;
+/** The survey begins this far before the start and ends this far after the stop board. */
+const SURVEYED_BEYOND_M = 200;
 
 interface Place {
   readonly id: string;
@@ -44,15 +47,21 @@ const km = (m: number) => ({ text: (m / 1000).toFixed(3), unit: 'km' as const })
 const FLIPPED = { left: 'right', right: 'left' } as const;
 
 function checkpoint(way: Way, source: 'official' | 'own', { m, side, ...place }: Place): Checkpoint {
-  return { ...place, at: km(along(way, m)), source, side: way === 'out' || side === null ? side : FLIPPED[side], position: null };
+  return {
+    ...place,
+    at: km(along(way, m)),
+    source,
+    side: way === 'out' || side === null ? side : FLIPPED[side],
+    position: source === 'own' ? null : demoPosition(m),
+  };
 }
 
 const byDistance = (a: Checkpoint, b: Checkpoint): number => Number(a.at.text) - Number(b.at.text);
 
 export function courseContent(way: Way): CourseContent {
   const [from, to] = way === 'out' ? ['Tarsel', 'Quarrow'] : ['Quarrow', 'Tarsel'];
-  const line = (id: string, name: string, duty: Duty, m: number): Checkpoint =>
-    checkpoint('out', 'official', { id, name, duty, m, side: null, note: '' });
+  const line = (id: string, name: string, duty: Duty, d: number): Checkpoint =>
+    checkpoint(way, 'official', { id, name, duty, m: along(way, d), side: null, note: '' });
   return {
     name: `${from} to ${to}`,
     unit: 'km',
@@ -68,6 +77,7 @@ export function courseContent(way: Way): CourseContent {
     }).sort((x, y) => Number(x.from.text) - Number(y.from.text)),
     slowDownLimit: { text: '80', unit: 'km/h' },
     notes: 'Road closed from 08:30. Flags at both ends of each zone. Keep right on the slow-down stretch.',
+    geometry: surveyedLine(-SURVEYED_BEYOND_M, LENGTH_M + STOP_BOARD_M + SURVEYED_BEYOND_M, (d) => along(way, d)),
   };
 }
 

@@ -18,6 +18,10 @@ export interface DemoEntry {
   readonly attemptIds: readonly string[];
 }
 
+/** Both navigators' leads are known from earlier runs. */
+const LEARNT = { tapLeadMs: { glass: 60, wired: 40 }, tapLeadSigmaMs: { glass: 60, wired: 60 }, tapScatterMs: 90 };
+/** Where the seat and the aerial on the roof of a small saloon are, metres behind its nose. */
+const BEHIND_NOSE = { seatM: 2.1, aerialM: 1.6 };
 const DAY_MS = 24 * 3600 * 1000;
 
 /** Two days around the day of seeding: yesterday is driven, tomorrow is next, whichever day that is. */
@@ -52,7 +56,7 @@ export async function seedEvent(ctx: ServiceContext, people: DemoPeople): Promis
       raceClassId: raceClassIds[0] ?? '',
       number: car.number,
       planSettings: { acceleration: 2.8, deceleration: 4.5, capMargin: 0.02 },
-      cockpitSettings: { ...USUAL_COCKPIT, scaleRule: car.scaleRule, tapLeadMs: { glass: 60, wired: 40 }, tapScatterMs: 90 },
+      cockpitSettings: { ...USUAL_COCKPIT, scaleRule: car.scaleRule, ...LEARNT },
       crew: [
         { userId: people.userId(car.driver), role: 'driver' },
         { userId: people.userId(car.navigator), role: 'navigator' },
@@ -87,7 +91,8 @@ function carOf(car: DemoCar, bought: Date, measuredOn: Date) {
   return {
     name: car.name,
     dialReadsHighPercent: car.dialReadsHighPercent,
-    setup: { name: 'Dry, set A', tyre: car.tyre, channel: 1, pulsesPerTurn: 24 },
+    behindNose: BEHIND_NOSE,
+    setup: { name: 'Dry, set A', tyre: car.tyre, channel: 1, pulsesPerTurn: 24, driven: car.driven },
     scales: [
       {
         mmPerPulse: car.nominal,
