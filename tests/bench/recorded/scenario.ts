@@ -20,6 +20,7 @@ export interface Scenario {
 
 const RULES = [
   ['none', false, 'place only'],
+  ['untouched estimator', false, 'estimator'],
   ['place', true, 'place only'],
   ['ratio', true, 'ratio'],
   ['gain', true, 'gain'],
@@ -28,42 +29,33 @@ const RULES = [
 
 type Means = Omit<Scenario, 'corrections' | 'touches' | 'rule'>;
 
-const withRules = (means: Means, names?: readonly string[]): Scenario[] =>
-  RULES.filter(([name]) => names === undefined || names.includes(name)).map(([corrections, touches, rule]) => ({
-    ...means,
-    corrections,
-    touches,
-    rule,
-  }));
+/** With a wheel alone nothing tells the estimator more than the rule that places only, until a place is touched. */
+const WHEEL_ONLY = ['none', 'place', 'ratio', 'gain', 'estimator'];
+const FUSED = ['untouched estimator', 'estimator'];
 
-export function scenariosOf(drive: RecordedDrive): Scenario[] {
-  const nothing = { channel: null, secondChannel: null, gnssSpeed: false, gnssPosition: false, geometry: false };
-  const list: Scenario[] = [];
-  const means: Means[] = drive.wheels.map((wheel) => ({ ...nothing, source: wheel.name, channel: wheel.channel }));
-  const [first, second] = drive.wheels;
-  if (first !== undefined && second !== undefined)
-    means.push({ ...nothing, source: 'both', channel: first.channel, secondChannel: second.channel });
-  for (const mean of means) {
-    list.push(...withRules(mean));
-    if (drive.gnss.speed)
-      list.push(...withRules({ ...mean, source: `${mean.source} + GNSS speed`, gnssSpeed: true }, ['none', 'estimator']));
-    if (drive.geometry !== null)
-      list.push(
-        ...withRules({ ...mean, source: `${mean.source} + position on line`, gnssSpeed: true, gnssPosition: true, geometry: true }, [
-          'none',
-          'estimator',
-        ]),
-      );
-  }
-  if (drive.gnss.speed) list.push(...withRules({ ...nothing, source: 'GNSS speed', gnssSpeed: true }, ['none', 'place', 'estimator']));
-  if (drive.gnss.position) list.push(...withRules({ ...nothing, source: 'GNSS positions', gnssPosition: true }, ['none', 'place']));
-  if (drive.geometry !== null)
-    list.push(
-      ...withRules({ ...nothing, source: 'GNSS position on line', gnssSpeed: true, gnssPosition: true, geometry: true }, [
-        'none',
-        'estimator',
-      ]),
-    );
+const withRules = (means: Means, names: readonly string[]): Scenario[] =>
+  RULES.filter(([name]) => names.includes(name)).map(([corrections, touches, rule]) => ({ ...means, corrections, touches, rule }));
+
+const NOTHING = { channel: null, secondChannel: null, gnssSpeed: false, gnssPosition: false, geometry: false };
+
+/** `quick`: without the second wheel beside the first. */
+export function scenariosOf(drive: RecordedDrive, quick: boolean): Scenario[] {
+  const { wheels, gnss, geometry } = drive;
+  const onLine = { gnssSpeed: true, gnssPosition: true, geometry: true };
+  const list = wheels.flatMap((wheel): Scenario[] => {
+    const means: Means = { ...NOTHING, source: wheel.name, channel: wheel.channel };
+    return [
+      ...withRules(means, WHEEL_ONLY),
+      ...(gnss.speed ? withRules({ ...means, source: `${wheel.name} + GNSS speed`, gnssSpeed: true }, FUSED) : []),
+      ...(geometry === null ? [] : withRules({ ...means, ...onLine, source: `${wheel.name} + position on line` }, FUSED)),
+    ];
+  });
+  const [first, second] = wheels;
+  if (!quick && first !== undefined && second !== undefined)
+    list.push(...withRules({ ...NOTHING, source: 'both', channel: first.channel, secondChannel: second.channel }, ['none', 'estimator']));
+  if (gnss.speed) list.push(...withRules({ ...NOTHING, source: 'GNSS speed', gnssSpeed: true }, ['none', 'place', 'estimator']));
+  if (gnss.position) list.push(...withRules({ ...NOTHING, source: 'GNSS positions', gnssPosition: true }, ['none', 'place']));
+  if (geometry !== null) list.push(...withRules({ ...NOTHING, ...onLine, source: 'GNSS position on line' }, FUSED));
   return list;
 }
 

@@ -6,7 +6,7 @@ export interface Row {
   readonly source: string;
   readonly corrections: string;
   readonly drives: number;
-  /** Root mean square over the course, and at the true finish (signed mean of one drive, RMS of several). */
+  /** Root mean square over the course, and at the true finish (with its sign where there is one drive, RMS of several). */
   readonly distanceRmsM: number;
   readonly distanceEndM: number;
   readonly timeRmsS: number;
@@ -31,10 +31,12 @@ function rowOf(scenario: Scenario, shown: readonly Shown[]): Row {
   };
 }
 
-/** Every scenario of a drive; those with touches over `seeds` navigators' scatters. */
-export function rowsOf(drive: RecordedDrive, seeds: number): Row[] {
-  return scenariosOf(drive).map((scenario) => {
-    const runs = scenario.touches ? seeds : 1;
+const SEEDS = 8;
+
+/** Every scenario of a drive; those with touches over several navigators' scatters. */
+export function rowsOf(drive: RecordedDrive, quick: boolean): Row[] {
+  return scenariosOf(drive, quick).map((scenario) => {
+    const runs = scenario.touches && !quick ? SEEDS : 1;
     return rowOf(
       scenario,
       Array.from({ length: runs }, (_, seed) => replay(drive, scenario, seed + 1)),
