@@ -5,8 +5,8 @@ import { useRunSettings } from '#src/cockpit/run/run-context.ts';
 import { clockItem } from './grid-item.ts';
 import { ItemRow } from './item-row.tsx';
 
-/** The official clock: where it comes from, how sure it is, how long ago; and one more look at it now. */
-export function ClockItem() {
+/** The official clock: where it comes from, how sure it is, how long ago; and one more look at it now, or touches along it. */
+export function ClockItem({ byTouch }: { readonly byTouch: () => void }) {
   const { session } = useRunSettings();
   const { official } = useStructure();
   const [trouble, setTrouble] = useState<string | null>(null);
@@ -22,7 +22,14 @@ export function ClockItem() {
       name="clock"
       item={clockItem(official)}
       live={busy ? 'checking' : (trouble ?? <LiveText of={(readout) => clockItem(readout.official).words} />)}
-      acts={session.role === 'reader' ? [] : [{ words: 'check now', run: () => void check() }]}
+      acts={
+        session.role === 'reader'
+          ? []
+          : [
+              { words: 'check now', run: () => void check() },
+              { words: 'by touch', run: byTouch },
+            ]
+      }
     />
   );
 }

@@ -10,7 +10,7 @@ import { SensorItem } from './sensor-item.tsx';
 import { usePersistence } from './use-persistence.ts';
 
 /** The list of what must be ready, always in the same places; what is missing is in ink with the act that mends it. */
-export function GridItems() {
+export function GridItems({ touchClock }: { readonly touchClock: () => void }) {
   const { session } = useRunSettings();
   const { lastTap } = useStructure();
   const status = useSyncExternalStore(session.subscribe, session.status);
@@ -32,7 +32,7 @@ export function GridItems() {
         item={{ ready: true, words: `${pack.courseBook.name}, version ${pack.courseBook.version}, ${packDigest.slice(0, 8)}` }}
       />
       <ItemRow name="storage" item={storage} acts={storage.ready ? [] : [{ words: 'ask again', run: askAgain }]} />
-      <ClockItem />
+      <ClockItem byTouch={touchClock} />
       <SensorItem />
       <ItemRow name="button" item={buttonItem(lastTap)} />
       <ItemRow name="screen" item={wakeItem(wake)} />

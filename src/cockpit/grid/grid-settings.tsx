@@ -5,7 +5,7 @@ import { LiveText } from '#src/cockpit/live/live-text.tsx';
 import { useStructure } from '#src/cockpit/live/use-live.ts';
 import { useRunSettings } from '#src/cockpit/run/run-context.ts';
 
-export type Setting = 'release' | 'target' | 'staged' | 'limit' | 'line';
+export type Setting = 'release' | 'target' | 'staged' | 'limit' | 'line' | 'clock';
 
 /** The release and its countdown, large; below, everything that may still be typed in, each a key as wide as the column. */
 export function GridSettings({ change }: { readonly change: (setting: Setting) => void }) {
