@@ -176,11 +176,13 @@ export interface Solution {
 }
 
 const CLOSE_ENOUGH = 1e-7;
+/** A plan that misses by more than this says so, s. */
+const GOOD_ENOUGH = 1e-3;
 const MOST_ITERATIONS = 60;
 
 /**
  * Finds s such that the pieces take `time` seconds from where the car stands; `out` then holds that evaluation. `near` is where to
- * begin: the s of a second ago is an evaluation or two away. Above 60 rounds the nearest so far is the answer; none was seen.
+ * begin: the s of a second ago is an evaluation or two away.
  */
 export function solve(
   pieces: readonly Piece[],
@@ -223,5 +225,8 @@ export function solve(
     else if (newton >= high) s = highSeen ? (low + high) / 2 : high;
     else s = lowSeen ? (low + high) / 2 : low;
   }
+  // a target that only standing still would meet is never met to the end
+  const off = iterations < MOST_ITERATIONS ? 0 : evaluate(pieces, car, from, s, out).time - time;
+  if (Math.abs(off) > GOOD_ENOUGH) return { kind: off > 0 ? 'short' : 'long', s, by: Math.abs(off), iterations };
   return { kind: 'solved', s, by: 0, iterations };
 }
