@@ -19,6 +19,8 @@ const RELEASE_US = 5_000_000;
 const RELEASE_MS = 1_800_000_000_000;
 /** The driver looks, and the display is judged, once a second. */
 const LOOK_US = 1_000_000;
+/** The clock is not what is judged here: it is checked all the way, so that its drift adds nothing to what is stated. */
+const CHECK_US = 60_000_000;
 /** No drive takes twice its target time. */
 const LONGEST = 2;
 
@@ -41,12 +43,13 @@ export function driveOnce(setting: Setting, method: Method, seed: number, rates:
   const truth = makeTruth(pack, RELEASE_US);
   const shown: { holdSpeed: null; stopped: boolean; late?: number } = { holdSpeed: null, stopped: false };
   let stoppedAt: number | null = null;
-  feed([{ type: 'clock.v1', at: 1, source: 'exchange', officialMs: RELEASE_MS - RELEASE_US / 1000, uncertaintyMs: 1 }]);
+  feed([clockAt(1, 'exchange')]);
   while (world.at < RELEASE_US + LONGEST * pack.raceClass.targetTimeMs * 1000) {
     feed(world.tick(shown));
     const finish = world.passed.find((p) => p.checkpoint === 'finish');
     if (finish !== undefined) return truth.finish(finish.at, follower.shown(finish.at));
     if (world.at % LOOK_US !== 0) continue;
+    if (world.at % CHECK_US === 0) feed([clockAt(world.at, 'pps')]);
     const error = follower.shown(world.at);
     truth.look(world.at, world.car.x, error);
     if (error !== null) shown.late = error.timeError - error.planned;
@@ -56,6 +59,14 @@ export function driveOnce(setting: Setting, method: Method, seed: number, rates:
   }
   throw new Error(`${setting.title}, ${method}, seed ${seed}: never reached the finish`);
 }
+
+const clockAt = (at: number, source: 'exchange' | 'pps'): NewObservation => ({
+  type: 'clock.v1',
+  at,
+  source,
+  officialMs: RELEASE_MS + (at - RELEASE_US) / 1000,
+  uncertaintyMs: 1,
+});
 
 function makeWorld(setting: Setting, method: Method, seed: number, pack: Pack, rates: DriveRates): DriveWorld {
   const { parameters, navigator, lead } = setting;
