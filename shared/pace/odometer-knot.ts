@@ -23,6 +23,7 @@ export function knot(
     g,
     stillAt: o.stillAt,
     pulseMetres: o.mode === 'wheel' ? metresPerPulse : 0,
+    interval: o.mode === 'wheel' ? o.wheel.since : 0,
   });
   const traced = addKnot(o.track, at, w, g, isLaunching(o.launches) || launch !== 'none');
   return traced || launch !== 'none' || rewritten !== null ? { traced, launch, rewritten, node: false } : UNREMARKABLE;

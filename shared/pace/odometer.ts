@@ -1,14 +1,13 @@
-import type { Aids } from '#shared/course/race-class.ts';
-import type { PulseV1 } from '#shared/journal/observation.ts';
-import { type Gnss, gnssMetresAt, makeGnss } from '#shared/pace/gnss.ts';
-import { handBack, noteGnss } from '#shared/pace/gnss-source.ts';
+import { type Gnss, makeGnss } from '#shared/pace/gnss.ts';
 import { type LaunchEvent, type LaunchWatch, makeLaunchWatch } from '#shared/pace/launch.ts';
-import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
+import { makePulseGap, type PulseGap } from '#shared/pace/pulse-gap.ts';
+import { makeSecondWheel, type SecondWheel } from '#shared/pace/second-wheel.ts';
 import { makeSourceComparison, type SourceComparison } from '#shared/pace/source-comparison.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
 import { makeSecondLook, type SecondLook } from '#shared/pace/source-nodes.ts';
-import { makeTrack, rateNow, type Track } from '#shared/pace/track.ts';
-import { makeWheelChannel, takeRecord, type WheelChannel } from '#shared/pace/wheel.ts';
+import { makeTrack, type Track } from '#shared/pace/track.ts';
+import { makeWheelChannel, type WheelChannel } from '#shared/pace/wheel.ts';
+import { makeWheelDirection, type WheelDirection } from '#shared/pace/wheel-direction.ts';
 
 /**
  * Raw distance from whatever is permitted and alive: the wheel's count first, GNSS where there is no wheel or it fell silent.
@@ -17,6 +16,10 @@ import { makeWheelChannel, takeRecord, type WheelChannel } from '#shared/pace/wh
 export interface Odometer {
   mode: 'none' | 'wheel' | 'gnss';
   readonly wheel: WheelChannel;
+  /** What the measuring wheel's sensor misses. */
+  readonly gap: PulseGap;
+  readonly second: SecondWheel;
+  readonly direction: WheelDirection;
   readonly gnss: Gnss;
   readonly track: Track;
   readonly launches: LaunchWatch;
@@ -33,6 +36,8 @@ export interface Odometer {
   gnssZero: number;
   /** Distance that nothing measured, or only GNSS where the wheel slipped: instants and one sigma in metres. */
   losses: { at: number; sigma: number; by?: 'slip' }[];
+  /** Gaps of the count that were filled, and when last. */
+  fills: { count: number; metres: number; at: number | null };
   /** Comparisons with GNSS, in order of instant. */
   sourceNodes: SourceNode[];
   /** Where the comparing stands, and what it taught. */
@@ -59,6 +64,9 @@ export interface OdometerChange {
 export const makeOdometer = (): Odometer => ({
   mode: 'none',
   wheel: makeWheelChannel(),
+  gap: makePulseGap(),
+  second: makeSecondWheel(),
+  direction: makeWheelDirection(),
   gnss: makeGnss(),
   track: makeTrack(),
   launches: makeLaunchWatch(),
@@ -69,6 +77,7 @@ export const makeOdometer = (): Odometer => ({
   bridge: null,
   gnssZero: 0,
   losses: [],
+  fills: { count: 0, metres: 0, at: null },
   sourceNodes: [],
   secondLook: makeSecondLook(),
   comparison: makeSourceComparison(),
@@ -78,54 +87,3 @@ export const makeOdometer = (): Odometer => ({
   bridges: 0,
   otherRecords: 0,
 });
-
-/** Unchanged for longer than this is a rest. */
-const RESTED_US = 700_000;
-
-/** Takes a record of a wheel channel; only the measuring one counts. */
-export function takePulse(o: Odometer, pulse: PulseV1, channel: number, aids: Aids, metresPerPulse: number): OdometerChange {
-  if (!aids.wheel) return UNREMARKABLE;
-  if (pulse.channel !== channel) {
-    o.otherRecords++;
-    return UNREMARKABLE;
-  }
-  const { wheel } = o;
-  const before = wheel.at;
-  const verdict = takeRecord(wheel, pulse, metresPerPulse);
-  if (verdict === 'same' && o.mode === 'wheel') o.stillAt = wheel.at;
-  if (verdict === 'held' || verdict === 'stale' || verdict === 'same') return UNREMARKABLE;
-  o.usedWheel = true;
-  if (o.mode === 'gnss') return handBack(o, verdict, metresPerPulse);
-  if (verdict === 'restarted') return restart(o, before, metresPerPulse);
-  o.mode = 'wheel';
-  if (verdict === 'first') {
-    o.wheelKnot = { at: wheel.at, total: wheel.total };
-    return knot(o, wheel.at, o.w, o.g, metresPerPulse);
-  }
-  const pulses = wheel.total - o.wheelKnot.total;
-  // one pulse more may have been on its way all the time; several were not, and neither was one after a rest
-  if (Math.abs(pulses) > 1 || o.stillAt - o.wheelKnot.at > RESTED_US) keepStill(o);
-  o.wheelKnot.at = wheel.at;
-  o.wheelKnot.total = wheel.total;
-  return knot(o, wheel.at, o.w + pulses, o.g, metresPerPulse);
-}
-
-/** The box restarted between two records, or another took over: GNSS may know the gap, else only what it has counted since is known. */
-function restart(o: Odometer, before: number, metresPerPulse: number): OdometerChange {
-  const { wheel, gnss } = o;
-  const gap = (wheel.at - before) / 1e6;
-  const from = Math.max(before, o.wheelKnot.at);
-  const [g0, g1] = [gnssMetresAt(gnss, from), gnssMetresAt(gnss, wheel.at)];
-  const covered = gnss.recent.length > 1 && (gnss.recent[0] as { at: number }).at <= from && g0 !== null && g1 !== null;
-  const metres = covered ? Math.max(0, g1 - g0) : 0;
-  if (covered) noteGnss(o);
-  else noteLoss(o, wheel.at, Math.abs(rateNow(o.track)) * metresPerPulse * gap);
-  const w = covered ? o.w : o.w + (wheel.total - o.wheelKnot.total);
-  o.wheelKnot = { at: wheel.at, total: wheel.total };
-  return knot(o, wheel.at, w, o.g + metres, metresPerPulse);
-}
-
-/** A car that had not moved lost nothing. */
-function noteLoss(o: Odometer, at: number, sigma: number): void {
-  if (sigma > 0) o.losses.push({ at, sigma });
-}

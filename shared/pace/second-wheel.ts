@@ -30,7 +30,7 @@ const WENT_ON_PULSES = 3;
 const WENT_ON_M = 1;
 const WENT_ON_SHARE = 0.3;
 /** Before the ratio is learnt a pulse may be this much shorter than one of the measuring wheel. */
-const UNKNOWN_SHARE = 0.1;
+const UNKNOWN_SHARE = 1e-4;
 const RESTED_US = 700_000;
 /** Metres through the learnt ratio err by about this share. */
 const RATIO_SHARE = 0.004;
@@ -55,6 +55,7 @@ export function takeSecond(o: Odometer, pulse: PulseV1, metresPerPulse: number):
   }
   if (second.standing === null && !takesOver(o, metresPerPulse)) {
     if (o.gap.phase === 'steady' && pairUp(pair, o.gap, channel)) compareWheels(pair, metresPerPulse);
+    channel.forward = Math.sign(pair.ratio ?? 0);
     return UNREMARKABLE;
   }
   return standOn(o, verdict === 'moved', pair.ratio as number, metresPerPulse);

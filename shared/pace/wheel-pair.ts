@@ -83,7 +83,7 @@ export function compareWheels(pair: WheelPair, metresPerPulse: number): void {
   from.first = pair.first;
   from.second = pair.second;
   if (ratio !== null)
-    judge(pair, (first - ratio * other) * metresPerPulse, longest * metresPerPulse, (2 + Math.abs(ratio)) * metresPerPulse);
+    judge(pair, (first - ratio * other) * metresPerPulse, longest * metresPerPulse, (1 + Math.abs(ratio)) * metresPerPulse);
   if (other !== 0 && first > 0) learn(pair, first / other);
 }
 

@@ -8,6 +8,7 @@ import { restartGap, watchGap } from '#shared/pace/pulse-gap.ts';
 import { returnToFirst, takeSecond } from '#shared/pace/second-wheel.ts';
 import { rateNow } from '#shared/pace/track.ts';
 import { beginAnew, takeRecord } from '#shared/pace/wheel.ts';
+import { beginDirection, findDirection } from '#shared/pace/wheel-direction.ts';
 
 /** The wheel as the source of distance: its count, what it missed, and the second wheel beside it. */
 
@@ -48,11 +49,12 @@ function takeFirst(o: Odometer, pulse: PulseV1, metresPerPulse: number): Odomete
   if (verdict === 'held' || verdict === 'stale') return UNREMARKABLE;
   if (verdict === 'same' || verdict === 'moved') {
     if (verdict === 'moved') o.usedWheel = true;
-    if (o.mode === 'wheel') return takeCount(o, before, wheel.total - total, metresPerPulse);
+    if (o.mode === 'wheel') return takeCount(o, wheel.total - total, metresPerPulse);
     if (verdict === 'same') return UNREMARKABLE;
   }
   o.usedWheel = true;
   restartGap(o.gap, wheel.at, wheel.total);
+  if (wheel.forward === 0) beginDirection(o);
   if (o.mode === 'gnss') return handBack(o, verdict, metresPerPulse);
   if (verdict === 'restarted')
     return o.second.standing === null ? restart(o, before, metresPerPulse) : returnToFirst(o, 0, false, metresPerPulse);
@@ -61,11 +63,12 @@ function takeFirst(o: Odometer, pulse: PulseV1, metresPerPulse: number): Odomete
   return knot(o, wheel.at, o.w, o.g, metresPerPulse);
 }
 
-function takeCount(o: Odometer, before: number, step: number, metresPerPulse: number): OdometerChange {
+function takeCount(o: Odometer, step: number, metresPerPulse: number): OdometerChange {
   const { wheel, gap } = o;
+  const turned = wheel.forward === 0 && step !== 0 && findDirection(o, metresPerPulse);
   const help = o.second.standing !== null ? 'second' : gap.phase === 'open' && isAtRest(o) ? 'rest' : 'none';
   const { at, total } = wheel;
-  const verdict = watchGap(gap, at, total, step, at - before, help, metresPerPulse);
+  const verdict = watchGap(gap, at, total, step, wheel.since, help, metresPerPulse);
   if (verdict === 'hold') return UNREMARKABLE;
   if (help === 'second') {
     const isBack = verdict !== 'count' || (step !== 0 && gap.phase === 'steady' && gap.at === at);
@@ -81,7 +84,9 @@ function takeCount(o: Odometer, before: number, step: number, metresPerPulse: nu
   if (Math.abs(pulses) > 1 || o.stillAt - o.wheelKnot.at > RESTED_US) keepStill(o);
   o.wheelKnot.at = at;
   o.wheelKnot.total = total;
-  return knot(o, at, o.w + pulses, o.g, metresPerPulse);
+  const change = knot(o, at, o.w + pulses, o.g, metresPerPulse);
+  // all since the baseline was told anew
+  return turned ? { ...change, launch: 'complete' } : change;
 }
 
 /** GNSS says that the car hardly moves. */

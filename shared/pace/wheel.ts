@@ -11,8 +11,13 @@ export interface WheelChannel {
   at: number;
   count: number;
   boxUs: number;
-  /** Unwrapped count since the first record. */
+  /** From the record before to that one, microseconds. */
+  since: number;
+  /** Unwrapped count since the first record, times `sign`: −1 for a sensor that counts down while the car goes forwards. */
   total: number;
+  sign: 1 | -1;
+  /** Sign of the raw count of a car that goes forwards, once that is known; 0 before. */
+  forward: number;
   suspect: { at: number; count: number; boxUs: number } | null;
   /** The next record comes from another box: it is a baseline, whatever it says. */
   anew: boolean;
@@ -27,7 +32,10 @@ export const makeWheelChannel = (): WheelChannel => ({
   at: 0,
   count: 0,
   boxUs: 0,
+  since: 0,
   total: 0,
+  sign: 1,
+  forward: 0,
   suspect: null,
   anew: false,
   records: 0,
@@ -55,25 +63,26 @@ interface Mark {
 /** Signed difference of two counters that wrap at 2^32, by the shorter way round. */
 export const wrappedDifference = (later: number, earlier: number): number => (later - earlier) | 0;
 
-function plausible(pulses: number, us: number, metresPerPulse: number): boolean {
+function plausible(pulses: number, us: number, forward: number, metresPerPulse: number): boolean {
   const slack = Math.max(SLACK_PULSES * metresPerPulse, SLACK_M);
-  const fastest = pulses < 0 ? FASTEST_BACKWARDS : FASTEST;
+  const fastest = pulses * forward < 0 ? FASTEST_BACKWARDS : FASTEST;
   return Math.abs(pulses) * metresPerPulse <= (fastest * us) / 1e6 + slack;
 }
 
 /** Does `next` follow from `last`, by both clocks and by what a car can do? */
-function follows(last: Mark, next: Mark, metresPerPulse: number): boolean {
+function follows(last: Mark, next: Mark, forward: number, metresPerPulse: number): boolean {
   const us = next.at - last.at;
   const boxUs = (next.boxUs - last.boxUs) >>> 0;
   if (Math.abs((boxUs - us) | 0) > CLOCKS_APART_US) return false;
-  return plausible(wrappedDifference(next.count, last.count), Math.max(us, boxUs), metresPerPulse);
+  return plausible(wrappedDifference(next.count, last.count), Math.max(us, boxUs), forward, metresPerPulse);
 }
 
 function believe(c: WheelChannel, o: Mark, pulses: number): WheelVerdict {
+  c.since = o.at - c.at;
   c.at = o.at;
   c.count = o.count;
   c.boxUs = o.boxUs;
-  c.total += pulses;
+  c.total += c.sign * pulses;
   c.suspect = null;
   c.records++;
   return pulses === 0 ? 'same' : 'moved';
@@ -83,6 +92,7 @@ function believe(c: WheelChannel, o: Mark, pulses: number): WheelVerdict {
 export function beginAnew(c: WheelChannel): void {
   c.anew = c.seen;
   c.suspect = null;
+  c.forward = 0;
 }
 
 /** Takes one record of this channel. `metresPerPulse` only judges what is plausible. */
@@ -98,7 +108,8 @@ export function takeRecord(c: WheelChannel, o: PulseV1, metresPerPulse: number):
     believe(c, o, 0);
     return 'restarted';
   }
-  if (follows(c, o, metresPerPulse)) {
+  // fast backwards is believed of two records that agree, and while the way round is not known
+  if (follows(c, o, c.forward === 0 ? c.sign : c.forward, metresPerPulse)) {
     if (c.suspect !== null) c.wild++;
     return believe(c, o, wrappedDifference(o.count, c.count));
   }
@@ -108,7 +119,7 @@ export function takeRecord(c: WheelChannel, o: PulseV1, metresPerPulse: number):
     c.wild++;
     return 'held';
   }
-  if (suspect === null || o.at < suspect.at || !follows(suspect, o, metresPerPulse)) {
+  if (suspect === null || o.at < suspect.at || !follows(suspect, o, c.forward, metresPerPulse)) {
     if (suspect !== null) c.wild++;
     c.suspect = { at: o.at, count: o.count, boxUs: o.boxUs };
     return 'held';
@@ -121,10 +132,10 @@ function settle(c: WheelChannel, suspect: Mark, o: Mark, metresPerPulse: number)
   const gap = suspect.at - c.at;
   const pulses = wrappedDifference(suspect.count, c.count);
   // a box that restarted has been running for less than the gap, and has counted from nothing since
-  const young = suspect.boxUs <= gap + CLOCKS_APART_US && plausible(suspect.count, suspect.boxUs, metresPerPulse);
-  if (!young && plausible(pulses, gap, metresPerPulse)) return believe(c, o, pulses + wrappedDifference(o.count, suspect.count));
+  const young = suspect.boxUs <= gap + CLOCKS_APART_US && plausible(suspect.count | 0, suspect.boxUs, c.forward, metresPerPulse);
+  if (!young && plausible(pulses, gap, c.forward, metresPerPulse)) return believe(c, o, pulses + wrappedDifference(o.count, suspect.count));
   c.restarts++;
   // what a restarted box has counted since is measured; what went by before is lost
-  believe(c, o, (young ? suspect.count : 0) + wrappedDifference(o.count, suspect.count));
+  believe(c, o, (young ? suspect.count | 0 : 0) + wrappedDifference(o.count, suspect.count));
   return 'restarted';
 }
