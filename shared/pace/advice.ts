@@ -30,7 +30,7 @@ export function advise(state: RunState): void {
   shown.advisedAt = now;
   const s = situationAt(state, now);
   rememberBand(state, s);
-  shown.plan.noReturn = null;
+  if (s.phase !== 'running') shown.plan.noReturn = null;
   if (s.phase !== 'running' && s.phase !== 'countdown' && s.phase !== 'grid' && s.phase !== 'held') shown.hold = null;
   else if (state.acts.escort || s.distance >= s.model.finish) shown.hold = null;
   else {

@@ -8,7 +8,7 @@ import type { RunState } from '#shared/pace/run-state.ts';
 import { shownStep } from '#shared/pace/shown-speed.ts';
 import type { Situation } from '#shared/pace/situation.ts';
 
-/** Once a second under way: does the plan in force still ask for what the hold speed asks, and is zero about to slip away? */
+/** Every ten seconds under way: does the plan in force still ask for what the hold speed asks, and is zero about to slip away? */
 
 /** Pace is judged over this long: no driver keeps to a step of the shown speed from one second to the next. */
 const PACE_US = 10_000_000;
@@ -18,21 +18,24 @@ const IN_FORCE_US = 60_000_000;
 const NEAR_S = 60;
 /** Holding on must cost more than this at the finish to be worth a word, seconds. */
 const WORTH_S = 0.5;
-/** Within this of its pace of late the car is neither speeding up nor slowing down, m/s. */
+/** Two paces and the present speed within this of each other: neither speeding up nor slowing down, m/s. */
 const STEADY = 1.5;
 
 /** Part of the fold. */
 export function reviewPlan(state: RunState, s: Situation): void {
-  const { pace } = state.shown.plan;
+  const { plan } = state.shown;
+  const { pace } = plan;
+  if (plan.noReturn !== null && s.at >= plan.noReturn.at) plan.noReturn = null;
   const since = s.at - pace.at;
-  if (since >= PACE_US) {
-    const v = ((s.distance - pace.x) * 1e6) / since;
-    if (since < 2 * PACE_US) takePace(state, s, v);
-    pace.at = s.at;
-    pace.x = s.distance;
-    pace.v = v;
-  }
-  state.shown.plan.noReturn = noReturnNear(state.shown.plan, s);
+  if (since < PACE_US) return;
+  const v = ((s.distance - pace.x) * 1e6) / since;
+  // a longer one had a stop in it
+  if (since < 2 * PACE_US) takePace(state, s, v);
+  const steady = s.speed !== null && Math.abs(v - pace.v) < STEADY && Math.abs(v - s.speed) < STEADY;
+  plan.noReturn = steady ? noReturnNear(s, v) : null;
+  pace.at = s.at;
+  pace.x = s.distance;
+  pace.v = v;
 }
 
 /**
@@ -47,8 +50,8 @@ function takePace({ shown, pack }: RunState, s: Situation, v: number): void {
   plan.origin = { at: s.at, x: s.distance, v: Math.max(0, s.speed), t: s.elapsed, version: s.model.version };
 }
 
-function noReturnNear({ pace }: PlanMemory, { model, at, distance, speed, elapsed }: Situation): PlanMemory['noReturn'] {
-  if (speed === null || elapsed === null || Math.abs(speed - pace.v) > STEADY) return null;
+function noReturnNear({ model, at, distance, elapsed }: Situation, speed: number): PlanMemory['noReturn'] {
+  if (elapsed === null) return null;
   const { home, targetTime }: LivePlanner = model.live;
   const first = pieceAt(home.pieces, distance);
   const top = model.top ?? TOP_WITHOUT_CAP;

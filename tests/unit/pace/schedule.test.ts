@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { makeSchedule, targetSpeedAt, targetTimeAt } from '#shared/pace/schedule.ts';
-import { book, km, pack } from '#tests/unit/pace/packs.ts';
+import { book, km, pack, place } from '#tests/unit/pace/packs.ts';
 
 const raceClass = pack.raceClass;
 
@@ -60,5 +60,36 @@ describe('schedule', () => {
     expect(targetTimeAt(s, 15_000)).toBeCloseTo(362.5, 9);
     expect(targetTimeAt(s, 29_500)).toBe(725);
     expect(() => makeSchedule(book, raceClass, { finish: 0 })).toThrow(RangeError);
+  });
+});
+
+describe('time for distance at a given average', () => {
+  // by definition: international mile 1609.344 m (yard-and-pound agreement of 1959), hour 3600 s; so every figure is a plain fraction
+  const rows = [
+    ['1', 'mi', '180', 'km/h', 32.18688],
+    ['1', 'mi', '100', 'mph', 36],
+    ['1', 'mi', '60', 'mph', 60],
+    ['90', 'mi', '110', 'mph', 32_400 / 11],
+    ['90', 'mi', '95', 'mph', 64_800 / 19],
+    ['1', 'km', '180', 'km/h', 20],
+    ['61', 'km', '180', 'km/h', 1_220],
+    ['120', 'km', '175', 'km/h', 17_280 / 7],
+    ['100', 'km', '100', 'mph', 3_600_000 / 1609.344],
+    ['33.550', 'mi', '115', 'mph', 24_156 / 23],
+  ] as const;
+
+  it.each(rows)('%s %s at %s %s', (length, unit, average, per, expected) => {
+    const to = { text: length, unit };
+    const s = makeSchedule(
+      { ...book, unit, checkpoints: [place('start', 'start', '0', unit), place('finish', 'finish', length, unit)] },
+      {
+        ...raceClass,
+        targetTimeMs: expected * 1000,
+        sections: [{ kind: 'average', to, average: { text: average, unit: per } }],
+      },
+    );
+    // the sections alone: what they lack to the target given is nothing
+    expect(Math.abs(s.difference)).toBeLessThan(1e-9);
+    expect(targetTimeAt(s, s.finish / 2)).toBeCloseTo(expected / 2, 9);
   });
 });
