@@ -34,13 +34,12 @@ export async function runTasks(tasks: readonly Task[], threads: number, done: (c
 
 function ask(worker: Worker, task: Task): Promise<Outcome[]> {
   return new Promise((resolve, reject) => {
-    const finish = (act: () => void): void => {
-      worker.removeAllListeners();
-      act();
+    const answered = (outcomes: Outcome[]): void => {
+      worker.off('error', reject);
+      resolve(outcomes);
     };
-    worker.once('message', (outcomes: Outcome[]) => finish(() => resolve(outcomes)));
-    worker.once('error', (error) => finish(() => reject(error)));
-    worker.once('exit', (code) => finish(() => reject(new Error(`a thread of the bench ended with ${code}`))));
+    worker.once('message', answered);
+    worker.once('error', reject);
     worker.postMessage(task);
   });
 }
