@@ -26,7 +26,7 @@ const REMEMBERED = 12;
 /** The whole second of an edge is told by a clock that is surer than this, one sigma, ms: 0.4 s at two and a half. */
 const TELLS_SECOND_MS = 160;
 /** Floors of what a source's samples have in common, ms: a receiver's latency, a person's rhythm, the wire of the box. */
-const FLOOR = { nmea: 80, tap: 12, pps: 1 } as const;
+const FLOOR = { nmea: 80, tap: 12, pps: 1.5 } as const;
 /** Share of a stated variance that a path or a person repeats in every sample: asymmetry, anticipation. */
 const COMMON = 0.8;
 
