@@ -44,7 +44,7 @@ const WHITE = 0.08;
 const WANDER = 0.002;
 /** The ratio wanders as tyres warm and receivers wander: variance per second. So does the lateness, s²/s. */
 const RATIO_WANDER = 1e-6 / 60;
-const LAG_WANDER = 2e-4 / 60;
+const LAG_WANDER = 8e-5 / 60;
 /** Noise of one reading against the wheel: instants (s), metres. */
 const INSTANT = 0.004;
 const METRES = 0.1;
@@ -97,6 +97,13 @@ export function learn(f: Latency, reading: number, noise: number): boolean {
 export function rebase(f: Latency, reading: number, noise: number): void {
   f.reading = reading;
   f.p = [noise, 0, 0, f.p[3], f.p[4], f.p[5]];
+}
+
+/** Lateness is as unknown as before anything was learnt. */
+export function doubtLag(f: Latency, sigma: number): void {
+  f.p[5] = Math.max(f.p[5], sigma * sigma);
+  f.p[2] = 0;
+  f.p[4] = 0;
 }
 
 /** Never believed to be better known than this, s. */

@@ -42,7 +42,7 @@ interface LastFix {
 /** Lateness before any has been measured, µs. Judgement, no source: a receiver's sentences, a tablet's own location. */
 export const LAG_BEFORE = {
   nmea: { us: 150_000, sigmaUs: 150_000 },
-  geolocation: { us: 600_000, sigmaUs: 400_000 },
+  geolocation: { us: 900_000, sigmaUs: 500_000 },
 } as const;
 
 export const makeGnss = (): Gnss => ({

@@ -33,8 +33,10 @@ function gnssNow(o: Odometer, at: number, age: number): Now {
   if (fix === undefined) return { w: o.w, g: o.g, speed: null, source: 'none' };
   const silent = at - fix.at;
   const speed = fix.speed < AT_REST ? 0 : fix.speed;
-  if (silent > GNSS_FRESH_US) return { w: o.w, g: o.g + (speed * CARRY_US) / 1e6, speed: null, source: 'none' };
-  return { w: o.w, g: o.g + (speed * Math.min(age, CARRY_US)) / 1e6, speed, source: 'gnss' };
+  // the last knot is where the car was when the fix was true, not when it came
+  const most = CARRY_US + o.gnss.lag.us;
+  if (silent > GNSS_FRESH_US) return { w: o.w, g: o.g + (speed * most) / 1e6, speed: null, source: 'none' };
+  return { w: o.w, g: o.g + (speed * Math.min(age, most)) / 1e6, speed, source: 'gnss' };
 }
 
 /** Last record of the wheel that measures now. */

@@ -99,6 +99,11 @@ export type Warning =
   | {
       readonly code:
         | 'wheel-lost'
+        | 'wheel-slipping'
+        | 'wheel-losing'
+        | 'pulses-filled'
+        | 'second-wheel'
+        | 'wheels-disagree'
         | 'gnss-lost'
         | 'no-distance'
         | 'clock-unchecked'

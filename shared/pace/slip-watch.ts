@@ -22,9 +22,10 @@ export interface Slip {
 
 interface Mark {
   readonly at: number;
-  /** Speed and the expected reading's variance then. */
+  /** Speed, the expected reading's variance, and the ratio held then. */
   readonly v: number;
   readonly variance: number;
+  readonly ratio: number;
   /** Expected reading now, and nominal metres by the wheel since. */
   reading: number;
   wheel: number;
@@ -42,28 +43,33 @@ const LEAST_M = 1.2;
 /** Samples in a row that agree end it. */
 const QUIET = 3;
 const AGREES = 2.5;
+/** A slip that lasts, or comes again at once, is another ratio, which may be off by this. */
+const LONGEST_US = 15_000_000;
+const AGAIN_US = 8_000_000;
+const DOUBT = 0.01;
 /** More than this in one look is no slip: one of the two is broken, and what to believe is not decided here. */
 const MOST_M = 60;
 
-/** Carries the marks on by what the wheel says, m, and the variance it and GNSS gathered. */
-export function carryMarks(watch: SlipWatch, expected: number, wheel: number, gathered: number): void {
+/** Carries the marks on: nominal metres by the wheel, metres by others, and the variance gathered, m². */
+export function carryMarks(watch: SlipWatch, wheel: number, other: number, gathered: number): void {
   for (const mark of watch.marks) {
-    mark.reading += expected;
+    mark.reading += mark.ratio * wheel + other;
     mark.wheel += wheel;
     mark.gathered += gathered;
   }
 }
 
-/** A new mark, and the oldest dropped. `variance`: of the reading expected here. */
-function setMark(watch: SlipWatch, at: number, reading: number, v: number, variance: number): void {
-  watch.marks.push({ at, v, variance, reading, wheel: 0, gathered: 0 });
+/** A new mark where the filter stands, and the oldest dropped. */
+function setMark(watch: SlipWatch, f: Latency, at: number, v: number): void {
+  watch.marks.push({ at, v, variance: f.p[0], ratio: f.ratio, reading: f.reading, wheel: 0, gathered: 0 });
   if (watch.marks.length > 2) watch.marks.shift();
 }
 
 /** Forgets the past: from here on the two agree by definition. */
-export function restartMarks(watch: SlipWatch, at: number, reading: number, v: number, variance: number): void {
+export function agreeFrom(watch: SlipWatch, f: Latency, { at, reading, v, noise }: Reading): void {
+  rebase(f, reading, noise);
   watch.marks = [];
-  setMark(watch, at, reading, v, variance);
+  setMark(watch, f, at, v);
 }
 
 /** One reading. */
@@ -73,6 +79,8 @@ export interface Reading {
   readonly v: number;
   /** Its noise against the wheel, m². */
   readonly noise: number;
+  /** Lateness is held to be known no better than this here, s: what speed changes make of it is no slip. */
+  readonly late: number;
 }
 
 /** Metres to be added to the wheel's from here on, with one sigma; null where the two agree. */
@@ -80,23 +88,28 @@ export function judge(watch: SlipWatch, f: Latency, r: Reading): { readonly metr
   const mark = watch.marks[0];
   if (mark === undefined) return null;
   const off = r.reading - mark.reading;
-  const variance = mark.variance + mark.gathered + r.noise + mark.wheel * mark.wheel * f.p[3] + (r.v - mark.v) ** 2 * f.p[5];
+  const variance =
+    mark.variance + mark.gathered + r.noise + mark.wheel * mark.wheel * f.p[3] + (r.v - mark.v) ** 2 * Math.max(f.p[5], r.late * r.late);
   const sigma = Math.sqrt(variance);
   if (watch.active === null) {
     const last = watch.marks[watch.marks.length - 1] as Mark;
     if (Math.abs(off) <= Math.max(GATE * sigma, LEAST_M)) {
-      if (r.at - last.at >= MARK_US) setMark(watch, r.at, f.reading, r.v, f.p[0]);
+      if (r.at - last.at >= MARK_US) setMark(watch, f, r.at, r.v);
       return null;
     }
     watch.active = { from: mark.at, metres: 0, quiet: 0 };
-    doubtRatio(f, off, mark.wheel);
+    const before = watch.done[watch.done.length - 1];
+    if (before !== undefined && mark.at - before.to < AGAIN_US) doubtRatio(f);
+    // what was learnt since is the slip's
+    else f.ratio = mark.ratio;
   } else watch.active.quiet = Math.abs(off) <= AGREES * sigma ? watch.active.quiet + 1 : 0;
-  rebase(f, r.reading, r.noise);
-  restartMarks(watch, r.at, r.reading, r.v, r.noise);
+  agreeFrom(watch, f, r);
   const { active } = watch;
   const metres = Math.abs(off) > MOST_M ? 0 : off;
   active.metres += metres;
-  if (active.quiet >= QUIET) finish(watch, r.at);
+  const lasts = r.at - active.from > LONGEST_US;
+  if (lasts) doubtRatio(f);
+  if (lasts || active.quiet >= QUIET) finish(watch, r.at);
   return { metres, sigma };
 }
 
@@ -108,9 +121,8 @@ export function finish(watch: SlipWatch, at: number): void {
   watch.active = null;
 }
 
-/** What looks like a slip and goes on is another ratio: it may be learnt again afterwards. */
-function doubtRatio(f: Latency, off: number, wheel: number): void {
-  const share = wheel > 1 ? off / wheel / 2 : 0;
-  f.p[3] = Math.max(f.p[3], Math.min(share * share, 1e-4));
+/** The ratio is learnt anew. */
+function doubtRatio(f: Latency): void {
+  f.p[3] = Math.max(f.p[3], DOUBT * DOUBT);
   f.p[4] = 0;
 }

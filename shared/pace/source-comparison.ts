@@ -1,9 +1,9 @@
 import type { FixV1 } from '#shared/journal/observation.ts';
 import { type GnssKnot, LAG_BEFORE } from '#shared/pace/gnss.ts';
-import { gripNoise, type Latency, lagSigma, learn, makeLatency, predict, readingNoise, rebase } from '#shared/pace/gnss-latency.ts';
+import { doubtLag, gripNoise, type Latency, lagSigma, learn, makeLatency, predict, readingNoise } from '#shared/pace/gnss-latency.ts';
 import type { Odometer } from '#shared/pace/odometer.ts';
-import { carryMarks, finish, judge, makeSlipWatch, restartMarks, type SlipWatch } from '#shared/pace/slip-watch.ts';
-import { type Knots, rawAt } from '#shared/pace/track.ts';
+import { agreeFrom, carryMarks, finish, judge, makeSlipWatch, type SlipWatch } from '#shared/pace/slip-watch.ts';
+import { addKnot, type Knots, lastKnotAt, rawAt } from '#shared/pace/track.ts';
 
 /** GNSS held against the wheel, about twice a second: lateness and ratio are learnt from it, slips are caught by it. */
 export interface SourceComparison {
@@ -14,6 +14,8 @@ export interface SourceComparison {
   last: { at: number; w: number; g: number; v: number } | null;
   /** How often either source had failed by then. */
   failures: number;
+  /** Readings in a row that taught nothing. */
+  refused: number;
   /** Σ of squared fix intervals since then, s². */
   spread: number;
 }
@@ -24,6 +26,7 @@ export const makeSourceComparison = (): SourceComparison => ({
   via: 'nmea',
   last: null,
   failures: 0,
+  refused: 0,
   spread: 0,
 });
 
@@ -34,6 +37,10 @@ export interface WheelKind {
 }
 
 const EVERY_US = 400_000;
+/** See `Reading.late`. A tablet's own location is smoothed, and by how much is anyone's guess. */
+const LATE = { nmea: 0.03, geolocation: 1 } as const;
+const DOUBT_S = 0.2;
+const REFUSED = 6;
 /** A pause longer than this in the comparing begins anew. */
 const PAUSE_US = 3_000_000;
 
@@ -45,6 +52,8 @@ export function compareSources(o: Odometer, fix: GnssKnot, before: GnssKnot | un
   const via = o.gnss.last?.via ?? 'nmea';
   c.spread += before === undefined ? 0 : ((fix.at - before.at) / 1e6) ** 2;
   if (c.last !== null && fix.at - c.last.at < EVERY_US) return;
+  // what the count fell short of is filled in a moment, and compared then
+  if (o.gap.phase === 'open') return;
   if (via !== c.via) {
     c.filter = makeLatency(LAG_BEFORE[via].us / 1e6, LAG_BEFORE[via].sigmaUs / 1e6);
     c.via = via;
@@ -61,8 +70,7 @@ export function compareSources(o: Odometer, fix: GnssKnot, before: GnssKnot | un
   const here = { at: fix.at, w: raw.w, g: raw.g, v: fix.speed };
   if (last === null || fix.at - last.at > PAUSE_US || o.gnss.brokenAt > last.at || c.failures !== failuresOf(o)) {
     finish(c.slip, fix.at);
-    rebase(c.filter, fix.metres, noise);
-    restartMarks(c.slip, fix.at, fix.metres, fix.speed, noise);
+    agreeFrom(c.slip, c.filter, { at: fix.at, reading: fix.metres, v: fix.speed, noise, late: 0 });
   } else take(o, last, here, fix, noise, wheel);
   c.failures = failuresOf(o);
   c.spread = 0;
@@ -76,15 +84,23 @@ function take(o: Odometer, last: Sample, here: Sample, fix: GnssKnot, noise: num
   const [dt, metres, other] = [(here.at - last.at) / 1e6, (here.w - last.w) * wheel.metresPerPulse, here.g - last.g];
   const grip = gripNoise(wheel.driven, Math.min(here.v, last.v));
   predict(filter, { wheel: metres, other, dv: here.v - last.v, v: here.v, dt, spread, perPulse: wheel.metresPerPulse, grip });
-  carryMarks(slip, filter.ratio * metres + other, metres, 0.0064 * spread + 0.002 * dt);
-  const verdict = judge(slip, filter, { at: here.at, reading: fix.metres, v: here.v, noise });
+  carryMarks(slip, metres, other, 0.0064 * spread + 0.002 * dt);
+  const { via } = o.comparison;
+  const reading = { at: here.at, reading: fix.metres, v: here.v, noise, late: LATE[via] };
+  const verdict = judge(slip, filter, reading);
   if (verdict !== null) {
     follow(o, here, verdict.metres, verdict.sigma);
     return;
   }
   if (here.v < 0.5 && last.v < 0.5) return;
   const lag = filter.lag;
-  learn(filter, fix.metres, noise);
+  const c = o.comparison;
+  c.refused = learn(filter, fix.metres, noise) ? 0 : c.refused + 1;
+  if (via === 'geolocation' && c.refused >= REFUSED) {
+    // neither a slip nor what was expected, again and again: lateness was held to be better known than it is
+    doubtLag(filter, DOUBT_S);
+    agreeFrom(slip, filter, reading);
+  }
   // the next sample looks the wheel up by the new lateness: so must this one have
   here.w -= ((filter.lag - lag) * here.v) / (filter.ratio * wheel.metresPerPulse);
   o.gnss.lag.us = Math.round(filter.lag * 1e6);
@@ -97,6 +113,7 @@ function follow(o: Odometer, here: Sample, metres: number, sigma: number): void 
   o.g += metres;
   here.g += metres;
   for (const knots of [o.track.recent, o.track.trace]) addFrom(knots, from, metres);
+  if ((lastKnotAt(o.track) ?? 0) < from) addKnot(o.track, from, o.w, o.g, false);
   const loss = o.losses[o.losses.length - 1];
   if (loss !== undefined && loss.by === 'slip' && here.at - loss.at < PAUSE_US) loss.at = from;
   else o.losses.push({ at: from, sigma, by: 'slip' });

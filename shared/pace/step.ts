@@ -46,7 +46,10 @@ function take(state: RunState, o: Observation): boolean {
       hearBox(state.clock, o.at, o.boxUs);
       return takeChange(state, takePulse(state.odometer, o, pack.wheel, pack.raceClass.aids, nominalMetres(state)));
     case 'fix.v1':
-      return takeChange(state, takeGnss(state.odometer, o, pack.raceClass.aids, state.now, nominalMetres(state), surveyedOf(state)));
+      return takeChange(
+        state,
+        takeGnss(state.odometer, o, pack.raceClass.aids, state.now, nominalMetres(state), surveyedOf(state), pack.wheel.driven === true),
+      );
     case 'button.v1':
       return pressButton(state, o);
     case 'clock.v1':

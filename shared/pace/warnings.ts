@@ -8,8 +8,12 @@ import type { Situation } from '#shared/pace/situation.ts';
 
 /** Over a limit by less than this is measurement, m/s. */
 const TOLERANCE = 0.3;
+/** How long the crew is told of what the wheel's sensor did. */
+const TOLD_US = 8_000_000;
 const WHEEL_SILENT_US = 2_000_000;
 const GNSS_SILENT_US = 3_000_000;
+/** A hairpin makes one wheel err by more than a metre: no news. */
+const WORTH_TELLING_M = 3;
 /** How long the crew is told of clocks that came apart. */
 const SLEPT_US = 60_000_000;
 /** How long the crew is told that a source of the official clock contradicted the others. */
@@ -19,6 +23,9 @@ export function warningsAt(state: RunState, s: Situation): Warning[] {
   const warnings: Warning[] = [];
   const moving = s.phase === 'running' || s.phase === 'stopped';
   if (wheelLost(state, s)) warnings.push({ code: 'wheel-lost' });
+  warnings.push(...wheelWarnings(state, s));
+  const gripped = grip(state);
+  if (gripped !== null) warnings.push({ code: gripped });
   if (gnssLost(state, s)) warnings.push({ code: 'gnss-lost' });
   if (moving && s.source === 'none') warnings.push({ code: 'no-distance' });
   const clock = state.clock.chosen?.source;
@@ -36,12 +43,29 @@ export function warningsAt(state: RunState, s: Situation): Warning[] {
   return warnings;
 }
 
+/** What the wheel's sensor misses now, or did a moment ago, and what its neighbour says of it. */
+function wheelWarnings({ odometer: { fills, gap, second } }: RunState, { at }: Situation): Warning[] {
+  const isRecent = (then: number | null): boolean => then !== null && at - then < TOLD_US;
+  const warnings: Warning[] = [];
+  if (second.standing !== null) warnings.push({ code: 'second-wheel' });
+  else if (gap.phase === 'open' || isRecent(fills.at)) warnings.push({ code: 'pulses-filled' });
+  if (isRecent(second.pair.disagreedAt)) warnings.push({ code: 'wheels-disagree' });
+  return warnings;
+}
+
 /** The class permits the wheel, it was there, and it is not the source now though the car moves or the port is gone. */
 function wheelLost(state: RunState, s: Situation): boolean {
   const { odometer, acts } = state;
   if (!odometer.usedWheel) return false;
   if (acts.sensorLostAt !== null && acts.sensorLostAt >= odometer.wheel.at) return true;
-  return odometer.mode === 'gnss' || (s.source === 'none' && s.at - odometer.wheel.at > WHEEL_SILENT_US);
+  return odometer.mode === 'gnss' || (s.source === 'none' && (odometer.gap.phase === 'lost' || s.at - odometer.wheel.at > WHEEL_SILENT_US));
+}
+
+/** The wheel counts more than the car drives, or less: distance follows GNSS meanwhile. */
+function grip({ odometer }: RunState): 'wheel-slipping' | 'wheel-losing' | null {
+  const { active } = odometer.comparison.slip;
+  if (active === null || odometer.mode !== 'wheel' || Math.abs(active.metres) < WORTH_TELLING_M) return null;
+  return active.metres < 0 ? 'wheel-slipping' : 'wheel-losing';
 }
 
 function gnssLost(state: RunState, s: Situation): boolean {

@@ -100,6 +100,16 @@ function warningText(warning: Warning, readout: Readout): string {
   switch (warning.code) {
     case 'wheel-lost':
       return readout.source === 'gnss' ? `GNSS now, ${sureText(readout.sigma)}` : 'wheel lost';
+    case 'pulses-filled':
+      return 'pulses missing: filled in';
+    case 'second-wheel':
+      return 'second wheel now';
+    case 'wheels-disagree':
+      return 'the wheels disagree';
+    case 'wheel-slipping':
+      return 'wheel slips: by GNSS';
+    case 'wheel-losing':
+      return 'wheel misses: by GNSS';
     case 'gnss-lost':
       return 'GNSS lost';
     case 'no-distance':

@@ -9,7 +9,7 @@ const motion = fromRest(2.5, 40, 0.4);
 const clock = [clockCheck(pack)];
 /** Sentences, and a tablet's own location, come this late where nothing tells how late they are. */
 const RECEIVER_S = 0.15;
-const TABLET_S = 0.6;
+const TABLET_S = 0.9;
 const aids = (change: Partial<Aids>) => withClass(pack, { aids: { ...pack.raceClass.aids, ...change } });
 const between = (list: NewObservation[], from: number, to: number): NewObservation[] =>
   list.filter((o) => o.at > us(from) && o.at < us(to));
