@@ -34,8 +34,8 @@ export interface Odometer {
   bridge: { at: number; w: number; g: number; total: number } | null;
   /** GNSS's own reading less `g`, while GNSS is the source. */
   gnssZero: number;
-  /** Distance that nothing measured, or only GNSS where the wheel slipped: instants and one sigma in metres. */
-  losses: { at: number; sigma: number; by?: 'slip' }[];
+  /** Distance that nothing measured, or only GNSS where the wheel slipped, or that was filled in: instants and one sigma in metres. */
+  losses: { at: number; sigma: number; by?: 'slip' | 'fill' }[];
   /** Gaps of the count that were filled, and when last. */
   fills: { count: number; metres: number; at: number | null };
   /** Comparisons with GNSS, in order of instant. */

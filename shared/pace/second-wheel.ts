@@ -107,7 +107,7 @@ export function returnToFirst(o: Odometer, rate: number, counted: boolean, metre
   const agrees = counted && Math.abs(own - carried) <= WENT_ON_PULSES + COUNT_AGREES * (carried - w);
   second.standing = null;
   second.pair.seen = false;
-  if (!agrees) o.losses.push({ at: wheel.at, sigma: RATIO_SHARE * (carried - w) * metresPerPulse });
+  if (!agrees) o.losses.push({ at: wheel.at, sigma: RATIO_SHARE * (carried - w) * metresPerPulse, by: 'fill' });
   o.wheelKnot.at = wheel.at;
   o.wheelKnot.total = wheel.total;
   return knot(o, Math.max(wheel.at, lastAt), agrees ? own : carried, o.g, metresPerPulse);

@@ -49,7 +49,7 @@ function wheelWarnings({ odometer: { fills, gap, second } }: RunState, { at }: S
   const warnings: Warning[] = [];
   if (second.standing !== null) warnings.push({ code: 'second-wheel' });
   else if (gap.phase === 'open' || isRecent(fills.at)) warnings.push({ code: 'pulses-filled' });
-  if (isRecent(second.pair.disagreedAt)) warnings.push({ code: 'wheels-disagree' });
+  if (second.pair.disagree || isRecent(second.pair.disagreedAt)) warnings.push({ code: 'wheels-disagree' });
   return warnings;
 }
 

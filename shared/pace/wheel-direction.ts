@@ -73,6 +73,7 @@ function mirror(o: Odometer, metresPerPulse: number): void {
   rewindLaunches(o.launches, d.baseAt, about, metresPerPulse);
   restartGap(o.gap, wheel.at, wheel.total);
   o.second.pair.seen = false;
+  o.comparison.last = null;
   d.turn = d.base;
   d.furthest = d.mark = wheel.total;
 }

@@ -105,7 +105,9 @@ function fillGap(o: Odometer, metresPerPulse: number): OdometerChange {
     fills.metres += missed * metresPerPulse;
     fills.at = wheel.at;
   }
-  noteLoss(o, wheel.at, sigma * metresPerPulse);
+  // a gap that was given up and went on: nothing measured that
+  if (missed > 0) o.losses.push({ at: wheel.at, sigma: sigma * metresPerPulse, by: 'fill' });
+  else noteLoss(o, wheel.at, sigma * metresPerPulse);
   o.wheelKnot.at = wheel.at;
   o.wheelKnot.total = wheel.total;
   return knot(o, wheel.at, w, o.g, metresPerPulse);
