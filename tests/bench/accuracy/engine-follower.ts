@@ -8,7 +8,12 @@ import type { Follower } from './follower.ts';
 export function followByEngine(pack: Pack): Follower {
   const state = begin(pack);
   let seq = 0;
-  const take: Follower['take'] = (o) => step(state, { ...o, seq: seq++ } as Observation);
+  const take: Follower['take'] = (o) => {
+    const numbered = o as { seq?: number };
+    // not a copy: copies of so many kinds would have the engine look up every field the slow way
+    numbered.seq = seq++;
+    step(state, o as Observation);
+  };
   // under escort the engine works out no advice, which nobody reads here, and everything else as ever
   take({ type: 'run-resumed.v1', at: 0, as: 'escort' });
   return {
