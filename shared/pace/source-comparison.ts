@@ -52,8 +52,6 @@ export function compareSources(o: Odometer, fix: GnssKnot, before: GnssKnot | un
   const via = o.gnss.last?.via ?? 'nmea';
   c.spread += before === undefined ? 0 : ((fix.at - before.at) / 1e6) ** 2;
   if (c.last !== null && fix.at - c.last.at < EVERY_US) return;
-  // what the count fell short of is filled in a moment, and compared then
-  if (o.gap.phase === 'open') return;
   if (via !== c.via) {
     c.filter = makeLatency(LAG_BEFORE[via].us / 1e6, LAG_BEFORE[via].sigmaUs / 1e6);
     c.via = via;

@@ -63,6 +63,8 @@ describe('pulses that are missing for a while', () => {
       const t = [100.3, 101, 101.5, 102, 103, 105, 110, 150][i] as number;
       expect(Math.abs(r.distance - motion.metresAt(t))).toBeLessThan(3);
     });
+    // neither did distance follow GNSS and come back
+    expect(fold(pack, with5Hz).odometer.comparison.slip).toMatchObject({ active: null, done: [] });
   });
 });
 
