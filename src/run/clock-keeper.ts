@@ -43,7 +43,9 @@ export function createClockKeeper({ state, clock, exchangeTime, environment, act
     return ok({ uncertaintyMs: best.sigma });
   };
   const look = (): void => {
-    if (exchangeTime !== undefined && clocks.mono() - lastGood >= AGAIN_AFTER_MS && permitted()) void check();
+    // a device that may have slept is not sure of anything until it has asked
+    const due = state.clock.asleep !== null || clocks.mono() - lastGood >= AGAIN_AFTER_MS;
+    if (exchangeTime !== undefined && due && permitted()) void check();
   };
   look();
   const stopLooking = every(LOOK_EVERY_MS, look);

@@ -8,7 +8,7 @@ import { ItemRow } from './item-row.tsx';
 /** The official clock: where it comes from, how sure it is, how long ago; and one more look at it now, or touches along it. */
 export function ClockItem({ byTouch }: { readonly byTouch: () => void }) {
   const { session } = useRunSettings();
-  const { official } = useStructure();
+  const readout = useStructure();
   const [trouble, setTrouble] = useState<string | null>(null);
   const [busy, setBusy] = useState(false);
   const check = async (): Promise<void> => {
@@ -20,8 +20,8 @@ export function ClockItem({ byTouch }: { readonly byTouch: () => void }) {
   return (
     <ItemRow
       name="clock"
-      item={clockItem(official)}
-      live={busy ? 'checking' : (trouble ?? <LiveText of={(readout) => clockItem(readout.official).words} />)}
+      item={clockItem(readout)}
+      live={busy ? 'checking' : (trouble ?? <LiveText of={(now) => clockItem(now).words} />)}
       acts={
         session.role === 'reader'
           ? []

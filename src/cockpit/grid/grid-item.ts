@@ -23,11 +23,12 @@ const CLOCK_WORDS: Readonly<Record<string, string>> = {
   tap: 'touch',
 };
 
-export function clockItem(official: Readout['official']): GridItem {
+export function clockItem({ official, warnings }: Pick<Readout, 'official' | 'warnings'>): GridItem {
   if (official === null) return { ready: false, words: 'not checked against the official clock' };
-  const ready = official.sigma <= CLOCK_SIGMA_S && official.age <= CLOCK_AGE_S && official.source !== 'wall';
+  const doubted = warnings.some(({ code }) => code === 'clock-disagrees') ? 'clocks disagree; ' : '';
+  const ready = doubted === '' && official.sigma <= CLOCK_SIGMA_S && official.age <= CLOCK_AGE_S && official.source !== 'wall';
   const source = official.source === 'wall' ? 'only this tablet’s own clock' : `by ${CLOCK_WORDS[official.source] ?? official.source}`;
-  return { ready, words: `${source}, ±${Math.ceil(official.sigma * 2000)} ms, ${formatDuration(Math.floor(official.age))} ago` };
+  return { ready, words: `${doubted}${source}, ±${Math.ceil(official.sigma * 2000)} ms, ${formatDuration(Math.floor(official.age))} ago` };
 }
 
 export function sensorItem(status: RunStatus['sensor']): GridItem {

@@ -4,7 +4,10 @@ import { clockItem, sensorItem, storageItem, wakeItem } from '#src/cockpit/grid/
 import type { RunStatus } from '#src/run/run-session-contract.ts';
 import type { PersistenceFacts } from '#src/storage/persistence.ts';
 
-const official = (source: string, sigma: number, age: number) => ({ now: unixMs(0), sigma: seconds(sigma), source, age: seconds(age) });
+const official = (source: string, sigma: number, age: number) => ({
+  official: { now: unixMs(0), sigma: seconds(sigma), source, age: seconds(age) },
+  warnings: [],
+});
 const saved: RunStatus['storage'] = { state: 'saved', pending: 0, message: null, recovered: null };
 const facts = (change: Partial<PersistenceFacts>): PersistenceFacts => ({
   persisted: true,
@@ -16,11 +19,13 @@ const facts = (change: Partial<PersistenceFacts>): PersistenceFacts => ({
 
 describe('what must be ready', () => {
   it('calls a clock checked only when it is sure, fresh and not the tablet’s own', () => {
-    expect(clockItem(null).ready).toBe(false);
+    expect(clockItem({ official: null, warnings: [] }).ready).toBe(false);
     expect(clockItem(official('exchange', 0.004, 300))).toEqual({ ready: true, words: 'by server, ±8 ms, 5:00 ago' });
     expect(clockItem(official('exchange', 0.2, 300)).ready).toBe(false);
     expect(clockItem(official('exchange', 0.004, 7200)).ready).toBe(false);
     expect(clockItem(official('wall', 0.001, 1)).ready).toBe(false);
+    const doubted = clockItem({ ...official('exchange', 0.004, 300), warnings: [{ code: 'clock-disagrees' }] });
+    expect(doubted).toEqual({ ready: false, words: 'clocks disagree; by server, ±8 ms, 5:00 ago' });
   });
 
   it('calls storage ready only when the browser keeps it and ten hours fit', () => {

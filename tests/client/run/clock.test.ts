@@ -133,6 +133,20 @@ describe('the official clock', () => {
     expect(await samplesOf(session)).toHaveLength(3);
   });
 
+  it('is compared again as soon as the device may have slept', async () => {
+    const rig = new Rig(3_600_000);
+    const { session } = await rig.open('new', withServer(rig, { n: 0 }));
+    await rig.world.pass(31_000);
+    rig.world.sleep(7000);
+    await rig.world.pass(11_000);
+    expect(session.readout().official?.sigma).toBeGreaterThan(6.9);
+    expect(session.readout().warnings).toContainEqual({ code: 'slept' });
+    await rig.world.pass(30_000);
+    expect(await samplesOf(session)).toHaveLength(2);
+    expect((session.readout().official?.now ?? 0) - rig.world.wall()).toBeCloseTo(serverAhead, 0);
+    expect(session.readout().official?.sigma).toBeLessThan(0.01);
+  });
+
   it('runs along with a faster session clock, so that every sample means the same', async () => {
     const rig = new Rig(3_600_000);
     const { session } = await rig.open('new', { ...withServer(rig, { n: 0 }), clockRate: 30, practice: true });
