@@ -1,5 +1,6 @@
 import { roundedDigits } from '#shared/course/format.ts';
 import type { TapInput } from '#shared/pace/learn-lead.ts';
+import type { TapRow } from '#shared/pace/run-sheet.ts';
 import type { DerivedTap } from '#shared/pace/run-state.ts';
 
 /** What a run's taps say of their scatter: the spread of one touch about the navigator's own lead. */
@@ -16,6 +17,10 @@ export interface TapFigures {
   /** m/s at the touch. */
   readonly speed: number;
 }
+
+/** The taps of a run sheet; one made by an engine that did not yet tell the figures has none. */
+export const tapFigures = (taps: readonly TapRow[]): readonly TapFigures[] =>
+  taps.flatMap(({ figures, verdict }) => (figures === undefined ? [] : [{ ...figures, verdict }]));
 
 export interface Scatter {
   /** One standard deviation, ms. */

@@ -1,8 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { createRandom } from '#shared/drive/random.ts';
 import { type Leads, learnLeadFromFinish, learnLeadFromTouches, type TimedTouch } from '#shared/pace/learn-lead.ts';
-import { learnScatter, type Scatter, type TapFigures, UNLEARNT_SCATTER } from '#shared/pace/learn-taps.ts';
+import { learnScatter, type Scatter, type TapFigures, tapFigures, UNLEARNT_SCATTER } from '#shared/pace/learn-taps.ts';
+import { clockCheck, fromRest, instantOf, journal, pulses, tapAt } from '#tests/unit/pace/drives.ts';
+import { sheetOf } from '#tests/unit/pace/folds.ts';
 import { driveEvent, type Hand } from '#tests/unit/pace/navigators.ts';
+import { pack } from '#tests/unit/pace/packs.ts';
+import { byRule } from '#tests/unit/pace/rules.ts';
 
 /** What is learnt of navigators: against closed forms, and against navigators whose habits are known because they are made up. */
 
@@ -184,5 +188,16 @@ describe('scatter', () => {
       return scatter.scatterMs;
     };
     expect(Math.abs(of(4) / of(-1) - 1)).toBeLessThan(0.2);
+  });
+
+  it('reads a run sheet: three scattered touches of a run, one of them mistaken', () => {
+    const motion = fromRest(2.5, 41, 0.4);
+    const sensors = pulses(motion, { until: 740, hz: 20, metresPerPulse: 0.2507 });
+    const touches = [tapAt(instantOf(motion, 4_000) + 0.13), tapAt(instantOf(motion, 12_000) + 4), tapAt(instantOf(motion, 24_000) - 0.08)];
+    const sheet = sheetOf(byRule('estimator'), journal([clockCheck(pack)], sensors, touches));
+    const taps = tapFigures(sheet.taps);
+    expect(taps.map((t) => t.verdict)).toEqual(['used', 'doubted', 'used']);
+    expect(learnScatter(UNLEARNT_SCATTER, taps, 'glass')).toMatchObject({ used: 2, left: 1 });
+    for (const t of taps) expect(Math.abs(t.speed - 41)).toBeLessThan(0.5);
   });
 });

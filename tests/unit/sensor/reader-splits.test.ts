@@ -3,7 +3,7 @@ import { describe, expect, it, vi } from 'vitest';
 import type { NewObservation } from '#shared/journal/observation.ts';
 import { judgeSentence } from '#shared/sensor/checksum.ts';
 import { createSentenceReader } from '#shared/sensor/sentence-reader.ts';
-import { writeButton, writeGga, writePps, writeRmc, writeVtg, writeWheel, writeZda } from '#shared/sensor/sentence-writer.ts';
+import { writeButton, writeGga, writeGll, writePps, writeRmc, writeVtg, writeWheel, writeZda } from '#shared/sensor/sentence-writer.ts';
 import { bytesOf } from '#tests/unit/sensor/reading.ts';
 
 /** Many lines on a busy machine. */
@@ -23,6 +23,7 @@ const sentence = fc.oneof(
   uint32.map(writePps),
   receiver.map((r) => writeRmc(r)),
   receiver.map((r) => writeGga(r)),
+  receiver.map((r) => writeGll(r)),
   receiver.map((r) => writeVtg(r)),
   receiver.map((r) => writeZda(r.utcMs)),
   fc.string({ unit: 'binary-ascii', maxLength: 40 }).map((text) => `${text}\n`),
