@@ -50,6 +50,35 @@ test('a changed release says that the pack is out of date until it is stored aga
   await expect(next.getByText(/^pack stored/)).toBeVisible();
 });
 
+test('cockpit settings that were changed reach the tablet once its pack is stored again', async ({ page }) => {
+  await signIn(page);
+  await openPage(page, 'Plan');
+  await page
+    .getByRole('button', { name: /store pack on this tablet|store the pack again/ })
+    .first()
+    .click();
+  const settings = page.getByRole('region', { name: 'Cockpit settings' });
+  const choose = async (rule: string, reserve: string): Promise<void> => {
+    await settings.getByRole('radio', { name: rule }).check();
+    await settings.getByRole('spinbutton', { name: 'reserve in hand' }).fill(reserve);
+    await settings.getByRole('button', { name: 'save settings' }).click();
+  };
+  await expect(settings.getByRole('radio', { name: 'estimator, recommended' })).toBeChecked();
+  await choose('gain ratio', '');
+  await expect(settings.getByText('Type seconds from 0 to 30.')).toBeVisible();
+  await choose('gain ratio', '2');
+  await expect(settings.getByText(/^Saved\. A tablet goes on with what it has/)).toBeVisible();
+  await settings.getByRole('button', { name: 'store the pack again' }).click();
+  await expect(settings.getByText(/^Saved, and the pack on this tablet has them/)).toBeVisible();
+  await page.reload();
+  await expect(settings.getByRole('radio', { name: 'gain ratio' })).toBeChecked();
+  await expect(settings.getByRole('spinbutton', { name: 'reserve in hand' })).toHaveValue('2');
+  await expect(settings.getByRole('button', { name: 'store the pack again' })).toHaveCount(0);
+  await choose('estimator, recommended', '0');
+  await settings.getByRole('button', { name: 'store the pack again' }).click();
+  await expect(settings.getByText(/^Saved, and the pack on this tablet has them/)).toBeVisible();
+});
+
 test('the demo navigator reads a run sheet, chart and legs, and may let it count', async ({ page }) => {
   await signIn(page);
   await openPage(page, 'Runs');

@@ -39,7 +39,9 @@ function CarSection({ car }: { readonly car: Car }) {
   return (
     <section className="mb-12" aria-label={car.name}>
       <h2 className="text-2xl font-bold">{car.name}</h2>
-      <p className="text-quiet mb-4">{dialWords(car.dialReadsHighPercent)}</p>
+      <p className="text-quiet mb-4">
+        {dialWords(car.dialReadsHighPercent)} {offsetWords(car.behindNose)}
+      </p>
       {car.wheelSetups.map((setup) => (
         <SetupSection key={setup.id} setup={setup} />
       ))}
@@ -53,6 +55,12 @@ function dialWords(percent: number): string {
   return `Its dial reads ${digits} % ${percent > 0 ? 'high' : 'low'}.`;
 }
 
+function offsetWords(behindNose: Car['behindNose']): string {
+  if (behindNose === null) return 'Where seat and aerial are is not measured: they count as at the nose.';
+  const { seatM, aerialM } = behindNose;
+  return `Behind its nose: the navigator's sight line ${roundedDigits(seatM, 1)} m, the GNSS aerial ${roundedDigits(aerialM, 1)} m.`;
+}
+
 function SetupSection({ setup }: { readonly setup: Setup }) {
   const [inUse] = setup.scales;
   return (
@@ -60,6 +68,8 @@ function SetupSection({ setup }: { readonly setup: Setup }) {
       <h3 className="text-xl font-bold">{setup.name}</h3>
       <p className="text-quiet mb-2">
         {setup.tyre === '' ? 'tyre not noted' : setup.tyre}; wheel channel {setup.channel}, {setup.pulsesPerTurn} pulses a turn
+        {setup.driven ? '; a driven wheel, which may spin at the start' : ''}
+        {setup.secondChannel === null ? '' : `; compared with the wheel on channel ${setup.secondChannel}`}
       </p>
       {inUse === undefined ? (
         <EmptyState>Its wheel scales will stand here once one is measured.</EmptyState>

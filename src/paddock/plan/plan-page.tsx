@@ -17,6 +17,7 @@ import { Loaded } from '#src/paddock/parts/loaded.tsx';
 import { dayAndClock } from '#src/paddock/parts/when.ts';
 import { useSignedIn } from '#src/paddock/signed-in.tsx';
 import type { StoredPack } from '#src/storage/pack-store.ts';
+import { CockpitSettingsSection } from './cockpit-settings-section.tsx';
 import { planOfPack } from './pack-plan.ts';
 import { PlanCautions } from './plan-cautions.tsx';
 import { PlanCharts } from './plan-charts.tsx';
@@ -29,13 +30,16 @@ export function PlanPage() {
   const events = useQuery(eventsQuery(user.id, team.id));
   const packs = usePacks();
   const stored = attemptId === undefined ? undefined : packs?.find((pack) => pack.attemptId === attemptId);
-  if (stored !== undefined) return <Plan stored={stored} />;
+  if (stored !== undefined) {
+    const placed = events.data === undefined ? null : findAttempt(events.data, attemptId, team.id);
+    return <Plan stored={stored} placed={placed} />;
+  }
   return (
     <Loaded query={events}>
       {(data) => {
         const placed = findAttempt(data, attemptId, team.id);
         const there = packs?.find((pack) => pack.attemptId === placed?.attempt.id);
-        if (there !== undefined) return <Plan stored={there} />;
+        if (there !== undefined) return <Plan stored={there} placed={placed} />;
         return packs === undefined ? null : <NoPlan placed={placed} />;
       }}
     </Loaded>
@@ -61,11 +65,12 @@ function NoPlan({ placed }: { readonly placed: PlacedAttempt | null }) {
         from the pack
         {placed === null ? ', and there is no attempt yet.' : ', and the pack is not on this device yet.'}
       </EmptyState>
+      <CockpitSettingsSection placed={placed} stored={null} />
     </>
   );
 }
 
-function Plan({ stored }: { readonly stored: StoredPack }) {
+function Plan({ stored, placed }: { readonly stored: StoredPack; readonly placed: PlacedAttempt | null }) {
   const { user, team } = useSignedIn();
   const garage = useQuery(garageQuery(user.id, team.id));
   const { pack } = stored;
@@ -104,6 +109,7 @@ function Plan({ stored }: { readonly stored: StoredPack }) {
       </div>
       <PlanTable pack={pack} plan={plan} releaseMs={release} />
       <PlanCautions pack={pack} plan={plan} tyre={setup?.tyre ?? null} />
+      <CockpitSettingsSection placed={placed} stored={stored} />
     </>
   );
 }

@@ -9,6 +9,7 @@ import { TimeError } from '#src/paddock/parts/time-error.tsx';
 import { dayAndClock } from '#src/paddock/parts/when.ts';
 import { LegTable } from './leg-table.tsx';
 import { RunChart } from './run-chart.tsx';
+import { misfitText } from './run-words.ts';
 import { ShownAndDerived } from './shown-and-derived.tsx';
 
 /** What a run sheet needs besides itself: where and in which units it happened. */
@@ -113,7 +114,7 @@ function Incidents({ sheet, place }: { readonly sheet: RunSheet; readonly place:
         {unused.map((tap) => (
           <li key={tap.seq}>
             touch {tap.checkpoint === null ? '' : `at ${nameOf(sheet, tap.checkpoint)} `}not used: {tap.verdict}
-            {tap.movedM === 0 ? '' : `, ${roundedDigits(tap.movedM, 1)} m ${tap.movedM > 0 ? 'on' : 'back'}`}
+            {misfitText(tap)}
           </li>
         ))}
         {sheet.warnings.map((warning) => (

@@ -1,6 +1,6 @@
 import type { RunSummary } from '#shared/api/runs.ts';
 import { roundedDigits } from '#shared/course/format.ts';
-import type { LegRow } from '#shared/pace/run-sheet.ts';
+import type { LegRow, TapRow } from '#shared/pace/run-sheet.ts';
 
 /** A run in words; the same ones on every page. */
 
@@ -18,6 +18,16 @@ export const BY_WORDS: Readonly<Record<LegRow['by'], string>> = {
   skipped: 'skipped',
   'not reached': 'not reached',
 };
+
+/**
+ * `, 42.3 m before the place`: where a touch that was not used came, by the distance believed then; before engines told that,
+ * by how much it would have moved the distance. Empty where it came at the place, or where nobody knows.
+ */
+export function misfitText({ figures, movedM }: Pick<TapRow, 'figures' | 'movedM'>): string {
+  const metres = figures?.misfitM ?? movedM;
+  const digits = roundedDigits(Math.abs(metres), 1);
+  return Number(digits) === 0 ? '' : `, ${digits} m ${metres > 0 ? 'before' : 'after'} the place`;
+}
 
 const KEPT_WORDS: Readonly<Record<string, string>> = {
   settle: 'kept: tyres still settling',

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { timeErrorText } from '#src/paddock/parts/time-error.tsx';
 import { clockInZone, formatDate, relativeAge } from '#src/paddock/parts/when.ts';
-import { keptText, movedText } from '#src/paddock/runs/run-words.ts';
+import { keptText, misfitText, movedText } from '#src/paddock/runs/run-words.ts';
 
 describe('time errors in a table', () => {
   it('are a magnitude and a word, never a sign, and align on the decimal point', () => {
@@ -23,6 +23,18 @@ describe('what a touch moved', () => {
   it('says why a scale was kept, even for a reason of a newer engine', () => {
     expect(keptText('settle')).toBe('kept: tyres still settling');
     expect(keptText('something new')).toBe('kept: something new');
+  });
+});
+
+describe('where a touch that was not used came', () => {
+  const figures = { input: 'glass' as const, varianceM2: 4, surveySigmaM: 2, speed: 50 };
+  it.each([
+    [{ figures: { ...figures, misfitM: 42.31 }, movedM: 0 }, ', 42.3 m before the place'],
+    [{ figures: { ...figures, misfitM: -150.2 }, movedM: -150.2 }, ', 150.2 m after the place'],
+    [{ movedM: -8 }, ', 8.0 m after the place'],
+    [{ figures: { ...figures, misfitM: 0.04 }, movedM: 0.04 }, ''],
+  ])('%j: "%s"', (tap, words) => {
+    expect(misfitText(tap)).toBe(words);
   });
 });
 
