@@ -5,6 +5,7 @@ import { describe, expect, it } from 'vitest';
 import { createRandom } from '#shared/drive/random.ts';
 import { type Clock, clockExchange, clockSigmaMs, holdoverVariance, makeClock } from '#shared/pace/clock.ts';
 import { offerClock, takePps } from '#shared/pace/clock-hear.ts';
+import { hearBox, takeClockPair, takeEpoch } from '#shared/pace/clock-life.ts';
 import { ownRhythm, tapSetOf } from '#shared/pace/clock-taps.ts';
 
 const VECTORS = resolve('../shared/data/vectors/ntp_offset.json');
@@ -116,6 +117,43 @@ describe('the filter', () => {
     expect(Math.abs((clock.chosen?.offsetMs ?? 0) - EPOCH)).toBeLessThan(10);
     for (let i = 6; i < 12; i++) offer(clock, i * 60, 'nmea', -750, 80.1);
     expect(Math.abs((clock.chosen?.offsetMs ?? 0) - EPOCH)).toBeLessThan(10);
+  });
+});
+
+describe('whatever a journal holds', () => {
+  const wild = fc.oneof(fc.double({ min: -9e15, max: 9e15, noNaN: true }), fc.double({ min: -2e9, max: 2e9, noNaN: true }));
+  const instant = fc.oneof(wild.map(Math.round), fc.integer({ min: 0, max: 4_000_000_000 }));
+  const acts = fc.array(
+    fc.record({
+      kind: fc.constantFrom('clock', 'clock', 'pps', 'epoch', 'pair', 'box'),
+      at: instant,
+      source: fc.constantFrom(...SOURCES, 'wall'),
+      a: wild,
+      b: wild,
+      started: fc.boolean(),
+      bridgedBy: fc.constantFrom('first', 'box', 'wall', 'page'),
+    }),
+    { maxLength: 60 },
+  );
+
+  it('leaves a clock of finite numbers that can be stored', () => {
+    fc.assert(
+      fc.property(acts, (list) => {
+        const clock = makeClock();
+        for (const [seq, { kind, at, source, a, b, started, bridgedBy }] of list.entries()) {
+          if (kind === 'clock') offerClock(clock, { type: 'clock.v1', seq, at, source, officialMs: a, uncertaintyMs: b }, at, started);
+          if (kind === 'pps') takePps(clock, at, at, started);
+          if (kind === 'epoch')
+            takeEpoch(clock, { type: 'epoch.v1', seq, at, n: seq, mono: a, wall: b, bridgedBy, uncertaintyMs: a }, started);
+          if (kind === 'pair') takeClockPair(clock, { type: 'clock-pair.v1', seq, at, mono: a, wall: b });
+          if (kind === 'box') hearBox(clock, at, Math.abs(Math.round(a)) % 2 ** 32);
+        }
+        const stored = JSON.stringify(clock, (_, v) => (typeof v === 'number' && !Number.isFinite(v) ? 'not a number' : v));
+        expect(stored).not.toContain('not a number');
+        if (clock.chosen !== null) expect(Number.isFinite(clockSigmaMs(clock, 1e9))).toBe(true);
+      }),
+      { numRuns: 500 },
+    );
   });
 });
 
