@@ -18,9 +18,11 @@ export interface WheelPair {
   /** Ratios of the first stretches; their median begins. */
   early: number[];
   stretches: number;
-  /** Stretches in a row that disagree to the same side (signed), and by how many metres together. */
-  apart: number;
-  apartMetres: number;
+  /** Metres by which the first went further, and less far, beyond what is usual; see `judge`. */
+  further: number;
+  shorter: number;
+  /** Stretches in a row that agreed. */
+  quiet: number;
   disagree: boolean;
   disagreements: number;
   /** End of the last stretch that disagreed. */
@@ -37,8 +39,9 @@ export const makeWheelPair = (): WheelPair => ({
   ratio: null,
   early: [],
   stretches: 0,
-  apart: 0,
-  apartMetres: 0,
+  further: 0,
+  shorter: 0,
+  quiet: 0,
   disagree: false,
   disagreements: 0,
   disagreedAt: null,
@@ -52,10 +55,14 @@ const EARLY_ENOUGH = 3;
 const USUAL = 0.004;
 /** Stretches averaged over. */
 const MEMORY = 20;
-/** One after the other: a hairpin lies in two stretches at most. */
-const IN_A_ROW = 3;
-/** A full turn makes 2π × the track's width between a left and a right wheel. */
-const FULL_TURN_M = 12;
+const DOUBTED = 0.2;
+/** Stretches in a row that agree end a disagreement. */
+const QUIET = 2;
+/**
+ * A full turn makes 2π × the track's width, some 10 m, between a left and a right wheel, and no bend makes more: recorded curves
+ * of a motorway go 0.7 % apart over 500 m. What goes on to the same side for longer is no bend.
+ */
+const FULL_TURN_M = 11;
 
 /** Both wheels at the instant of the second's record, by the first's last good record and its speed. True where that is news. */
 export function pairUp(pair: WheelPair, gap: PulseGap, { at, total }: { readonly at: number; readonly total: number }): boolean {
@@ -87,18 +94,17 @@ export function compareWheels(pair: WheelPair, metresPerPulse: number): void {
   if (other !== 0 && first > 0) learn(pair, first / other);
 }
 
+/** Sums what the stretches go apart by, beyond the usual, to either side: what a pulse makes in one is taken back in the next. */
 function judge(pair: WheelPair, difference: number, length: number, pulses: number): void {
-  if (Math.abs(difference) <= USUAL * length + pulses) {
-    pair.apart = 0;
-    pair.apartMetres = 0;
+  const usual = USUAL * length;
+  pair.further = Math.min(FULL_TURN_M, Math.max(0, pair.further + difference - usual));
+  pair.shorter = Math.min(FULL_TURN_M, Math.max(0, pair.shorter - difference - usual));
+  pair.quiet = Math.abs(difference) <= usual + pulses ? pair.quiet + 1 : 0;
+  if (pair.disagree && pair.quiet >= QUIET) {
+    pair.further = pair.shorter = 0;
     pair.disagree = false;
-    return;
   }
-  const side = Math.sign(difference);
-  const goesOn = pair.apart * side > 0;
-  pair.apart = goesOn ? pair.apart + side : side;
-  pair.apartMetres = goesOn ? pair.apartMetres + difference : difference;
-  if (Math.abs(pair.apart) < IN_A_ROW && Math.abs(pair.apartMetres) < FULL_TURN_M) return;
+  if (Math.max(pair.further, pair.shorter) < FULL_TURN_M) return;
   if (!pair.disagree) pair.disagreements++;
   pair.disagree = true;
   pair.disagreedAt = pair.at;
@@ -114,7 +120,8 @@ function learn(pair: WheelPair, measured: number): void {
   }
   if (pair.ratio === null) return;
   pair.stretches = Math.min(pair.stretches + 1, MEMORY);
-  // a stretch that is far off says little: a hairpin, a slide
+  // a stretch that is far off says little: a hairpin, a slide; still less once much has been seen
   const off = Math.max(-USUAL, Math.min(USUAL, measured / pair.ratio - 1));
-  pair.ratio *= 1 + off / pair.stretches;
+  const share = pair.quiet === 0 && pair.stretches === MEMORY ? DOUBTED : 1;
+  pair.ratio *= 1 + (share * off) / pair.stretches;
 }
