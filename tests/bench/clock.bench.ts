@@ -36,7 +36,7 @@ export const bench: Bench = ({ quick }) => {
     ...sentenceRows(rounds),
     ...tapRows(rounds),
     ...combinedRows(rounds),
-    ...holdoverRows(quick ? 100 : 400),
+    ...holdoverRows(quick ? 200 : 400),
   };
 };
 
@@ -255,9 +255,10 @@ const HOLDOVERS: Readonly<Record<string, Holdover>> = {
     page: [1.8, 3.9, 7.3],
     until: 1210,
     feed(fed, random, offsetAt) {
-      fed.exchange(random, WAYS['Wi-Fi'], random.gauss(0.8), 0, 0);
+      const skew = random.gauss(WAYS['Wi-Fi'].asymmetry);
+      fed.exchange(random, WAYS['Wi-Fi'], skew, 0, 0);
       sentences(fed, random, offsetAt, 150 + random.gauss(80), 1, 1210);
-      fed.exchange(random, WAYS['Wi-Fi'], random.gauss(0.8), 1210, offsetAt(1210));
+      fed.exchange(random, WAYS['Wi-Fi'], skew, 1210, offsetAt(1210));
     },
   },
   '4G 20 min': { page: [5.6, 8.7, 14], until: 1200, feed: by4G(1200) },
