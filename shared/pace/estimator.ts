@@ -28,9 +28,16 @@ export interface Belief {
   readonly placed: number;
   /** The navigator's lead beyond the pack's, s; positive = touches late. */
   readonly lead: number;
-  /** What the misfits so far say of the scatter of taps: weight in taps, and weighted sum of s². */
-  readonly scatter: { readonly weight: number; readonly sum: number };
+  readonly temper: Temper;
 }
+
+/** What this hand and these tyres are like beside what is usual: factors on the variance of a tap's scatter and of the scale's wander. */
+export interface Temper {
+  readonly scatter: number;
+  readonly wander: number;
+}
+
+export const USUAL: Temper = { scatter: 1, wander: 1 };
 
 /** An anchor under the estimator. */
 export type Estimate = Anchor & { readonly belief: Belief };
@@ -42,11 +49,13 @@ const BY_SPEED = { rolling: { mean: 0.00125, sigma: 0.0006 }, driven: { mean: -0
 const WARMTH_UNKNOWN = 0.004;
 /** The line driven against the line surveyed. */
 const LINE_SIGMA = 0.001;
-/** Wander of the scale and of the line, relative² per metre. */
-const SCALE_WANDER = 1.2e-11;
-const LINE_WANDER = 4e-12;
+/** Wander of a warm tyre's scale, and more of it while it warms, relative² per metre. */
+const SCALE_WANDER = 6e-12;
+const WARMING_WANDER = 3e-11;
+/** The line driven comes and goes about its mean: over kilometres a walk of the distance, m² per metre. */
+const LINE = 2e-4;
 /** Slips and lost pulses, m² per metre. */
-const SLIPS = 6e-4;
+const SLIPS = 4e-4;
 /** GNSS metres that stood in for the wheel, m² per metre. */
 const GNSS_NOISE = 4e-4;
 /** A receiver's speed wanders slowly by so much (m/s) over so long (s): more than what each fix says of itself, m² per second. */
@@ -59,8 +68,6 @@ const PLACED_S = 120;
 const GATE = 4;
 /** Reading between two pulses, m². */
 const PULSE_VARIANCE = 0.1;
-/** The pack's scatter of taps is worth so many taps. */
-const SCATTER_WORTH = 6;
 
 /** What is believed before the first metre. `variance`: of the distance at the start, m². `leadSigma` in seconds. */
 export function firstBelief(pack: Pack, variance: number, leadSigma: number): Belief {
@@ -76,7 +83,7 @@ export function firstBelief(pack: Pack, variance: number, leadSigma: number): Be
   set(SPEED, (driven === true ? BY_SPEED.driven : BY_SPEED.rolling).sigma ** 2);
   set(OFFICIAL, byGnss ? line : 0);
   set(LEAD, leadSigma * leadSigma);
-  return { covariance, placed: 0, lead: 0, scatter: { weight: 0, sum: 0 } };
+  return { covariance, placed: 0, lead: 0, temper: USUAL };
 }
 
 /** The tyres' part of the first anchor: `cold` and `speed`. */
@@ -103,14 +110,23 @@ function wayTo(a: Anchor, raw: Raw): Way {
 }
 
 /** Variance of the distance at raw values beyond the anchor, m². */
-export function grownVariance(a: Anchor, { covariance: p }: Belief, raw: Raw): number {
+export function grownVariance(a: Anchor, belief: Belief, raw: Raw): number {
   const way = wayTo(a, raw);
-  return dot(times(p, N, way.f), way.f) + roadVariance(way, (p[OFFICIAL * N + OFFICIAL] as number) > 0);
+  return dot(times(belief.covariance, N, way.f), way.f) + roadVariance(way, wanderOf(belief, coldnessOf(a, raw)));
 }
 
-function roadVariance({ wheel, gnss, official }: Way, byGnss: boolean): number {
+function roadVariance({ wheel, gnss, official }: Way, wander: number): number {
   const [w, all] = [Math.abs(wheel), Math.abs(official)];
-  return SLIPS * w + (SCALE_WANDER * w ** 3) / 3 + GNSS_NOISE * Math.abs(gnss) + (byGnss ? (LINE_WANDER * all ** 3) / 3 : 0);
+  return SLIPS * w + (wander * w ** 3) / 3 + GNSS_NOISE * Math.abs(gnss) + LINE * all;
+}
+
+/** Wander of the scale, relative² per metre: tyres that are still warming wander more than their law says. */
+const wanderOf = ({ temper }: Belief, coldness: number): number => temper.wander * SCALE_WANDER + WARMING_WANDER * coldness;
+
+/** Mean coldness of a stretch, 0..1. */
+function coldnessOf(a: Anchor, raw: Raw): number {
+  const dw = raw.w - a.w;
+  return dw === 0 ? 0 : Math.min(1, Math.max(0, (raw.h - a.h) / dw));
 }
 
 /** The estimate carried on to raw values at an instant; `lost` m² of what nothing measured on the way. */
@@ -118,15 +134,11 @@ export function carry(a: Estimate, raw: Raw, at: number, lost: number): Estimate
   const way = wayTo(a, raw);
   const p = a.belief.covariance.slice();
   carryFirst(p, N, way.f);
-  const byGnss = (p[OFFICIAL * N + OFFICIAL] as number) > 0;
-  const [w, all] = [Math.abs(way.wheel), Math.abs(way.official)];
-  add(p, N, D, D, roadVariance(way, byGnss) + lost);
-  add(p, N, D, SCALE, (SCALE_WANDER * w * w) / 2);
-  add(p, N, SCALE, SCALE, SCALE_WANDER * w);
-  if (byGnss) {
-    add(p, N, D, OFFICIAL, (LINE_WANDER * all * all) / 2);
-    add(p, N, OFFICIAL, OFFICIAL, LINE_WANDER * all);
-  }
+  const wander = wanderOf(a.belief, coldnessOf(a, raw));
+  const w = Math.abs(way.wheel);
+  add(p, N, D, D, roadVariance(way, wander) + lost);
+  add(p, N, D, SCALE, (wander * w * w) / 2);
+  add(p, N, SCALE, SCALE, wander * w);
   const keep = Math.exp(-Math.max(0, at - a.at) / 1e6 / PLACED_S);
   shrink(p, N, PLACED, keep);
   const belief = { ...a.belief, covariance: p, placed: a.belief.placed * keep };
@@ -214,12 +226,6 @@ export interface TapAtPlace {
   readonly otherLead: number | null;
 }
 
-/** Scatter of this navigator's taps, s: the pack's word and what the taps so far say. */
-export function scatterSigma(told: number, { weight, sum }: Belief['scatter']): number {
-  const square = (SCATTER_WORTH * told * told + sum) / (SCATTER_WORTH + weight);
-  return Math.sqrt(Math.min(9 * told * told, Math.max(0.25 * told * told, square)));
-}
-
 const tapRow = ({ v, otherLead }: TapAtPlace): number[] => [1, 0, 0, 0, 0, 0, otherLead === null ? -v : 0];
 
 /** Variance of the tap beside its scatter, m². */
@@ -229,7 +235,7 @@ const besideScatter = ({ v, surveySigma, otherLead }: TapAtPlace): number =>
 /** How far a tap is off, before it is taken in. The estimate must stand at the tap. */
 export function tapMisfit(a: Estimate, tap: TapAtPlace): TapMisfit {
   const h = tapRow(tap);
-  const own = (scatterSigma(tap.scatter, a.belief.scatter) * tap.v) ** 2 + besideScatter(tap);
+  const own = a.belief.temper.scatter * (tap.scatter * tap.v) ** 2 + besideScatter(tap);
   const misfit = tap.d - a.d - (h[LEAD] as number) * a.belief.lead;
   return { misfit, variance: dot(times(a.belief.covariance, N, h), h) + own, own };
 }
@@ -249,20 +255,6 @@ export function takeTap(before: Estimate, tap: TapAtPlace, placeOnly: boolean, d
     add(p, N, SCALE, SCALE, doubt.variance / doubt.over ** 2);
   }
   const a: Estimate = { ...before, belief: { ...before.belief, covariance: p } };
-  const { misfit, variance, own } = tapMisfit(a, tap);
-  const c = times(p, N, tapRow(tap));
-  const after = update(a, c, variance, misfit, placeOnly ? [D, PLACED] : undefined);
-  return doubt.variance > 0
-    ? after
-    : { ...after, belief: { ...after.belief, scatter: learnt(before.belief.scatter, tap, misfit, variance, own) } };
-}
-
-/** Fisher's information on the scatter in one misfit, as a share of a tap that nothing else blurs. */
-function learnt(scatter: Belief['scatter'], tap: TapAtPlace, misfit: number, variance: number, own: number): Belief['scatter'] {
-  if (!(tap.v > 1)) return scatter;
-  const v2 = tap.v * tap.v;
-  const now = (own - besideScatter(tap)) / v2;
-  const weight = ((now * v2) / variance) ** 2;
-  const square = now + (misfit * misfit - variance) / v2;
-  return { weight: scatter.weight + weight, sum: scatter.sum + weight * square };
+  const { misfit, variance } = tapMisfit(a, tap);
+  return update(a, times(p, N, tapRow(tap)), variance, misfit, placeOnly ? [D, PLACED] : undefined);
 }

@@ -47,7 +47,7 @@ export const SCALE_SIGMA_LATER = 0.001;
 export const shortestLeg = (sigmaPlace: number, scaleSigma: number): number => (2 * sigmaPlace) / scaleSigma;
 
 /**
- * Survey error of a printed distance, metres: the uniform error of its last decimal (step/√12), and one metre for the survey
- * itself (judgement, no source).
+ * Survey error of a printed distance, metres: the uniform error of its last decimal (step/√12), and two metres for the survey
+ * itself and for which edge of the place was meant (judgement, no source).
  */
-export const surveySigma = (fineness: number): number => Math.hypot(fineness / Math.sqrt(12), 1);
+export const surveySigma = (fineness: number): number => Math.hypot(fineness / Math.sqrt(12), 2);

@@ -88,7 +88,9 @@ function scaleInForce(state: RunState, anchor: Anchor | null): number {
 /** σ_E = √(P + (0.05·v)² + σ_s²)/V, joined by the clock's. */
 export function timeSigma(state: RunState, model: CourseModel, x: number, variance: number, speed: number, at: number): number {
   const surveyed = (model.places[model.finishIndex] as { surveySigma: number }).surveySigma;
-  const metres = Math.sqrt(variance + (LAG_S * speed) ** 2 + surveyed * surveyed);
+  // the estimator knows how unsure the lead is, the greatest lag of all
+  const lag = state.pack.settings.scaleRule === 'estimator' ? 0 : LAG_S * speed;
+  const metres = Math.sqrt(variance + lag * lag + surveyed * surveyed);
   const clock = clockSigmaMs(state.clock, at) / 1000;
   return Math.hypot(metres / targetSpeedAt(model.schedule, x), Number.isFinite(clock) ? clock : 0);
 }

@@ -1,9 +1,10 @@
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { type JudgedTap, judgeTap, tapQueue } from '#shared/pace/derive-tap.ts';
 import { estimatesTo } from '#shared/pace/estimate-nodes.ts';
-import type { Estimate } from '#shared/pace/estimator.ts';
+import type { Estimate, Temper } from '#shared/pace/estimator.ts';
 import type { Anchor, RunState, TapAct } from '#shared/pace/run-state.ts';
-import type { TakenFor } from '#shared/pace/tap-judge.ts';
+import type { Story, TakenFor } from '#shared/pace/tap-judge.ts';
+import { temperOf } from '#shared/pace/temper.ts';
 
 /**
  * All taps of a run, judged together. One tap alone cannot tell a wrong touch from a wrong distance or scale; the taps after it
@@ -19,8 +20,6 @@ export interface TapChain {
 }
 
 export type ChainStep = { readonly kind: 'tap'; readonly judged: JudgedTap } | { readonly kind: 'node'; readonly anchor: Anchor };
-
-type Story = ReadonlyMap<number, TakenFor>;
 
 /** A used tap beyond 3 sigmas starts the search. */
 const STRAINED = 9;
@@ -41,9 +40,21 @@ interface Course {
 /** The most probable story of all taps, found greedily; deterministic. `first`: the anchor at the start, null before it. */
 export function likeliestChain(state: RunState, model: CourseModel, first: Anchor | null): TapChain {
   const course: Course = { state, model, first, queue: tapQueue(state) };
+  const { story, chain } = likeliestStory(course);
+  if (first === null || first.belief === null || tapsOf(chain).every((j) => j.use === null)) return chain;
+  const temper = temperOf(state, course, story, (tried) => follow(tempered(course, tried), story).cost);
+  return follow(tempered(course, temper), story);
+}
+
+function tempered(course: Course, temper: Temper): Course {
+  const { first } = course;
+  return first === null || first.belief === null ? course : { ...course, first: { ...first, belief: { ...first.belief, temper } } };
+}
+
+function likeliestStory(course: Course): { story: Story; chain: TapChain } {
   let story: Story = new Map();
   let best = follow(course, story);
-  if (course.queue.length > MOST_TAPS || !tapsOf(best).some((j) => j.strain !== null && j.strain > STRAINED)) return best;
+  if (course.queue.length > MOST_TAPS || !tapsOf(best).some((j) => j.strain !== null && j.strain > STRAINED)) return { story, chain: best };
   for (let round = 0; round < MOST_ROUNDS; round++) {
     const before = best;
     for (const { variant, from } of variantsOf(story, before)) {
@@ -54,7 +65,7 @@ export function likeliestChain(state: RunState, model: CourseModel, first: Ancho
     }
     if (best === before) break;
   }
-  return best;
+  return { story, chain: best };
 }
 
 const tapsOf = ({ steps }: TapChain): JudgedTap[] => steps.flatMap((s) => (s.kind === 'tap' ? [s.judged] : []));

@@ -10,6 +10,9 @@ import type { Anchor, PlacePassing, RunState, TapAct, TapRaw } from '#shared/pac
  */
 export type TakenFor = 'plain' | 'rescale' | 'jump' | 'mistaken';
 
+/** What each tap, by its seq, is taken for; one that is not named is plain. */
+export type Story = ReadonlyMap<number, TakenFor>;
+
 export interface TapJudge {
   /** Official distance of the navigator's eye at the touch as believed before it, m, and its variance, m². */
   readonly measured: number;

@@ -138,7 +138,7 @@ def row(ident, by, t, target, **more):
 
 
 def place_sigma2(scatter, v, fineness):
-    return (scatter * v) ** 2 + fineness**2 / 12 + 1
+    return (scatter * v) ** 2 + fineness**2 / 12 + 4
 
 
 def constant_speed():

@@ -134,7 +134,7 @@ describe('the wheel scale', () => {
     expect(sheet.finish?.elapsedS).toBeCloseTo(at(30_000), 1);
   });
 
-  it('a leg too short to trust leaves it: 2σ/σλ, 2 × 4.1 m over 0.1 % = 8.2 km after the first correction', () => {
+  it('a leg too short to trust leaves it: 2σ/σλ, 2 × 4.5 m over 0.1 % = 9.0 km after the first correction', () => {
     const short = (to: string): Pack => ({
       ...pack,
       courseBook: {
@@ -144,8 +144,8 @@ describe('the wheel scale', () => {
     });
     const run = (to: string, metres: number) =>
       leg(sheetOf(short(to), journal(drive(620, SHORT), [tapAt(at(4_000)), tapAt(at(12_000)), tapAt(at(metres))])), 'two');
-    expect(run('20.000', 20_000).scaleKept).toBe('leg too short');
-    expect(run('20.500', 20_500).scaleKept).toBeNull();
+    expect(run('20.800', 20_800).scaleKept).toBe('leg too short');
+    expect(run('21.100', 21_100).scaleKept).toBeNull();
   });
 
   it('short legs add up from the last place that set the scale, and the placing between them does not matter', () => {
@@ -157,14 +157,14 @@ describe('the wheel scale', () => {
           c.id === 'two'
             ? { ...c, at: { text: '16.000', unit: 'km' } }
             : c.id === 'three'
-              ? { ...c, duty: 'scale', at: { text: '20.500', unit: 'km' } }
+              ? { ...c, duty: 'scale', at: { text: '21.500', unit: 'km' } }
               : c,
         ),
       },
     };
     const run = (...between: NewObservation[]) =>
-      sheetOf(p, journal(drive(620, SHORT), [tapAt(at(4_000)), tapAt(at(12_000)), tapAt(at(20_500))], between));
-    // 4 km and 4.5 km are each less than 8.2 km, 8.5 km are not; the touch between is 8 m late
+      sheetOf(p, journal(drive(620, SHORT), [tapAt(at(4_000)), tapAt(at(12_000)), tapAt(at(21_500))], between));
+    // 4 km and 5.5 km are each less than 9.0 km, 9.5 km are not; the touch between is 8 m late
     const sheet = run(tapAt(at(16_000) + 0.2));
     expect(leg(sheet, 'two')).toMatchObject({ by: 'tap', scaleKept: 'leg too short', scaleAfter: leg(sheet, 'one').scaleAfter });
     expect(leg(sheet, 'two').movedM).toBeCloseTo(-8, 0);
@@ -177,9 +177,9 @@ describe('the wheel scale', () => {
     const sheet = sheetOf(withSettings(pack, { scaleRule: 'gain' }), list(800));
     const one = leg(sheet, 'one');
     const ratio = 8_000 / ((one.measuredM as number) - 4_000);
-    // s² = 0.003² and the drift of 4 + 8 km; σ² = (0.1·40)² + 1 + (1/√12)²
+    // s² = 0.003² and the drift of 4 + 8 km; σ² = (0.1·40)² + 2² + (1/√12)²
     const s2 = 0.003 ** 2 + 1.2e-11 * (4_000 + (one.measuredM as number) - 4_000 - (leg(sheet, 'settle').movedM as number));
-    const g = s2 / (s2 + (2 * (16 + 1 + 1 / 12)) / 8_000 ** 2);
+    const g = s2 / (s2 + (2 * (16 + 4 + 1 / 12)) / 8_000 ** 2);
     expect(one.scaleAfter).toBeCloseTo(250 * ratio ** g, 4);
   });
 
