@@ -87,12 +87,15 @@ function highestSpeed(car: CarState, course: DriveCourse): number {
 
 /** Deceleration needed now (or `ahead` metres further on) for the limits and the stop ahead; 0 while it is too early to brake. */
 function brakingNeeded(car: CarState, course: DriveCourse, full: number, ahead = 0): number {
-  const forSpeed = (speed: number, at: number, share: number): number => {
-    if (car.v <= speed || car.x >= at || car.x < at - BRAKING_WITHIN) return 0;
-    const needed = (car.v * car.v - speed * speed) / (2 * Math.max(0.05, at - car.x - ahead));
-    return needed >= full * share ? needed : 0;
-  };
-  let most = forSpeed(0, course.stop, SLOW_DOWN_SHARE);
-  for (const zone of course.zones) most = Math.max(most, forSpeed(zone.limit - UNDER_LIMIT, zone.from, BRAKE_SHARE));
+  let most = brakingFor(car, ahead, 0, course.stop, full * SLOW_DOWN_SHARE);
+  for (const zone of course.zones) {
+    most = Math.max(most, brakingFor(car, ahead, zone.limit - UNDER_LIMIT, zone.from, full * BRAKE_SHARE));
+  }
   return most;
+}
+
+function brakingFor(car: CarState, ahead: number, speed: number, at: number, least: number): number {
+  if (car.v <= speed || car.x >= at || car.x < at - BRAKING_WITHIN) return 0;
+  const needed = (car.v * car.v - speed * speed) / (2 * Math.max(0.05, at - car.x - ahead));
+  return needed >= least ? needed : 0;
 }

@@ -116,9 +116,12 @@ function createSlip({ slips }: DriveParameters, random: Random): (x: number, v: 
   let rate = 0;
   let left = 0;
   return (x, v, dt) => {
-    if (event(x) && left <= 0 && v > 10) {
-      left = slips.overS;
-      rate = (random.range(slips.low, slips.high) * (random.unit() < 0.5 ? -1 : 1)) / slips.overS;
+    if (event(x)) {
+      const size = random.range(slips.low, slips.high) * (random.unit() < 0.5 ? -1 : 1);
+      if (left <= 0 && v > 10) {
+        left = slips.overS;
+        rate = size / slips.overS;
+      }
     }
     if (left <= 0) return 0;
     const during = Math.min(dt, left);

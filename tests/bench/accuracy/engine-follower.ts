@@ -1,6 +1,7 @@
 import type { Pack } from '#shared/course/pack.ts';
 import type { Observation } from '#shared/journal/observation.ts';
 import { begin, step } from '#shared/pace/run.ts';
+import { targetSpeedAt } from '#shared/pace/schedule.ts';
 import { situationAt } from '#shared/pace/situation.ts';
 import type { Follower } from './follower.ts';
 
@@ -19,8 +20,11 @@ export function followByEngine(pack: Pack): Follower {
   return {
     take,
     shown(at) {
-      const { timeError, planned, sigma } = situationAt(state, at);
-      return timeError === null ? null : { timeError, planned, sigma };
+      const { timeError, planned, sigma, distance, finish, model } = situationAt(state, at);
+      if (timeError === null) return null;
+      // the passing of the finish is told with the next knot of the trace; until then the schedule has ended and the distance goes on
+      const beyond = finish === null ? Math.max(0, distance - model.finish) / targetSpeedAt(model.schedule, model.finish) : 0;
+      return { timeError: timeError - beyond, planned, sigma };
     },
   };
 }
