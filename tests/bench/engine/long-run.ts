@@ -4,24 +4,23 @@ import { RELEASE_US } from '#tests/unit/pace/drives.ts';
 import { pack as demo, km, place } from '#tests/unit/pace/packs.ts';
 
 /**
- * A run of any length as a journal: wheel at 100 Hz, GNSS and the box's clock once a second, a touch every ten minutes. The speed
- * wavers about the average, so that the advice has work to do.
+ * A run of any length as a journal: wheel at 100 Hz, GNSS once a second, the clock once a minute, five touches. The speed wavers
+ * about the average, so that the advice has work to do.
  */
 
 const AVERAGE = 36;
 const WAVER_M = 12;
 const WAVER_S = 11;
 const METRES_PER_PULSE = 0.25;
-/** Official distance of the touch, or of a zone, number i. */
-const PLACE_EVERY_M = AVERAGE * 600;
+/** A sixth of the course, an hour's or twelve hours'. */
+const placeEvery = (hours: number): number => AVERAGE * 600 * hours;
 
-/** The course of a run of so many hours: a checkpoint every ten minutes, a zone after every second one. */
+/** The course of a run of so many hours: five checkpoints, a zone after every second one. */
 export function longPack(hours: number): Pack {
   const length = AVERAGE * 3600 * hours;
+  const every = placeEvery(hours);
   const text = (metres: number): string => (metres / 1000).toFixed(3);
-  const places = Array.from({ length: Math.ceil(length / PLACE_EVERY_M) - 1 }, (_, i) =>
-    place(`p${i}`, i === 0 ? 'settle' : 'scale', text((i + 1) * PLACE_EVERY_M)),
-  );
+  const places = Array.from({ length: 5 }, (_, i) => place(`p${i}`, i === 0 ? 'settle' : 'scale', text((i + 1) * every)));
   const zones = places.flatMap(({ id }, i) =>
     i % 2 === 0
       ? []
@@ -29,8 +28,8 @@ export function longPack(hours: number): Pack {
           {
             id: `z${id}`,
             name: `Zone ${id}`,
-            from: km(text((i + 1) * PLACE_EVERY_M + 900)),
-            to: km(text((i + 1) * PLACE_EVERY_M + 1_500)),
+            from: km(text((i + 1) * every + 900)),
+            to: km(text((i + 1) * every + 1_500)),
             limit: { text: '120', unit: 'km/h' as const },
             source: 'crew' as const,
           },
@@ -59,6 +58,7 @@ const SECONDS_BEFORE = 30;
 /** In order of instant, numbered; one at a time, so that the run itself takes no memory. */
 export function* longRun(pack: Pack, seconds: number): Generator<Observation> {
   let seq = 0;
+  const every = placeEvery(seconds / 3600);
   const next = (o: NewObservation): Observation => ({ ...o, seq: seq++ }) as Observation;
   const releaseMs = pack.attempt.releaseMs as number;
   for (let i = -SECONDS_BEFORE * 100; i <= seconds * 100; i++) {
@@ -71,13 +71,13 @@ export function* longRun(pack: Pack, seconds: number): Generator<Observation> {
     yield next({ type: 'fix.v1', at, via: 'nmea', lat: null, lon: null, speed, course: null, accuracy: null, utcMs: null });
     if (i % 6_000 === 50)
       yield next({ type: 'clock.v1', at, source: 'exchange', officialMs: releaseMs + t * 1000 + (i % 7) / 10, uncertaintyMs: 5 });
-    if (Math.floor(metresAt(t) / PLACE_EVERY_M) > Math.floor(metresAt(t - 1) / PLACE_EVERY_M)) yield next(touch(t));
+    if (Math.floor(metresAt(t) / every) > Math.floor(metresAt(t - 1) / every)) yield next(touch(t, every));
   }
 }
 
 /** The touch at the place passed within the last second. */
-function touch(t: number): NewObservation {
-  const d = Math.floor(metresAt(t) / PLACE_EVERY_M) * PLACE_EVERY_M;
+function touch(t: number, every: number): NewObservation {
+  const d = Math.floor(metresAt(t) / every) * every;
   let [low, high] = [t - 1, t];
   for (let i = 0; i < 40; i++) {
     const middle = (low + high) / 2;
