@@ -65,6 +65,8 @@ const HARDEST_BRAKING = 12;
 const SLOWEST = 5;
 const WINDOW_US = 125_000;
 const WINDOW_PULSES = 3;
+/** Looked at no more often than this; a quick box sends every other record sooner. */
+export const LOOK_US = 15_000;
 /** Instants of records err by up to this, s. */
 const JITTER_S = 0.03;
 /** A count that goes on is believed when it did so at one speed over two stages of at least this. */

@@ -4,7 +4,7 @@ import { gnssMetresAt, SURELY_MOVING } from '#shared/pace/gnss.ts';
 import { handBack, noteGnss } from '#shared/pace/gnss-source.ts';
 import type { Odometer, OdometerChange } from '#shared/pace/odometer.ts';
 import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
-import { restartGap, watchGap } from '#shared/pace/pulse-gap.ts';
+import { LOOK_US, restartGap, watchGap } from '#shared/pace/pulse-gap.ts';
 import { returnToFirst, takeSecond } from '#shared/pace/second-wheel.ts';
 import { rateNow } from '#shared/pace/track.ts';
 import { beginAnew, takeRecord } from '#shared/pace/wheel.ts';
@@ -66,27 +66,41 @@ function takeFirst(o: Odometer, pulse: PulseV1, metresPerPulse: number): Odomete
 function takeCount(o: Odometer, step: number, metresPerPulse: number): OdometerChange {
   const { wheel, gap } = o;
   const turned = wheel.forward === 0 && step !== 0 && findDirection(o, metresPerPulse);
-  const help = o.second.standing !== null ? 'second' : gap.phase === 'open' && isAtRest(o) ? 'rest' : 'none';
+  if (gap.phase !== 'steady' || o.second.standing !== null || wheel.at - gap.at >= LOOK_US) {
+    const change = lookForGap(o, step, metresPerPulse);
+    if (change !== null) return change;
+  }
+  if (step === 0) {
+    o.stillAt = wheel.at;
+    return UNREMARKABLE;
+  }
+  const change = count(o, metresPerPulse);
+  // all since the baseline was told anew
+  return turned ? { ...change, launch: 'complete' } : change;
+}
+
+function count(o: Odometer, metresPerPulse: number): OdometerChange {
+  const { wheel, wheelKnot } = o;
+  const pulses = wheel.total - wheelKnot.total;
+  // one pulse more may have been on its way all the time; several were not, and neither was one after a rest
+  if (Math.abs(pulses) > 1 || o.stillAt - wheelKnot.at > RESTED_US) keepStill(o);
+  wheelKnot.at = wheel.at;
+  wheelKnot.total = wheel.total;
+  return knot(o, wheel.at, o.w + pulses, o.g, metresPerPulse);
+}
+
+/** Null where the record counts as any other. */
+function lookForGap(o: Odometer, step: number, metresPerPulse: number): OdometerChange | null {
+  const { wheel, gap } = o;
   const { at, total } = wheel;
+  const help = o.second.standing !== null ? 'second' : gap.phase === 'open' && isAtRest(o) ? 'rest' : 'none';
   const verdict = watchGap(gap, at, total, step, wheel.since, help, metresPerPulse);
   if (verdict === 'hold') return UNREMARKABLE;
   if (help === 'second') {
     const isBack = verdict !== 'count' || (step !== 0 && gap.phase === 'steady' && gap.at === at);
     return isBack ? returnToFirst(o, gap.rate, verdict !== 'found', metresPerPulse) : UNREMARKABLE;
   }
-  if (verdict !== 'count') return fillGap(o, metresPerPulse);
-  if (step === 0) {
-    o.stillAt = at;
-    return UNREMARKABLE;
-  }
-  const pulses = total - o.wheelKnot.total;
-  // one pulse more may have been on its way all the time; several were not, and neither was one after a rest
-  if (Math.abs(pulses) > 1 || o.stillAt - o.wheelKnot.at > RESTED_US) keepStill(o);
-  o.wheelKnot.at = at;
-  o.wheelKnot.total = total;
-  const change = knot(o, at, o.w + pulses, o.g, metresPerPulse);
-  // all since the baseline was told anew
-  return turned ? { ...change, launch: 'complete' } : change;
+  return verdict === 'count' ? null : fillGap(o, metresPerPulse);
 }
 
 /** GNSS says that the car hardly moves. */
