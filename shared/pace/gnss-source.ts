@@ -1,10 +1,11 @@
 import type { Aids } from '#shared/course/race-class.ts';
 import type { FixV1 } from '#shared/journal/observation.ts';
-import { gnssMetresAt, OUTAGE_US, SURELY_MOVING, takeFix } from '#shared/pace/gnss.ts';
+import { type GnssKnot, gnssMetresAt, OUTAGE_US, SURELY_MOVING, takeFix } from '#shared/pace/gnss.ts';
 import { rewriteLaunches } from '#shared/pace/launch.ts';
 import type { Odometer, OdometerChange } from '#shared/pace/odometer.ts';
 import { keepStill, knot, UNREMARKABLE } from '#shared/pace/odometer-knot.ts';
 import { projectFix, type Surveyed } from '#shared/pace/projected-fixes.ts';
+import { settleSlip } from '#shared/pace/source-comparison.ts';
 import { lookAgain, rewriteNodes } from '#shared/pace/source-nodes.ts';
 import { bridgeToCounts, lastKnotAt } from '#shared/pace/track.ts';
 
@@ -47,7 +48,7 @@ function carryOn(o: Odometer, metresPerPulse: number): OdometerChange {
   }
   if (o.mode === 'wheel') {
     if (!wheelFellSilent(o, arrival)) return UNREMARKABLE;
-    beginBridge(o);
+    beginBridge(o, metresPerPulse);
   }
   const lastAt = lastKnotAt(o.track) ?? at;
   const g = gnss.metres - o.gnssZero;
@@ -72,15 +73,18 @@ function noteOutage({ gnss, losses }: Odometer, at: number, arrival: number, met
   losses.push({ at, sigma: gnss.by === 'speed' ? Math.sqrt((SPEED_WANDER * (us / 1e6) ** 3) / 12) : LINE_SHARE * metres });
 }
 
+/** Two fixes at least say that the car moves, and have for as long: a car that moves off is ahead of a wheel that is told late. */
 function wheelFellSilent(o: Odometer, at: number): boolean {
+  if (at - o.wheelKnot.at <= SILENT_US) return false;
   const { recent } = o.gnss;
-  const [a, b] = [recent[recent.length - 2], recent[recent.length - 1]];
-  if (a === undefined || b === undefined || at - o.wheelKnot.at <= SILENT_US) return false;
-  return a.speed > SURELY_MOVING && b.speed > SURELY_MOVING;
+  let i = recent.length;
+  while (i > 0 && (recent[i - 1] as GnssKnot).speed > SURELY_MOVING) i--;
+  return recent.length - i >= 2 && at - Math.max(o.wheelKnot.at, (recent[i] as GnssKnot).at) > SILENT_US;
 }
 
-function beginBridge(o: Odometer): void {
+function beginBridge(o: Odometer, metresPerPulse: number): void {
   const from = lastKnotAt(o.track) ?? o.wheelKnot.at;
+  settleSlip(o, from, metresPerPulse);
   // a wheel silent for longer than GNSS remembers was standing: it moved only as long as GNSS says
   const since = Math.max(from, (o.gnss.recent[0] as { at: number }).at - o.gnss.lag.us);
   o.bridge = { at: from, w: o.w, g: o.g, total: o.wheelKnot.total };

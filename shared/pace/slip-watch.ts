@@ -7,8 +7,8 @@ import { type Latency, rebase } from '#shared/pace/gnss-latency.ts';
 export interface SlipWatch {
   /** Readings expected from some seconds ago on, by the wheel alone; the older one judges. */
   marks: Mark[];
-  /** Slipping or losing now: since when, metres to be added to the wheel's so far, samples in a row without more. */
-  active: { from: number; metres: number; quiet: number } | null;
+  /** Slipping or losing now: since when, metres to be added to the wheel's so far; samples in a row without more, and what they add up to. */
+  active: { from: number; metres: number; quiet: number; drift: number } | null;
   /** What is over. */
   done: Slip[];
 }
@@ -22,10 +22,12 @@ export interface Slip {
 
 interface Mark {
   readonly at: number;
-  /** Speed, the expected reading's variance, and the ratio held then. */
+  /** Speed, the ratio held then, and variances of the expected reading, of that ratio and of the lateness. */
   readonly v: number;
-  readonly variance: number;
   readonly ratio: number;
+  readonly variance: number;
+  readonly ratioVariance: number;
+  readonly lagVariance: number;
   /** Expected reading now, and nominal metres by the wheel since. */
   reading: number;
   wheel: number;
@@ -61,7 +63,8 @@ export function carryMarks(watch: SlipWatch, wheel: number, other: number, gathe
 
 /** A new mark where the filter stands, and the oldest dropped. */
 function setMark(watch: SlipWatch, f: Latency, at: number, v: number): void {
-  watch.marks.push({ at, v, variance: f.p[0], ratio: f.ratio, reading: f.reading, wheel: 0, gathered: 0 });
+  const [variance, , , ratioVariance, , lagVariance] = f.p;
+  watch.marks.push({ at, v, ratio: f.ratio, variance, ratioVariance, lagVariance, reading: f.reading, wheel: 0, gathered: 0 });
   if (watch.marks.length > 2) watch.marks.shift();
 }
 
@@ -88,8 +91,8 @@ export function judge(watch: SlipWatch, f: Latency, r: Reading): { readonly metr
   const mark = watch.marks[0];
   if (mark === undefined) return null;
   const off = r.reading - mark.reading;
-  const variance =
-    mark.variance + mark.gathered + r.noise + mark.wheel * mark.wheel * f.p[3] + (r.v - mark.v) ** 2 * Math.max(f.p[5], r.late * r.late);
+  const late = (r.v - mark.v) ** 2 * Math.max(mark.lagVariance, r.late * r.late);
+  const variance = mark.variance + mark.gathered + r.noise + mark.wheel * mark.wheel * mark.ratioVariance + late;
   const sigma = Math.sqrt(variance);
   if (watch.active === null) {
     const last = watch.marks[watch.marks.length - 1] as Mark;
@@ -97,12 +100,17 @@ export function judge(watch: SlipWatch, f: Latency, r: Reading): { readonly metr
       if (r.at - last.at >= MARK_US) setMark(watch, f, r.at, r.v);
       return null;
     }
-    watch.active = { from: mark.at, metres: 0, quiet: 0 };
+    watch.active = { from: mark.at, metres: 0, quiet: 0, drift: 0 };
     const before = watch.done[watch.done.length - 1];
     if (before !== undefined && mark.at - before.to < AGAIN_US) doubtRatio(f);
     // what was learnt since is the slip's
     else f.ratio = mark.ratio;
-  } else watch.active.quiet = Math.abs(off) <= AGREES * sigma ? watch.active.quiet + 1 : 0;
+  } else {
+    const { active } = watch;
+    active.drift += off;
+    active.quiet = Math.abs(off) <= AGREES * sigma && Math.abs(active.drift) <= AGREES * sigma ? active.quiet + 1 : 0;
+    if (active.quiet === 0) active.drift = 0;
+  }
   agreeFrom(watch, f, r);
   const { active } = watch;
   const metres = Math.abs(off) > MOST_M ? 0 : off;

@@ -1,5 +1,5 @@
 import type { FixV1 } from '#shared/journal/observation.ts';
-import { type GnssKnot, LAG_BEFORE } from '#shared/pace/gnss.ts';
+import { type GnssKnot, gnssMetresAt, LAG_BEFORE } from '#shared/pace/gnss.ts';
 import { doubtLag, gripNoise, type Latency, lagSigma, learn, makeLatency, predict, readingNoise } from '#shared/pace/gnss-latency.ts';
 import type { Odometer } from '#shared/pace/odometer.ts';
 import { agreeFrom, carryMarks, finish, judge, makeSlipWatch, type SlipWatch } from '#shared/pace/slip-watch.ts';
@@ -36,6 +36,7 @@ export interface WheelKind {
   readonly driven: boolean;
 }
 
+/** One sample in each such stretch of session time, so that it does not matter where the comparing began. */
 const EVERY_US = 400_000;
 /** See `Reading.late`. A tablet's own location is smoothed, and by how much is anyone's guess. */
 const LATE = { nmea: 0.03, geolocation: 1 } as const;
@@ -51,7 +52,7 @@ export function compareSources(o: Odometer, fix: GnssKnot, before: GnssKnot | un
   const c = o.comparison;
   const via = o.gnss.last?.via ?? 'nmea';
   c.spread += before === undefined ? 0 : ((fix.at - before.at) / 1e6) ** 2;
-  if (c.last !== null && fix.at - c.last.at < EVERY_US) return;
+  if (c.last !== null && Math.floor(fix.at / EVERY_US) === Math.floor(c.last.at / EVERY_US)) return;
   if (via !== c.via) {
     c.filter = makeLatency(LAG_BEFORE[via].us / 1e6, LAG_BEFORE[via].sigmaUs / 1e6);
     c.via = via;
@@ -103,6 +104,18 @@ function take(o: Odometer, last: Sample, here: Sample, fix: GnssKnot, noise: num
   here.w -= ((filter.lag - lag) * here.v) / (filter.ratio * wheel.metresPerPulse);
   o.gnss.lag.us = Math.round(filter.lag * 1e6);
   o.gnss.lag.sigmaUs = Math.round(lagSigma(filter) * 1e6);
+}
+
+/** A wheel that slipped falls silent: what it counted too many or too few since the last look is put right before it is left. */
+export function settleSlip(o: Odometer, at: number, metresPerPulse: number): void {
+  const { last, slip, filter } = o.comparison;
+  const reading = gnssMetresAt(o.gnss, at);
+  if (slip.active === null || last === null || reading === null) return;
+  const counted = filter.ratio * (o.w - last.w) * metresPerPulse + o.g - last.g;
+  const metres = reading - filter.reading - counted;
+  slip.active.metres += metres;
+  o.g += metres;
+  addKnot(o.track, at, o.w, o.g, false);
 }
 
 /** The distance follows GNSS from the instant of the fix on. */

@@ -25,7 +25,7 @@ export const makeSecondLook = (): SecondLook => ({ seenAt: 0, dueAt: null, last:
 
 /** A car slower than this may as well stand, m/s. */
 const MOVES = 1;
-/** A box that only speaks when the wheel turns is waited for no longer. */
+/** A wheel that does not turn is waited for no longer. */
 const WAIT_US = 2_000_000;
 
 /** Looks at the fixes that both sources now reach; true when a node was made. */
@@ -44,14 +44,13 @@ export function lookAgain(o: Odometer, wheel: WheelKind): boolean {
   return made;
 }
 
-/** Has the wheel turned at or after the fix came, or stood still according to both? */
+/** Has the wheel turned at or after the fix came, or long not turned while GNSS hardly moved? Whatever comes later changes nothing. */
 function isReached(o: Odometer, fix: GnssKnot): boolean {
   if (o.mode !== 'wheel' || o.wheelKnot.at >= fix.at) return true;
-  if (fix.speed >= SURELY_MOVING) return false;
-  return o.wheel.at >= fix.at || (o.gnss.last as { at: number }).at - fix.at > WAIT_US;
+  return fix.speed < SURELY_MOVING && (o.gnss.last as { at: number }).at - fix.at > WAIT_US;
 }
 
-const failuresOf = (o: Odometer): number => o.bridges + o.wheel.restarts + o.losses.length;
+const failuresOf = (o: Odometer): number => o.bridges + o.wheel.restarts + o.losses.length + o.fills.count + o.second.standIns;
 
 function takeNode(o: Odometer, fix: GnssKnot, before: GnssKnot | undefined): boolean {
   const look = o.secondLook;
