@@ -41,8 +41,8 @@ export function driveOnce(setting: Setting, method: Method, seed: number, rates:
   const follower = makeFollower(setting, method, pack, world);
   const feed = makeFeed(follower, world);
   const truth = makeTruth(pack, RELEASE_US);
-  const shown: { holdSpeed: null; stopped: boolean; late?: number } = { holdSpeed: null, stopped: false };
-  let stoppedAt: number | null = null;
+  const shown: { holdSpeed: number | null; stopped: boolean; late?: number } = { holdSpeed: null, stopped: false };
+  let heldFrom: number | null = null;
   feed([clockAt(1, 'exchange')]);
   while (world.at < RELEASE_US + LONGEST * pack.raceClass.targetTimeMs * 1000) {
     feed(world.tick(shown));
@@ -53,9 +53,12 @@ export function driveOnce(setting: Setting, method: Method, seed: number, rates:
     const error = follower.shown(world.at);
     truth.look(world.at, world.car.x, error);
     if (error !== null) shown.late = error.timeError - error.planned;
-    if (setting.stop === null) continue;
-    if (world.car.x >= setting.stop.atM) stoppedAt ??= world.at;
-    shown.stopped = stoppedAt !== null && world.at - stoppedAt < setting.stop.s * 1e6;
+    const { neutral } = setting;
+    if (neutral === null) continue;
+    const { x } = world.car;
+    if (x >= neutral.heldAt) heldFrom ??= world.at;
+    shown.stopped = heldFrom !== null && world.at - heldFrom < neutral.heldS * 1e6;
+    shown.holdSpeed = x >= neutral.from && x < neutral.to ? neutral.speed : null;
   }
   throw new Error(`${setting.title}, ${method}, seed ${seed}: never reached the finish`);
 }

@@ -16,8 +16,14 @@ export interface Setting {
   readonly lead: { readonly mean: number; readonly sigma: number };
   /** The surveyed line's distances are wrong by a constant and by one sigma that wanders over a span, metres. */
   readonly geometryOff: { readonly constant: number; readonly sigma: number; readonly spanM: number };
-  /** The car is held here for so long, the target time with it. */
-  readonly stop: { readonly atM: number; readonly s: number } | null;
+  /** A neutral stretch, driven at a speed of its own, in which the car is held at one place. Metres, seconds, m/s. */
+  readonly neutral: {
+    readonly from: number;
+    readonly to: number;
+    readonly speed: number;
+    readonly heldAt: number;
+    readonly heldS: number;
+  } | null;
 }
 
 const { tyre, slips, dropouts, gnss } = USUAL_PARAMETERS;
@@ -90,7 +96,7 @@ const SLOW: Pack = {
   ownCheckpoints: places(5, 10, 15, 20, 25, 30, 35),
 };
 
-/** Held for five minutes half-way, as a neutral stretch. */
+/** Held for five minutes half-way, in a neutral stretch. */
 const HELD: Pack = {
   ...LONG,
   raceClass: {
@@ -112,7 +118,7 @@ const BASE: Setting = {
   navigator: { scatterMs: 100, missed: 0.05 },
   lead: { mean: 200, sigma: 50 },
   geometryOff: { constant: 0, sigma: 0, spanM: 1000 },
-  stop: null,
+  neutral: null,
 };
 
 const ROUGH: Setting = {
@@ -188,7 +194,7 @@ export const SETTINGS = {
         coolS: 400,
       },
     },
-    stop: { atM: 63_500, s: 300 },
+    neutral: { from: 63_000, to: 64_000, speed: 25, heldAt: 63_500, heldS: 300 },
   },
   geometryOff: { ...BASE, title: 'model: surveyed line off by 5 m and 3 m over 1 km', geometryOff: { constant: 5, sigma: 3, spanM: 1000 } },
   alikeTaps: {

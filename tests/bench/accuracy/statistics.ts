@@ -5,7 +5,7 @@ export interface Accuracy {
   readonly finishRmsMs: number;
   readonly finish95Ms: number;
   readonly lastTenthRmsMs: number;
-  /** Share of drives whose finish error is within twice the stated uncertainty. */
+  /** Share of drives whose finish error is within twice the stated uncertainty; NaN where none is stated. */
   readonly within2Sigma: number;
   readonly courseRmsMs: number;
   readonly resultRmsMs: number;
@@ -22,7 +22,7 @@ export function accuracyOf(outcomes: readonly Outcome[]): Accuracy {
     finishRmsMs: rms(finish),
     finish95Ms: quantile(finish, 0.95),
     lastTenthRmsMs: pooled(outcomes.map((o) => o.lastTenth)),
-    within2Sigma: within / outcomes.length,
+    within2Sigma: outcomes.some((o) => Number.isNaN(o.sigmaMs)) ? Number.NaN : within / outcomes.length,
     courseRmsMs: pooled(outcomes.map((o) => o.course)),
     resultRmsMs: rms(result),
     result95Ms: quantile(result, 0.95),
