@@ -3,7 +3,6 @@ import type { CourseModel } from '#shared/pace/course-model.ts';
 import { firstBelief, firstTyres } from '#shared/pace/estimator.ts';
 import type { Launch } from '#shared/pace/launch.ts';
 import { type Anchor, type Derived, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
-import { leadInput, leadSigma } from '#shared/pace/tap-lead.ts';
 import { type Counts, tracedAt, withHeat } from '#shared/pace/track.ts';
 
 /** Which launch was the start, when the time started, and the first anchor. */
@@ -104,7 +103,7 @@ function firstAnchor(state: RunState, at: number, d: number, counts: Counts, var
     mmPerPulse,
     ...(estimated ? firstTyres(pack) : { cold: 0, speed: 0 }),
     official: 1,
-    belief: estimated ? firstBelief(pack, spun, leadSigma(pack, leadInput(state))) : null,
+    belief: estimated ? firstBelief(pack, spun) : null,
     scaleVariance: scaleSigma * scaleSigma,
     variance: spun,
     covariance: 0,

@@ -35,6 +35,8 @@ const GATE_SIGMAS = 3.5;
 /** One touch is enough within this of the place, or within so many sigmas where distance is less sure. */
 const LEAST_REACH_M = 150;
 const REACH_SIGMAS = 4;
+/** No wheel loses so much unnoticed: a touch further off belongs to another place, unless the navigator insists. */
+const FARTHEST_M = 3000;
 /** −2 ln of how rare a mistaken touch is (and how far it may be off), and a jump of distance or scale. Own judgement, tried by simulation. */
 const COST_OF_MISTAKE = 23;
 const COST_OF_JUMP = 14;
@@ -94,7 +96,7 @@ function judgeAt({ model }: TapContext, tap: TapAct, judge: TapJudge, choice: nu
   const strain = (moved * moved) / variance;
   const about = verdictAt(tap, place.checkpoint.id, { ...misfit, surveySigma: place.surveySigma });
   const scale = judge.scale;
-  if (takenFor === 'mistaken') {
+  if (takenFor === 'mistaken' || (takenFor !== 'trusted' && Math.abs(moved) > FARTHEST_M)) {
     const kept = { scaleBefore: scale, scaleAfter: scale, scaleKept: null };
     return { tap, verdict: { ...about, verdict: 'doubted', moved, ...kept }, use: null, strain, cost: COST_OF_MISTAKE };
   }

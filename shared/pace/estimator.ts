@@ -1,14 +1,17 @@
 import type { Pack } from '#shared/course/pack.ts';
 import { absorb, add, type Covariance, carryFirst, dot, shrink, times } from '#shared/pace/covariance.ts';
-import type { Anchor } from '#shared/pace/run-state.ts';
+import type { Anchor, TapAct } from '#shared/pace/run-state.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
+import { leadSigma } from '#shared/pace/tap-lead.ts';
 import type { Raw } from '#shared/pace/track.ts';
+
+type TapInput = TapAct['input'];
 
 /**
  * The estimator: an extended Kalman filter over what the crew cannot see. Distance follows
  * dD = e^κ · (m·(dw − A·dh + B·du) + dg), where m = m₀·e^λ is the scale of a warm, slow tyre in driven metres per count; A is the
- * cold tyres' deficit, weighted by coldness (h); B is what speed does, with (v/50)² (u); κ tells official from driven metres. Two
- * more: the slow error of GNSS positions, and the navigator's lead beyond the one in the pack. Kalman's equations are common
+ * cold tyres' deficit, weighted by coldness (h); B is what speed does, with (v/50)² (u); κ tells official from driven metres.
+ * Three more: the slow error of GNSS positions, and the navigator's lead by each input beyond the one in the pack. Kalman's equations are common
  * knowledge of estimation theory; the model and its figures are our own, tuned by simulation, no source.
  */
 
@@ -19,15 +22,15 @@ const COLD = 2;
 const SPEED = 3;
 const OFFICIAL = 4;
 const PLACED = 5;
-const LEAD = 6;
-const N = 7;
+const LEAD = { glass: 6, wired: 7 } as const;
+const N = 8;
 
 export interface Belief {
   readonly covariance: Covariance;
   /** Slow error of GNSS positions along the course, m. */
   readonly placed: number;
-  /** The navigator's lead beyond the pack's, s; positive = touches late. */
-  readonly lead: number;
+  /** The navigator's lead beyond the pack's by input, s; positive = touches late. */
+  readonly lead: Readonly<Record<TapInput, number>>;
   readonly temper: Temper;
 }
 
@@ -69,8 +72,8 @@ const GATE = 4;
 /** Reading between two pulses, m². */
 const PULSE_VARIANCE = 0.1;
 
-/** What is believed before the first metre. `variance`: of the distance at the start, m². `leadSigma` in seconds. */
-export function firstBelief(pack: Pack, variance: number, leadSigma: number): Belief {
+/** What is believed before the first metre. `variance`: of the distance at the start, m². */
+export function firstBelief(pack: Pack, variance: number): Belief {
   const { aids } = pack.raceClass;
   const { scaleSigma, scaleSource, driven } = pack.wheel;
   const byGnss = aids.gnssSpeed || aids.gnssPosition;
@@ -82,8 +85,8 @@ export function firstBelief(pack: Pack, variance: number, leadSigma: number): Be
   set(COLD, COLD_TYRES.sigma ** 2);
   set(SPEED, (driven === true ? BY_SPEED.driven : BY_SPEED.rolling).sigma ** 2);
   set(OFFICIAL, byGnss ? line : 0);
-  set(LEAD, leadSigma * leadSigma);
-  return { covariance, placed: 0, lead: 0, temper: USUAL };
+  for (const input of ['glass', 'wired'] as const) set(LEAD[input], leadSigma(pack, input) ** 2);
+  return { covariance, placed: 0, lead: { glass: 0, wired: 0 }, temper: USUAL };
 }
 
 /** The tyres' part of the first anchor: `cold` and `speed`. */
@@ -105,7 +108,7 @@ function wayTo(a: Anchor, raw: Raw): Way {
   const [dw, dh, du, dg] = [raw.w - a.w, raw.h - a.h, raw.u - a.u, raw.g - a.g];
   const wheel = m * (dw - a.cold * dh + a.speed * du);
   const official = a.official * (wheel + dg);
-  const f = [1, a.official * wheel, -a.official * m * dh, a.official * m * du, official, 0, 0];
+  const f = [1, a.official * wheel, -a.official * m * dh, a.official * m * du, official, 0, 0, 0];
   return { f, wheel, official, gnss: dg };
 }
 
@@ -155,7 +158,12 @@ function move(a: Estimate, k: readonly number[], misfit: number, covariance: Cov
     cold: a.cold + by(COLD),
     speed: a.speed + by(SPEED),
     official: a.official * Math.exp(by(OFFICIAL)),
-    belief: { ...a.belief, covariance, placed: a.belief.placed + by(PLACED), lead: a.belief.lead + by(LEAD) },
+    belief: {
+      ...a.belief,
+      covariance,
+      placed: a.belief.placed + by(PLACED),
+      lead: { glass: a.belief.lead.glass + by(LEAD.glass), wired: a.belief.lead.wired + by(LEAD.wired) },
+    },
   };
 }
 
@@ -177,7 +185,7 @@ export function compareSpeed(a: Estimate, since: SourceNode & Raw, node: SourceN
   const wheel = m * (dw - a.cold * dh + a.speed * du);
   const misfit = node.gnssMetres - since.gnssMetres - (node.g - since.g) - wheel;
   const seconds = (node.at - since.at) / 1e6;
-  const h = [0, wheel, -m * dh, m * du, 0, 0, 0];
+  const h = [0, wheel, -m * dh, m * du, 0, 0, 0, 0];
   const c = times(a.belief.covariance, N, h);
   const slipped = SLIPS * Math.abs(wheel);
   const s = dot(c, h) + node.compared + SLOW_SPEED * seconds + slipped;
@@ -198,7 +206,7 @@ export function comparePosition(a: Estimate, { position }: SourceNode): Estimate
   // the slow error is as large as the receiver says today
   const slow = (SLOW_SHARE * sigma) ** 2 - (p[PLACED * N + PLACED] as number);
   add(p, N, PLACED, PLACED, Math.max(0, slow));
-  const h = [1, 0, 0, 0, 0, 1, 0];
+  const h = [1, 0, 0, 0, 0, 1, 0, 0];
   const c = times(p, N, h);
   const s = dot(c, h) + (QUICK_SHARE * sigma) ** 2;
   const misfit = position.d - a.d - a.belief.placed;
@@ -222,21 +230,16 @@ export interface TapAtPlace {
   readonly v: number;
   /** The pack's scatter of taps, s. */
   readonly scatter: number;
-  /** Uncertainty of this input's lead, s, where it is not the one that the estimate follows; else null. */
-  readonly otherLead: number | null;
+  readonly input: TapInput;
 }
 
-const tapRow = ({ v, otherLead }: TapAtPlace): number[] => [1, 0, 0, 0, 0, 0, otherLead === null ? -v : 0];
-
-/** Variance of the tap beside its scatter, m². */
-const besideScatter = ({ v, surveySigma, otherLead }: TapAtPlace): number =>
-  surveySigma ** 2 + PULSE_VARIANCE + ((otherLead ?? 0) * v) ** 2;
+const tapRow = ({ v, input }: TapAtPlace): number[] => (input === 'glass' ? [1, 0, 0, 0, 0, 0, -v, 0] : [1, 0, 0, 0, 0, 0, 0, -v]);
 
 /** How far a tap is off, before it is taken in. The estimate must stand at the tap. */
 export function tapMisfit(a: Estimate, tap: TapAtPlace): TapMisfit {
   const h = tapRow(tap);
-  const own = a.belief.temper.scatter * (tap.scatter * tap.v) ** 2 + besideScatter(tap);
-  const misfit = tap.d - a.d - (h[LEAD] as number) * a.belief.lead;
+  const own = a.belief.temper.scatter * (tap.scatter * tap.v) ** 2 + tap.surveySigma ** 2 + PULSE_VARIANCE;
+  const misfit = tap.d - a.d + tap.v * a.belief.lead[tap.input];
   return { misfit, variance: dot(times(a.belief.covariance, N, h), h) + own, own };
 }
 

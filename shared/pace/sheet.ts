@@ -30,11 +30,7 @@ export function sheetOf(state: RunState, header: RunHeader): RunSheet {
     trace: traceOf(state, model),
     stops: acts.stops.map((stop) => stopRow(state, stop)),
     taps: derived.taps.map(tapRow),
-    aidsUsed: [
-      ...(odometer.usedWheel ? (['wheel'] as const) : []),
-      ...(odometer.usedGnssSpeed ? (['gnss speed'] as const) : []),
-      ...(odometer.usedGnssPosition ? (['gnss position'] as const) : []),
-    ],
+    aidsUsed: aidsUsed(state),
     pulses: odometer.wheel.total,
     observations: state.observations,
     unknownTypes: [...state.unknownTypes].sort(),
@@ -73,6 +69,19 @@ function legRow(state: RunState, model: CourseModel, place: Place, passing: Plac
     scaleAfter: passing.scaleAfter,
     scaleKept: passing.scaleKept,
   };
+}
+
+/** What the figures rest on: sources of distance, and what the estimator compared with. */
+function aidsUsed({ odometer, derived }: RunState): RunSheet['aidsUsed'] {
+  const { sourceNodes, usedWheel, usedGnssSpeed, usedGnssPosition } = odometer;
+  const compared = derived.anchors.some((a) => a.belief !== null);
+  const speed = usedGnssSpeed || (compared && sourceNodes.some((n) => n.compared !== null));
+  const position = usedGnssPosition || (compared && sourceNodes.some((n) => n.position !== null));
+  return [
+    ...(usedWheel ? (['wheel'] as const) : []),
+    ...(speed ? (['gnss speed'] as const) : []),
+    ...(position ? (['gnss position'] as const) : []),
+  ];
 }
 
 function shownOf(state: RunState, finish: { elapsed: number; timeError: number } | null): RunSheet['shown'] {

@@ -1,17 +1,25 @@
 import { courseLineOf } from '#shared/pace/course-line.ts';
-import { distanceOf } from '#shared/pace/distance.ts';
 import type { Surveyed } from '#shared/pace/projected-fixes.ts';
-import { modelOf, type RunState } from '#shared/pace/run-state.ts';
-import { knotAt } from '#shared/pace/track.ts';
+import { modelOf, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
+import { type Counts, rawAt } from '#shared/pace/track.ts';
 
 /** What a position needs to become a distance on the course; null where the book carries no surveyed line. */
 export function surveyedOf(state: RunState): Surveyed | null {
-  const { pack, derived, odometer, changes } = state;
-  const line = courseLineOf(pack.courseBook.geometry);
+  const line = courseLineOf(state.pack.courseBook.geometry);
   if (line === null) return null;
-  const anchor = derived.anchors[derived.anchors.length - 1];
-  const { trace } = odometer.track;
-  const start = modelOf(state).start - Math.max(0, changes.stagedBehindM);
-  const expected = anchor === undefined ? start : distanceOf(anchor, knotAt(trace, trace.at.length - 1));
-  return { line, aerialM: pack.car.behindNose?.aerialM ?? 0, expected };
+  return { line, aerialM: state.pack.car.behindNose?.aerialM ?? 0, expected: expectedOf(state) };
+}
+
+/**
+ * Where on the line to look: from the last place found on it (else from the start) by nominal metres. Taps have no say: a tap that
+ * is taken back must leave no trace in what was measured.
+ */
+function expectedOf(state: RunState): number {
+  const { derived, odometer, changes } = state;
+  const { recent } = odometer.secondLook.projected;
+  const found = recent[recent.length - 1];
+  const [first] = derived.anchors;
+  const since = (raw: Counts | null): number => (raw === null ? 0 : (odometer.w - raw.w) * nominalMetres(state) + (odometer.g - raw.g));
+  if (found !== undefined) return found.d + since(rawAt(odometer.track, found.at));
+  return modelOf(state).start - Math.max(0, changes.stagedBehindM) + (first === undefined ? 0 : since(first));
 }

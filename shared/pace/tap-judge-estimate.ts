@@ -3,7 +3,6 @@ import { lossVariance, scaleNow } from '#shared/pace/distance.ts';
 import { carry, type Estimate, type TapAtPlace, takeTap, tapMisfit } from '#shared/pace/estimator.ts';
 import { speedSquare } from '#shared/pace/heat.ts';
 import type { TapAt, TapJudge } from '#shared/pace/tap-judge.ts';
-import { leadInput, leadSigma } from '#shared/pace/tap-lead.ts';
 import { coldnessAt } from '#shared/pace/track.ts';
 
 /** A tap under the estimator. The last anchor stands at the last node or tap before it. */
@@ -14,8 +13,7 @@ export function estimateJudge({ state, anchors, tap, raw }: TapAt): TapJudge {
   const scatter = pack.settings.tapScatterMs / 1000;
   const at = Math.round(tap.t);
   const here = carry(last, raw, at, lossVariance(odometer.losses, last.at, at));
-  const otherLead = tap.input === leadInput(state) ? null : leadSigma(pack, tap.input);
-  const tapAt = (place: Place): TapAtPlace => ({ d: place.d + seat, surveySigma: place.surveySigma, v: raw.v, scatter, otherLead });
+  const tapAt = (place: Place): TapAtPlace => ({ d: place.d + seat, surveySigma: place.surveySigma, v: raw.v, scatter, input: tap.input });
   const coldness = coldnessAt(odometer.track, at);
   const scaleOf = (a: Estimate): number => scaleNow(a, coldness, speedSquare(raw.v));
   return {

@@ -4,6 +4,9 @@ import type { Anchor } from '#shared/pace/run-state.ts';
 import { placeSigma } from '#shared/pace/scale.ts';
 import { PULSE_VARIANCE, type TapAt, type TapJudge } from '#shared/pace/tap-judge.ts';
 
+/** No tyre changes by more; a leg that says so says something else. */
+const MOST_CHANGE = 0.1;
+
 /** A tap under the simple rules: the distance snaps to the place, and the leg corrects the scale by the team's rule. */
 export function simpleJudge({ state, anchors, tap, raw }: TapAt): TapJudge {
   const anchor = anchors[anchors.length - 1] as Anchor;
@@ -31,7 +34,7 @@ export function simpleJudge({ state, anchors, tap, raw }: TapAt): TapJudge {
       const { kept, ...scale } = correctScale({
         rule: scaleRule,
         // after a jump the counts of the leg are not to be trusted: it places, and must not teach the scale
-        duty: story === 'jump' && duty === 'scale' ? 'place' : duty,
+        duty: (story === 'jump' || Math.abs(moved) > MOST_CHANGE * (d - anchor.scaleFrom.d)) && duty === 'scale' ? 'place' : duty,
         anchor,
         raw,
         at,

@@ -144,14 +144,13 @@ function tracedBefore({ at }: Trace, instant: number): number {
   return low;
 }
 
-/** The weighted sums at given counts, near an instant: they change slowly, so the trace's own slopes will do. */
+/** The weighted sums at given counts, near an instant: they change slowly, so the slopes up to the knot before will do. A later knot changes nothing. */
 export function withHeat({ trace }: Track, at: number, { w, g }: Counts): Raw {
   if (trace.at.length === 0) return { w, g, h: 0, u: 0 };
   const i = tracedBefore(trace, at);
-  const j = Math.min(i + 1, trace.at.length - 1);
-  const [h, u, dw] = [trace.h[i] as number, trace.u[i] as number, w - (trace.w[i] as number)];
-  const slope = slopesAfter(trace, i === j ? i - 1 : i);
-  return { w, g, h: h + slope.h * dw, u: u + slope.u * dw };
+  const dw = w - (trace.w[i] as number);
+  const slope = slopesAfter(trace, i - 1);
+  return { w, g, h: (trace.h[i] as number) + slope.h * dw, u: (trace.u[i] as number) + slope.u * dw };
 }
 
 function slopesAfter(trace: Trace, i: number): { h: number; u: number } {
