@@ -15,6 +15,10 @@ import { bridgeToCounts, lastKnotAt } from '#shared/pace/track.ts';
 const SILENT_US = 1_000_000;
 /** Below this share of the bridged metres the count had stood still, not gone on. */
 const COUNT_WENT_ON = 0.8;
+/** A ratio known to this tells more: a count that missed some of the way differs by more than the share and metres after it. */
+const RATIO_KNOWN = 0.003;
+const RATIO_ERR = 0.01;
+const RATIO_ERR_M = 5;
 
 export function noteGnss(o: Odometer): void {
   if (o.gnss.by === 'speed') o.usedGnssSpeed = true;
@@ -103,7 +107,7 @@ export function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', 
   o.mode = 'wheel';
   o.bridge = null;
   o.wheelKnot = { at: wheel.at, total: wheel.total };
-  if (bridge === null || counts === null || counts * metresPerPulse < COUNT_WENT_ON * (g - bridge.g)) {
+  if (bridge === null || counts === null || !wentOn(o, bridge.at, counts * metresPerPulse, g - bridge.g)) {
     // GNSS knots may already lie a little later than this record
     return knot(o, Math.max(wheel.at, lastAt), o.w, wheel.at >= lastAt ? g : o.g, metresPerPulse);
   }
@@ -111,9 +115,17 @@ export function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', 
   const w = bridge.w + counts;
   bridgeToCounts(track, bridge, wheel.at, w, endG);
   const share = endG > bridge.g ? counts / (endG - bridge.g) : 0;
+  o.handedBack = { at: wheel.at, counts, metres: endG - bridge.g };
   rewriteNodes(o.sourceNodes, bridge.at, bridge.w, bridge.g, share);
   rewriteLaunches(o.launches, bridge.at, bridge.w, bridge.g, share);
   return knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
+}
+
+/** Did the count go on unheard? By the ratio learnt where there is one, else by most of the way: nominal metres of the count, GNSS's. */
+function wentOn({ gnss, comparison }: Odometer, from: number, counted: number, bridged: number): boolean {
+  const { filter } = comparison;
+  if (filter.p[3] > RATIO_KNOWN * RATIO_KNOWN || gnss.brokenAt > from + gnss.lag.us) return counted >= COUNT_WENT_ON * bridged;
+  return Math.abs(counted * filter.ratio - bridged) <= RATIO_ERR * bridged + RATIO_ERR_M;
 }
 
 const gnssAtRecord = (o: Odometer, at: number, fallback: number): number => {

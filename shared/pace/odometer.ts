@@ -32,6 +32,8 @@ export interface Odometer {
   stillAt: number;
   /** Where the wheel was left for GNSS: gMetres is GNSS's own reading there. Null when GNSS has been the source from the start. */
   bridge: { at: number; w: number; g: number; total: number } | null;
+  /** Where the wheel's own count last took the place of what GNSS had carried on: counts for metres. */
+  handedBack: { at: number; counts: number; metres: number } | null;
   /** GNSS's own reading less `g`, while GNSS is the source. */
   gnssZero: number;
   /** Distance that nothing measured, or only GNSS where the wheel slipped, or that was filled in: instants and one sigma in metres. */
@@ -75,6 +77,7 @@ export const makeOdometer = (): Odometer => ({
   wheelKnot: { at: 0, total: 0 },
   stillAt: 0,
   bridge: null,
+  handedBack: null,
   gnssZero: 0,
   losses: [],
   fills: { count: 0, metres: 0, at: null },

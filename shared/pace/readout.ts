@@ -113,4 +113,6 @@ export type Warning =
         | 'slept'
         | 'clock-disagrees';
     }
+  /** The wheel's count went on unheard, and moved the distance by this, metres. */
+  | { readonly code: 'wheel-back'; readonly moved: number }
   | { readonly code: 'checkpoint-missed'; readonly checkpoint: string };

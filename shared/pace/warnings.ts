@@ -12,7 +12,7 @@ const TOLERANCE = 0.3;
 const TOLD_US = 8_000_000;
 const WHEEL_SILENT_US = 2_000_000;
 const GNSS_SILENT_US = 3_000_000;
-/** A hairpin makes one wheel err by more than a metre: no news. */
+/** A hairpin makes one wheel err by more than a metre: less than this is no news. */
 const WORTH_TELLING_M = 3;
 /** How long the crew is told of clocks that came apart. */
 const SLEPT_US = 60_000_000;
@@ -26,6 +26,11 @@ export function warningsAt(state: RunState, s: Situation): Warning[] {
   warnings.push(...wheelWarnings(state, s));
   const gripped = grip(state);
   if (gripped !== null) warnings.push({ code: gripped });
+  const { handedBack } = state.odometer;
+  if (handedBack !== null && s.at - handedBack.at < TOLD_US) {
+    const moved = (handedBack.counts * s.mmPerPulse) / 1000 - handedBack.metres;
+    if (Math.abs(moved) >= WORTH_TELLING_M) warnings.push({ code: 'wheel-back', moved });
+  }
   if (gnssLost(state, s)) warnings.push({ code: 'gnss-lost' });
   if (moving && s.source === 'none') warnings.push({ code: 'no-distance' });
   const clock = state.clock.chosen?.source;

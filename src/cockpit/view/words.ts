@@ -106,6 +106,8 @@ function warningText(warning: Warning, readout: Readout): string {
       return 'second wheel now';
     case 'wheels-disagree':
       return 'the wheels disagree';
+    case 'wheel-back':
+      return `wheel back: ${roundedDigits(Math.abs(warning.moved), 0)}\u00a0m ${warning.moved < 0 ? 'less' : 'more'}`;
     case 'wheel-slipping':
       return 'wheel slips: by GNSS';
     case 'wheel-losing':
