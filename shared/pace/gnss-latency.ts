@@ -18,14 +18,12 @@ export interface Step {
   /** Nominal metres by the wheel, metres by whatever stood in for it, as of the lateness held. */
   readonly wheel: number;
   readonly other: number;
-  /** Change of speed, m/s, and speed now. */
+  /** Change of speed, m/s. */
   readonly dv: number;
-  readonly v: number;
   /** Seconds, and Σ of squared fix intervals, s². */
   readonly dt: number;
   readonly spread: number;
-  /** Metres per pulse; how unsteady the wheel's grip is: see `gripNoise`. */
-  readonly perPulse: number;
+  /** How unsteady the wheel's grip is: see `gripNoise`. */
   readonly grip: number;
 }
 

@@ -82,7 +82,7 @@ function take(o: Odometer, last: Sample, here: Sample, fix: GnssKnot, noise: num
   const { filter, slip, spread } = o.comparison;
   const [dt, metres, other] = [(here.at - last.at) / 1e6, (here.w - last.w) * wheel.metresPerPulse, here.g - last.g];
   const grip = gripNoise(wheel.driven, Math.min(here.v, last.v));
-  predict(filter, { wheel: metres, other, dv: here.v - last.v, v: here.v, dt, spread, perPulse: wheel.metresPerPulse, grip });
+  predict(filter, { wheel: metres, other, dv: here.v - last.v, dt, spread, grip });
   carryMarks(slip, metres, other, 0.0064 * spread + 0.002 * dt);
   const { via } = o.comparison;
   const reading = { at: here.at, reading: fix.metres, v: here.v, noise, late: LATE[via] };
