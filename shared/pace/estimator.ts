@@ -61,8 +61,8 @@ const LINE = 2e-4;
 const SLIPS = 4e-4;
 /** GNSS metres that stood in for the wheel, m² per metre. */
 const GNSS_NOISE = 4e-4;
-/** A receiver's speed wanders slowly by so much (m/s) over so long (s): more than what each fix says of itself, m² per second. */
-const SLOW_SPEED = 2 * 0.01 * 0.01 * 60;
+/** A receiver's speed wanders slowly, about 0.016 m/s over a minute: m² per second beyond what each fix says of itself. */
+const SLOW_SPEED = 0.03;
 /** Of a position's error this share is slow, over this long (s); the rest changes with every fix. */
 const SLOW_SHARE = 0.95;
 const QUICK_SHARE = 0.35;
