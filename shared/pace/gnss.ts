@@ -58,6 +58,7 @@ export const makeGnss = (): Gnss => ({
 });
 
 const RECENT_US = 8_000_000;
+const CUT = 32;
 /** A fix older than this when it comes is not believed. */
 const OLDEST_US = 2_000_000;
 /** While the receiver talks, the tablet's own location stays out of it. */
@@ -71,6 +72,8 @@ export const SURELY_MOVING = 3;
 /** Beyond this gap a straight trapezoid would invent distance, where positions tell a better one. */
 const LONGEST_GAP_US = 30_000_000;
 const SHORTEST_LINE_M = 2;
+/** What the positions at both ends may add to a line. */
+const UNSURE_LINE_M = 10;
 const FASTEST = 120;
 
 /** Takes a fix; true when `metres` now stands for its instant. `now` is the latest instant known to the run. */
@@ -104,9 +107,9 @@ function reject(gnss: Gnss): boolean {
 function keep(gnss: Gnss, here: LastFix, speed: number): boolean {
   gnss.last = here;
   gnss.recent.push({ at: here.at, metres: gnss.metres, speed });
-  let drop = 0;
-  while (drop < gnss.recent.length - 2 && (gnss.recent[drop] as GnssKnot).at < here.at - RECENT_US) drop++;
-  if (drop > 0) gnss.recent.splice(0, drop);
+  // cut back now and then, not at every fix
+  const oldest = gnss.recent.length > CUT + 2 ? (gnss.recent[CUT] as GnssKnot).at : here.at;
+  if (oldest < here.at - RECENT_US) gnss.recent.splice(0, CUT);
   return true;
 }
 
@@ -115,13 +118,14 @@ export const moving = (speed: number): number => (speed < AT_REST ? 0 : speed);
 
 function advance(gnss: Gnss, last: LastFix, here: LastFix): boolean {
   const us = here.at - last.at;
-  const line = lineBetween(last, here);
   const swept = last.speed !== null && here.speed !== null ? ((moving(last.speed) + moving(here.speed)) / 2) * (us / 1e6) : null;
   if (us > OUTAGE_US || swept === null) gnss.brokenAt = here.at;
+  if (swept !== null && us <= OUTAGE_US) return sweep(gnss, here, swept);
+  const line = lineBetween(last, here);
   if (swept !== null && (us <= LONGEST_GAP_US || line === null)) {
-    gnss.metres += swept;
-    gnss.by = 'speed';
-    return keep(gnss, here, here.speed as number);
+    // the straight line is the least that can have been driven
+    const short = line !== null && line > swept + UNSURE_LINE_M && line <= (FASTEST * us) / 1e6;
+    return sweep(gnss, here, short ? line : swept);
   }
   if (line === null) return keep(gnss, here, here.speed ?? 0);
   const implied = line / (us / 1e6);
@@ -131,6 +135,12 @@ function advance(gnss: Gnss, last: LastFix, here: LastFix): boolean {
   gnss.metres += line;
   gnss.by = 'position';
   return keep(gnss, here, here.speed ?? implied);
+}
+
+function sweep(gnss: Gnss, here: LastFix, metres: number): boolean {
+  gnss.metres += metres;
+  gnss.by = 'speed';
+  return keep(gnss, here, here.speed as number);
 }
 
 function lineBetween(a: LastFix, b: LastFix): number | null {
