@@ -1,36 +1,39 @@
-/** Small symmetric covariance matrices, row by row in one array: what the estimator needs and no more. */
+/**
+ * Small symmetric covariance matrices, row by row in one array: what the estimator needs and no more. Everything works in place on
+ * arrays that are made once, for the estimator runs through whole drives again and again.
+ */
 
 export type Covariance = number[];
+export type Row = Float64Array;
 
-/** P·h of a sparse row `h` (undefined = 0). */
-export function times(p: Covariance, n: number, h: readonly number[]): number[] {
-  const out = new Array<number>(n).fill(0);
+/** out ← P·h. */
+export function times(p: Covariance, n: number, h: Row, out: Row): void {
+  out.fill(0);
   for (let j = 0; j < n; j++) {
     const x = h[j] as number;
     if (x === 0) continue;
-    for (let i = 0; i < n; i++) out[i] = (out[i] as number) + (p[i * n + j] as number) * x;
+    for (let i = 0, at = j * n; i < n; i++, at++) out[i] = (out[i] as number) + (p[at] as number) * x;
   }
-  return out;
 }
 
-export function dot(a: readonly number[], b: readonly number[]): number {
+export function dot(a: Row, b: Row): number {
   let sum = 0;
   for (let i = 0; i < a.length; i++) sum += (a[i] as number) * (b[i] as number);
   return sum;
 }
 
-/** P ← F·P·Fᵀ where F is the identity but for its first row `f` (f[0] = 1). In place. */
-export function carryFirst(p: Covariance, n: number, f: readonly number[]): void {
-  const row = times(p, n, f);
-  const first = dot(row, f);
+/** P ← F·P·Fᵀ where F is the identity but for its first row `f` (f[0] = 1). */
+export function carryFirst(p: Covariance, n: number, f: Row, scratch: Row): void {
+  times(p, n, f, scratch);
+  const first = dot(scratch, f);
   for (let i = 1; i < n; i++) {
-    p[i] = row[i] as number;
-    p[i * n] = row[i] as number;
+    p[i] = scratch[i] as number;
+    p[i * n] = scratch[i] as number;
   }
   p[0] = first;
 }
 
-/** P ← P with row and column `i` times `factor`. In place. */
+/** P ← P with row and column `i` times `factor`. */
 export function shrink(p: Covariance, n: number, i: number, factor: number): void {
   for (let j = 0; j < n; j++) {
     p[i * n + j] = (p[i * n + j] as number) * factor;
@@ -38,7 +41,7 @@ export function shrink(p: Covariance, n: number, i: number, factor: number): voi
   }
 }
 
-/** Adds to P(i, j) and, off the diagonal, to P(j, i). In place. */
+/** Adds to P(i, j) and, off the diagonal, to P(j, i). */
 export function add(p: Covariance, n: number, i: number, j: number, value: number): void {
   p[i * n + j] = (p[i * n + j] as number) + value;
   if (i !== j) p[j * n + i] = (p[j * n + i] as number) + value;
@@ -46,14 +49,15 @@ export function add(p: Covariance, n: number, i: number, j: number, value: numbe
 
 /**
  * Takes in a measurement whose prediction has variance `s` and covariance `c` with the state, by the gain `k`: any gain, the best
- * one being c/s. P ← P − k·cᵀ − c·kᵀ + s·k·kᵀ (Joseph's form, multiplied out). In place, symmetric by construction.
+ * one being c/s. P ← P − k·cᵀ − c·kᵀ + s·k·kᵀ (Joseph's form, multiplied out); symmetric by construction.
  */
-export function absorb(p: Covariance, n: number, c: readonly number[], k: readonly number[], s: number): void {
+export function absorb(p: Covariance, n: number, c: Row, k: Row, s: number): void {
   for (let i = 0; i < n; i++) {
-    const [ki, ci] = [k[i] as number, c[i] as number];
+    const ki = k[i] as number;
+    const ci = c[i] as number;
     for (let j = 0; j <= i; j++) {
-      const [kj, cj] = [k[j] as number, c[j] as number];
-      const value = (p[i * n + j] as number) - ki * cj - ci * kj + s * ki * kj;
+      const kj = k[j] as number;
+      const value = (p[i * n + j] as number) - ki * (c[j] as number) - ci * kj + s * ki * kj;
       p[i * n + j] = value;
       p[j * n + i] = value;
     }

@@ -1,5 +1,5 @@
 import { lossVariance } from '#shared/pace/distance.ts';
-import { carry, comparePosition, compareSpeed, type Estimate } from '#shared/pace/estimator.ts';
+import { compareAt, type Estimate } from '#shared/pace/estimator.ts';
 import type { RunState } from '#shared/pace/run-state.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
 import { type Raw, withHeat } from '#shared/pace/track.ts';
@@ -30,10 +30,9 @@ export function estimatesTo(state: RunState, last: Estimate, placedAt: number, u
 export function estimateAtNode(state: RunState, last: Estimate, placedAt: number, i: number): Estimate {
   const { sourceNodes: nodes, losses } = state.odometer;
   const node = heated(state, nodes[i] as SourceNode);
-  const carried = carry(last, node, node.at, lossVariance(losses, last.at, node.at));
   const since = nodes[i - 1];
-  const compared = since === undefined ? carried : compareSpeed(carried, heated(state, since), node, placedAt);
-  return comparePosition(compared, node);
+  const lost = lossVariance(losses, last.at, node.at);
+  return compareAt(last, since === undefined ? null : heated(state, since), node, placedAt, lost);
 }
 
 const heated = (state: RunState, node: SourceNode): HeatedNode => ({ ...node, ...withHeat(state.odometer.track, node.at, node) });

@@ -1,5 +1,5 @@
 import type { Pack } from '#shared/course/pack.ts';
-import { absorb, add, type Covariance, carryFirst, dot, shrink, times } from '#shared/pace/covariance.ts';
+import { absorb, add, type Covariance, carryFirst, dot, type Row, shrink, times } from '#shared/pace/covariance.ts';
 import type { Anchor, TapAct } from '#shared/pace/run-state.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
 import { leadSigma } from '#shared/pace/tap-lead.ts';
@@ -94,33 +94,39 @@ export function firstTyres(pack: Pack): { readonly cold: number; readonly speed:
   return { cold: COLD_TYRES.mean, speed: (pack.wheel.driven === true ? BY_SPEED.driven : BY_SPEED.rolling).mean };
 }
 
-interface Way {
-  /** ∂D/∂state, first row of F. */
-  readonly f: number[];
-  /** Driven metres by the wheel, and official metres in all. */
-  readonly wheel: number;
-  readonly official: number;
-  readonly gnss: number;
-}
+/** Written over by every call: rows of the formulae, and what comes of them. */
+const scratch = { f: new Float64Array(N), h: new Float64Array(N), c: new Float64Array(N), k: new Float64Array(N) };
 
-function wayTo(a: Anchor, raw: Raw): Way {
+/** An estimate that is still being made: only its maker may write to it. */
+type Draft = { -readonly [K in keyof Omit<Anchor, 'belief'>]: Anchor[K] } & { belief: { -readonly [K in keyof Belief]: Belief[K] } };
+
+const draftOf = (a: Estimate): Draft => ({ ...a, belief: { ...a.belief, covariance: a.belief.covariance.slice() } });
+
+/** ∂D/∂state from the anchor to raw values, first row of F; returns driven metres by the wheel. */
+function rowTo(a: Anchor, raw: Raw, f: Row): number {
   const m = a.mmPerPulse / 1000;
-  const [dw, dh, du, dg] = [raw.w - a.w, raw.h - a.h, raw.u - a.u, raw.g - a.g];
-  const wheel = m * (dw - a.cold * dh + a.speed * du);
-  const official = a.official * (wheel + dg);
-  const f = [1, a.official * wheel, -a.official * m * dh, a.official * m * du, official, 0, 0, 0];
-  return { f, wheel, official, gnss: dg };
+  const dh = raw.h - a.h;
+  const du = raw.u - a.u;
+  const wheel = m * (raw.w - a.w - a.cold * dh + a.speed * du);
+  f[D] = 1;
+  f[SCALE] = a.official * wheel;
+  f[COLD] = -a.official * m * dh;
+  f[SPEED] = a.official * m * du;
+  f[OFFICIAL] = a.official * (wheel + raw.g - a.g);
+  return wheel;
 }
 
 /** Variance of the distance at raw values beyond the anchor, m². */
 export function grownVariance(a: Anchor, belief: Belief, raw: Raw): number {
-  const way = wayTo(a, raw);
-  return dot(times(belief.covariance, N, way.f), way.f) + roadVariance(way, wanderOf(belief, coldnessOf(a, raw)));
+  const { f, c } = scratch;
+  const wheel = rowTo(a, raw, f);
+  times(belief.covariance, N, f, c);
+  return dot(c, f) + roadVariance(wheel, raw.g - a.g, f[OFFICIAL] as number, wanderOf(belief, coldnessOf(a, raw)));
 }
 
-function roadVariance({ wheel, gnss, official }: Way, wander: number): number {
-  const [w, all] = [Math.abs(wheel), Math.abs(official)];
-  return SLIPS * w + (wander * w ** 3) / 3 + GNSS_NOISE * Math.abs(gnss) + LINE * all;
+function roadVariance(wheel: number, gnss: number, official: number, wander: number): number {
+  const w = Math.abs(wheel);
+  return SLIPS * w + (wander * w ** 3) / 3 + GNSS_NOISE * Math.abs(gnss) + LINE * Math.abs(official);
 }
 
 /** Wander of the scale, relative² per metre: tyres that are still warming wander more than their law says. */
@@ -134,84 +140,108 @@ function coldnessOf(a: Anchor, raw: Raw): number {
 
 /** The estimate carried on to raw values at an instant; `lost` m² of what nothing measured on the way. */
 export function carry(a: Estimate, raw: Raw, at: number, lost: number): Estimate {
-  const way = wayTo(a, raw);
-  const p = a.belief.covariance.slice();
-  carryFirst(p, N, way.f);
+  const draft = draftOf(a);
+  carryDraft(draft, raw, at, lost);
+  return draft;
+}
+
+function carryDraft(a: Draft, raw: Raw, at: number, lost: number): void {
+  const { f, c } = scratch;
+  const p = a.belief.covariance;
+  const wheel = rowTo(a, raw, f);
+  const official = f[OFFICIAL] as number;
+  carryFirst(p, N, f, c);
   const wander = wanderOf(a.belief, coldnessOf(a, raw));
-  const w = Math.abs(way.wheel);
-  add(p, N, D, D, roadVariance(way, wander) + lost);
+  const w = Math.abs(wheel);
+  add(p, N, D, D, roadVariance(wheel, raw.g - a.g, official, wander) + lost);
   add(p, N, D, SCALE, (wander * w * w) / 2);
   add(p, N, SCALE, SCALE, wander * w);
   const keep = Math.exp(-Math.max(0, at - a.at) / 1e6 / PLACED_S);
   shrink(p, N, PLACED, keep);
-  const belief = { ...a.belief, covariance: p, placed: a.belief.placed * keep };
-  return { ...a, at, d: a.d + way.official, w: raw.w, g: raw.g, h: raw.h, u: raw.u, belief };
+  a.belief.placed *= keep;
+  a.at = at;
+  a.d += official;
+  a.w = raw.w;
+  a.g = raw.g;
+  a.h = raw.h;
+  a.u = raw.u;
 }
 
-/** The state after a misfit, by gain `k`. */
-function move(a: Estimate, k: readonly number[], misfit: number, covariance: Covariance): Estimate {
+/** Takes in a misfit of variance `s`, whose covariance with the state stands in `scratch.c`. `placeOnly`: moves the distance and nothing else. */
+function absorbMisfit(a: Draft, s: number, misfit: number, placeOnly = false): void {
+  const { c, k } = scratch;
+  for (let i = 0; i < N; i++) k[i] = placeOnly && i !== D && i !== PLACED ? 0 : (c[i] as number) / s;
+  absorb(a.belief.covariance, N, c, k, s);
   const by = (i: number): number => (k[i] as number) * misfit;
-  return {
-    ...a,
-    d: a.d + by(D),
-    mmPerPulse: a.mmPerPulse * Math.exp(by(SCALE)),
-    cold: a.cold + by(COLD),
-    speed: a.speed + by(SPEED),
-    official: a.official * Math.exp(by(OFFICIAL)),
-    belief: {
-      ...a.belief,
-      covariance,
-      placed: a.belief.placed + by(PLACED),
-      lead: { glass: a.belief.lead.glass + by(LEAD.glass), wired: a.belief.lead.wired + by(LEAD.wired) },
-    },
-  };
+  a.d += by(D);
+  a.mmPerPulse *= Math.exp(by(SCALE));
+  a.cold += by(COLD);
+  a.speed += by(SPEED);
+  a.official *= Math.exp(by(OFFICIAL));
+  a.belief.placed += by(PLACED);
+  const { glass, wired } = a.belief.lead;
+  a.belief.lead = { glass: glass + by(LEAD.glass), wired: wired + by(LEAD.wired) };
 }
 
-function update(a: Estimate, c: readonly number[], s: number, misfit: number, only?: readonly number[]): Estimate {
-  const k = c.map((x, i) => (only === undefined || only.includes(i) ? x / s : 0));
-  const p = a.belief.covariance.slice();
-  absorb(p, N, c, k, s);
-  return move(a, k, misfit, p);
+type HeatedNode = SourceNode & Raw;
+
+/** An estimate at a node: carried there, and compared with what GNSS says of the stretch since the node before and of the place. */
+export function compareAt(a: Estimate, since: HeatedNode | null, node: HeatedNode, placedAt: number, lost: number): Estimate {
+  const draft = draftOf(a);
+  carryDraft(draft, node, node.at, lost);
+  if (since !== null) compareSpeed(draft, since, node, placedAt);
+  comparePosition(draft, node);
+  return draft;
 }
 
 /**
- * GNSS's metres since the node before against the wheel's. `since`: raw values and instant of that node; `placedAt`: instant of
- * the last tap: slips before it no longer matter to the distance. The estimate must stand at the node.
+ * GNSS's metres since the node before against the wheel's. `placedAt`: instant of the last tap: slips before it no longer matter
+ * to the distance. The estimate must stand at the node.
  */
-export function compareSpeed(a: Estimate, since: SourceNode & Raw, node: SourceNode & Raw, placedAt: number): Estimate {
-  if (node.compared === null) return a;
+function compareSpeed(a: Draft, since: HeatedNode, node: HeatedNode, placedAt: number): void {
+  if (node.compared === null) return;
+  const { h, c } = scratch;
   const m = a.mmPerPulse / 1000;
-  const [dw, dh, du] = [node.w - since.w, node.h - since.h, node.u - since.u];
-  const wheel = m * (dw - a.cold * dh + a.speed * du);
+  const dh = node.h - since.h;
+  const du = node.u - since.u;
+  const wheel = m * (node.w - since.w - a.cold * dh + a.speed * du);
   const misfit = node.gnssMetres - since.gnssMetres - (node.g - since.g) - wheel;
-  const seconds = (node.at - since.at) / 1e6;
-  const h = [0, wheel, -m * dh, m * du, 0, 0, 0, 0];
-  const c = times(a.belief.covariance, N, h);
+  const noise = node.compared + (SLOW_SPEED * (node.at - since.at)) / 1e6;
   const slipped = SLIPS * Math.abs(wheel);
-  const s = dot(c, h) + node.compared + SLOW_SPEED * seconds + slipped;
+  h.fill(0);
+  h[SCALE] = wheel;
+  h[COLD] = -m * dh;
+  h[SPEED] = m * du;
+  times(a.belief.covariance, N, h, c);
+  const s = dot(c, h) + noise + slipped;
   // a slip of the wheel is in the distance and in the misfit alike
   const share = Math.min(1, Math.max(0, (node.at - placedAt) / Math.max(1, node.at - since.at)));
+  if (misfit * misfit > GATE * GATE * s) {
+    a.d += a.official * misfit * share;
+    add(a.belief.covariance, N, D, D, noise);
+    return;
+  }
   c[D] = (c[D] as number) + a.official * slipped * share;
-  if (misfit * misfit <= GATE * GATE * s) return update(a, c, s, misfit);
-  const p = a.belief.covariance.slice();
-  add(p, N, D, D, node.compared + SLOW_SPEED * seconds);
-  return { ...a, d: a.d + a.official * misfit * share, belief: { ...a.belief, covariance: p } };
+  absorbMisfit(a, s, misfit);
 }
 
 /** A position on the surveyed line. The estimate must stand at the node. */
-export function comparePosition(a: Estimate, { position }: SourceNode): Estimate {
-  if (position === null) return a;
+function comparePosition(a: Draft, { position }: SourceNode): void {
+  if (position === null) return;
+  const { h, c } = scratch;
   const { sigma } = position;
-  const p = a.belief.covariance.slice();
+  const p = a.belief.covariance;
   // the slow error is as large as the receiver says today
-  const slow = (SLOW_SHARE * sigma) ** 2 - (p[PLACED * N + PLACED] as number);
-  add(p, N, PLACED, PLACED, Math.max(0, slow));
-  const h = [1, 0, 0, 0, 0, 1, 0, 0];
-  const c = times(p, N, h);
+  const slow = Math.max(0, (SLOW_SHARE * sigma) ** 2 - (p[PLACED * N + PLACED] as number));
+  add(p, N, PLACED, PLACED, slow);
+  h.fill(0);
+  h[D] = 1;
+  h[PLACED] = 1;
+  times(p, N, h, c);
   const s = dot(c, h) + (QUICK_SHARE * sigma) ** 2;
   const misfit = position.d - a.d - a.belief.placed;
-  if (misfit * misfit > GATE * GATE * s) return a;
-  return update({ ...a, belief: { ...a.belief, covariance: p } }, c, s, misfit);
+  if (misfit * misfit > GATE * GATE * s) add(p, N, PLACED, PLACED, -slow);
+  else absorbMisfit(a, s, misfit);
 }
 
 export interface TapMisfit {
@@ -233,14 +263,21 @@ export interface TapAtPlace {
   readonly input: TapInput;
 }
 
-const tapRow = ({ v, input }: TapAtPlace): number[] => (input === 'glass' ? [1, 0, 0, 0, 0, 0, -v, 0] : [1, 0, 0, 0, 0, 0, 0, -v]);
+/** Leaves P·h of a tap in `scratch.c` and returns h·P·h. */
+function tapVariance(p: Covariance, { v, input }: TapAtPlace): number {
+  const { h, c } = scratch;
+  h.fill(0);
+  h[D] = 1;
+  h[LEAD[input]] = -v;
+  times(p, N, h, c);
+  return dot(c, h);
+}
 
 /** How far a tap is off, before it is taken in. The estimate must stand at the tap. */
 export function tapMisfit(a: Estimate, tap: TapAtPlace): TapMisfit {
-  const h = tapRow(tap);
   const own = a.belief.temper.scatter * (tap.scatter * tap.v) ** 2 + tap.surveySigma ** 2 + PULSE_VARIANCE;
   const misfit = tap.d - a.d + tap.v * a.belief.lead[tap.input];
-  return { misfit, variance: dot(times(a.belief.covariance, N, h), h) + own, own };
+  return { misfit, variance: tapVariance(a.belief.covariance, tap) + own, own };
 }
 
 /** Doubt added before a tap is taken in: m² of the distance, and the metres over which the scale may have done that. */
@@ -251,13 +288,14 @@ export interface Doubt {
 
 /** Takes a tap in. `placeOnly`: the crew wants the distance placed and nothing learnt. */
 export function takeTap(before: Estimate, tap: TapAtPlace, placeOnly: boolean, doubt: Doubt): Estimate {
-  const p = before.belief.covariance.slice();
+  const a = draftOf(before);
+  const p = a.belief.covariance;
   add(p, N, D, D, doubt.variance);
   if (doubt.over !== null) {
     add(p, N, D, SCALE, doubt.variance / doubt.over);
     add(p, N, SCALE, SCALE, doubt.variance / doubt.over ** 2);
   }
-  const a: Estimate = { ...before, belief: { ...before.belief, covariance: p } };
   const { misfit, variance } = tapMisfit(a, tap);
-  return update(a, times(p, N, tapRow(tap)), variance, misfit, placeOnly ? [D, PLACED] : undefined);
+  absorbMisfit(a, variance, misfit, placeOnly);
+  return a;
 }

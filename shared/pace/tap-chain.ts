@@ -1,10 +1,10 @@
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { type JudgedTap, judgeTap, tapQueue } from '#shared/pace/derive-tap.ts';
-import { estimatesTo } from '#shared/pace/estimate-nodes.ts';
+import { estimatesTo, firstNodeAfter } from '#shared/pace/estimate-nodes.ts';
 import type { Estimate, Temper } from '#shared/pace/estimator.ts';
 import type { Anchor, RunState, TapAct } from '#shared/pace/run-state.ts';
 import type { Story, TakenFor } from '#shared/pace/tap-judge.ts';
-import { temperOf } from '#shared/pace/temper.ts';
+import { temperBy } from '#shared/pace/temper.ts';
 
 /**
  * All taps of a run, judged together. One tap alone cannot tell a wrong touch from a wrong distance or scale; the taps after it
@@ -37,13 +37,45 @@ interface Course {
   readonly queue: readonly TapAct[];
 }
 
+/** Most derivations ask for the taps just judged, with perhaps a comparison more. A pure function's last answer; never stored. */
+const answered = new WeakMap<RunState, { readonly key: string; readonly chain: TapChain }>();
+
 /** The most probable story of all taps, found greedily; deterministic. `first`: the anchor at the start, null before it. */
 export function likeliestChain(state: RunState, model: CourseModel, first: Anchor | null): TapChain {
   const course: Course = { state, model, first, queue: tapQueue(state) };
+  const key = keyOf(course);
+  const known = answered.get(state);
+  const chain = known?.key === key ? goOn(course, known.chain) : judgeAll(course);
+  answered.set(state, { key, chain });
+  return chain;
+}
+
+/** Everything that the judgement of the taps depends on. */
+function keyOf({ state: { acts, odometer }, model, first, queue }: Course): string {
+  const last = queue[queue.length - 1];
+  return JSON.stringify([
+    queue.map(({ seq, t, raw }) => [seq, t, raw]),
+    [acts.voided, acts.moved, acts.accepted, acts.skipped],
+    [model.version, odometer.handedBack?.at, odometer.losses.length, firstNodeAfter(odometer.sourceNodes, last?.t ?? 0)],
+    [first?.at, first?.d, first?.w, first?.g],
+  ]);
+}
+
+function judgeAll(course: Course): TapChain {
+  const { first } = course;
   const { story, chain } = likeliestStory(course);
-  if (first === null || first.belief === null || tapsOf(chain).every((j) => j.use === null)) return chain;
-  const temper = temperOf(state, course, story, (tried) => follow(tempered(course, tried), story).cost);
-  return follow(tempered(course, temper), story);
+  if (first === null || first.belief === null || tapsOf(chain).every((j) => j.use === null)) return goOn(course, chain);
+  const temper = temperBy((tried) => follow(tempered(course, tried), story).cost);
+  const mild = tempered(course, temper);
+  return goOn(mild, follow(mild, story));
+}
+
+/** The same taps, and the comparisons with GNSS since. */
+function goOn(course: Course, { steps }: TapChain): TapChain {
+  const walk = new ChainWalk(course);
+  for (const step of steps) walk.add(step);
+  walk.compareTo(Number.POSITIVE_INFINITY);
+  return walk;
 }
 
 function tempered(course: Course, temper: Temper): Course {
@@ -79,7 +111,7 @@ function variantsOf(story: Story, chain: TapChain): { variant: Story; from: numb
   });
 }
 
-/** Follows a story; the taps before number `from` are taken from a chain that judged them alike. */
+/** Follows a story up to the last tap; the taps before number `from` are taken from a chain that judged them alike. */
 function follow(course: Course, story: Story, known: TapChain | null = null, from = 0): TapChain {
   const walk = new ChainWalk(course);
   let told = 0;
@@ -93,7 +125,6 @@ function follow(course: Course, story: Story, known: TapChain | null = null, fro
     walk.compareTo(tap.t);
     walk.judge(tap, story.get(tap.seq) ?? 'plain');
   }
-  walk.compareTo(Number.POSITIVE_INFINITY);
   return walk;
 }
 

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { carry, comparePosition, compareSpeed, type Estimate, firstBelief, takeTap, tapMisfit, USUAL } from '#shared/pace/estimator.ts';
+import { carry, compareAt, type Estimate, firstBelief, takeTap, tapMisfit, USUAL } from '#shared/pace/estimator.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
 import type { Raw } from '#shared/pace/track.ts';
 import { pack } from './packs.ts';
@@ -99,28 +99,27 @@ describe('GNSS beside the wheel', () => {
   });
 
   test('metres that agree change nothing but the certainty; more of them make the scale longer and move the distance with it', () => {
-    const begun = carry(estimate({ '1,1': 9e-6 }), raw(2_000), 20e6, 0);
+    const begun = estimate({ '1,1': 9e-6 });
     const [since, same] = [node({}), node({ at: 20e6, w: 2_000, gnssMetres: 1_000 })];
-    expect(compareSpeed(begun, since, same, 0).mmPerPulse).toBeCloseTo(500, 12);
-    const longer = compareSpeed(begun, since, { ...same, gnssMetres: 1_003 }, 0);
+    expect(compareAt(begun, since, same, 0, 0).mmPerPulse).toBeCloseTo(500, 12);
+    const longer = compareAt(begun, since, { ...same, gnssMetres: 1_003 }, 0, 0);
     expect(longer.mmPerPulse).toBeGreaterThan(500.5);
-    expect(longer.d).toBeGreaterThan(begun.d + 1);
+    expect(longer.d).toBeGreaterThan(1_001);
     expect(at(longer.belief.covariance, 1, 1)).toBeLessThan(9e-6);
   });
 
   test('a wheel that slipped by twenty metres teaches the scale nothing, and the distance follows GNSS', () => {
-    const begun = carry(estimate({ '1,1': 1e-6 }), raw(2_040), 20e6, 0);
-    const after = compareSpeed(begun, node({}), node({ at: 20e6, w: 2_040, gnssMetres: 1_000 }), 0);
+    const after = compareAt(estimate({ '1,1': 1e-6 }), node({}), node({ at: 20e6, w: 2_040, gnssMetres: 1_000 }), 0, 0);
     expect(after.mmPerPulse).toBe(500);
     expect(after.d).toBeCloseTo(1_000, 6);
   });
 
   test('positions place the car by what the receiver says of itself, and one 200 m off is left alone', () => {
     const begun = estimate({ '0,0': 100 }, 5_000);
-    const placed = comparePosition(begun, node({ position: { d: 5_010, sigma: 3 } }));
+    const placed = compareAt(begun, null, node({ position: { d: 5_010, sigma: 3 } }), 0, 0);
     expect(placed.d).toBeGreaterThan(5_008);
     expect(placed.d).toBeLessThan(5_010);
-    expect(comparePosition(begun, node({ position: { d: 5_200, sigma: 3 } }))).toBe(begun);
+    expect(compareAt(begun, null, node({ position: { d: 5_200, sigma: 3 } }), 0, 0).d).toBe(begun.d);
   });
 });
 
@@ -138,12 +137,13 @@ test('whatever comes, covariances stay symmetric with variances of at least zero
       let e: Estimate = { ...estimate({}), belief, cold: 0.0035, speed: 0.00125 };
       let since: SourceNode & Raw = { at: 0, ...raw(0), gnssMetres: 0, compared: null, position: null };
       for (const { metres, cold, off, v, way } of legs) {
+        const before = e;
         const there = raw(e.w + metres * 2, e.h + metres * 2 * cold, e.u + (metres * 2 * v * v) / 2500);
         const instant = e.at + (metres / v) * 1e6;
         e = carry(e, there, instant, 0);
         const node = { ...since, at: instant, ...there, gnssMetres: since.gnssMetres + metres + off / 30, compared: 0.5 };
-        if (way === 'speed') e = compareSpeed(e, since, node, since.at);
-        else if (way === 'position') e = comparePosition(e, { ...node, position: { d: e.d + off / 10, sigma: 4 } });
+        if (way === 'speed') e = compareAt(before, since, node, since.at, 0);
+        else if (way === 'position') e = compareAt(before, null, { ...node, position: { d: e.d + off / 10, sigma: 4 } }, 0, 0);
         else {
           const doubt = way === 'doubt' ? { variance: off * off, over: metres } : SURE;
           e = takeTap(e, { ...tap, d: e.d + off, surveySigma: 2, v }, way === 'place', doubt);
