@@ -1,9 +1,9 @@
 import { availableParallelism } from 'node:os';
 import type { Table } from './accuracy/goals.ts';
-import { isMethod, METHODS, type Method } from './accuracy/methods.ts';
+import { isMethod, METHODS, type Method, usesGnss } from './accuracy/methods.ts';
 import { runTasks, type Task } from './accuracy/pool.ts';
 import { reportOf } from './accuracy/report.ts';
-import { SETTING_NAMES, type SettingName } from './accuracy/settings.ts';
+import { SETTING_NAMES, type SettingName, worldOf } from './accuracy/settings.ts';
 import { accuracyOf } from './accuracy/statistics.ts';
 import type { Bench } from './figures.ts';
 
@@ -23,13 +23,17 @@ export const bench: Bench = async ({ quick, only, methods, drives }) => {
   const settings = chosen(only ?? (quick ? QUICK.settings : SETTING_NAMES), isSetting, SETTING_NAMES, 'setting');
   const wanted = methods === undefined ? null : chosen(methods, isMethod, METHODS, 'method');
   const count = drives ?? (quick ? QUICK.drives : DRIVES);
-  const tasks = settings.flatMap((setting) => methodsOf(setting, wanted).flatMap((method) => parts(setting, method, count)));
+  const cells = settings.flatMap((setting) =>
+    methodsOf(setting, wanted).map((method) => ({ setting, method, world: worldOf(setting, usesGnss(method)) })),
+  );
+  const worlds = new Map(cells.map(({ world, method }) => [`${world} ${method}`, parts(world, method, count)]));
+  const tasks = [...worlds.values()].flat();
   const outcomes = await runTasks(tasks, availableParallelism(), progress(tasks.length));
   const table: Table = {};
-  for (const [i, { setting, method, from }] of tasks.entries()) {
-    if (from !== 1) continue;
-    const all = tasks.flatMap((task, j) => (j >= i && task.setting === setting && task.method === method ? (outcomes[j] ?? []) : []));
-    table[setting] = { ...table[setting], [method]: accuracyOf(all) };
+  for (const { setting, method, world } of cells) {
+    const own = worlds.get(`${world} ${method}`) ?? [];
+    const drivesOf = own.flatMap((task) => outcomes[tasks.indexOf(task)] ?? []);
+    table[setting] = { ...table[setting], [method]: accuracyOf(drivesOf) };
   }
   return { text: reportOf(table), json: { settings: table } };
 };

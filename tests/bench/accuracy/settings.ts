@@ -204,6 +204,11 @@ export const SETTINGS = {
   },
 } satisfies Record<string, Setting>;
 
+/** Settings that differ from base in what GNSS says alone: without GNSS their drives are those of base. */
+const OF_GNSS: ReadonlySet<string> = new Set<keyof typeof SETTINGS>(['poorGnss', 'geometryOff']);
+
 export type SettingName = keyof typeof SETTINGS;
 export const settingOf = (name: SettingName): Setting => SETTINGS[name];
+/** The setting whose drives these are. */
+export const worldOf = (name: SettingName, withGnss: boolean): SettingName => (OF_GNSS.has(name) && !withGnss ? 'base' : name);
 export const SETTING_NAMES = Object.keys(SETTINGS) as SettingName[];
