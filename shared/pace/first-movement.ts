@@ -34,6 +34,8 @@ const FEWEST = 5;
 /** Instants err by this, s; metres by this, whatever measures them. */
 const INSTANT_S = 0.002;
 const PLACE_M = 0.01;
+/** A steady speed from the first metre on (wheels that spin, a count that began late) must fit so much better than a pull. */
+const ROLLS = 0.5;
 /** How far a line that leads before what the records allow counts against a place, s. */
 const BOUND_S = 0.05;
 
@@ -42,6 +44,8 @@ interface Point {
   readonly t: number;
   readonly s: number;
   readonly weight: number;
+  /** Metres as counted. */
+  readonly counted: number;
 }
 
 interface Line {
@@ -54,6 +58,8 @@ export function firstMovement({ t, s, stillAt, pulseMetres, interval }: FirstMet
   const still = (stillAt - t1) / 1e6;
   let points = pointsOf(t, s, pulseMetres, interval / 1e6);
   let tried = tryPlaces(points, still, pulseMetres);
+  const steady = rollFrom(points);
+  if (steady !== null && steady.misfit < ROLLS * tried.misfit) return { at: t1 + Math.max(steady.t0, -LONGEST_BEFORE_S) * 1e6, within: 0 };
   while (tried.misfit > STRAIGHT * points.length && points.length >= 2 * FEWEST) {
     points = points.slice(0, points.length >> 1);
     tried = tryPlaces(points, still, pulseMetres);
@@ -82,6 +88,29 @@ function tryPlaces(points: readonly Point[], still: number, pulseMetres: number)
   return { t0: t0 / sum, within: within / sum, misfit };
 }
 
+/** Least squares of the metres themselves over t: the instant of no metres at a steady speed; null where there is none. */
+function rollFrom(points: readonly Point[]): Line | null {
+  if (points.length < 2) return null;
+  let [n, st, ss] = [0, 0, 0];
+  for (const p of points) {
+    n += p.weight;
+    st += p.weight * p.t;
+    ss += p.weight * p.counted;
+  }
+  const [mt, ms] = [st / n, ss / n];
+  let [tt, ts] = [0, 0];
+  for (const p of points) {
+    tt += p.weight * (p.t - mt) ** 2;
+    ts += p.weight * (p.t - mt) * (p.counted - ms);
+  }
+  const speed = ts / tt;
+  if (!(speed > 0)) return null;
+  let misfit = 0;
+  for (const p of points) misfit += p.weight * (p.counted - ms - speed * (p.t - mt)) ** 2;
+  const t0 = mt - ms / speed;
+  return t0 <= 0 ? { t0, misfit } : null;
+}
+
 /** A count is seen up to one record after it was made: the car is further than it says by half of that way, or half a pulse. */
 function pointsOf(t: readonly number[], s: readonly number[], pulseMetres: number, interval: number): Point[] {
   return t.map((at, i) => {
@@ -90,7 +119,7 @@ function pointsOf(t: readonly number[], s: readonly number[], pulseMetres: numbe
     const speed = seconds > 0 ? Math.max(0, (s[b] as number) - (s[a] as number)) / seconds : 0;
     const unseen = Math.min(pulseMetres, speed * interval);
     const variance = (unseen * unseen) / 12 + (INSTANT_S * speed) ** 2 + PLACE_M ** 2;
-    return { t: (at - (t[0] as number)) / 1e6, s: (s[i] as number) + unseen / 2, weight: 1 / variance };
+    return { t: (at - (t[0] as number)) / 1e6, s: (s[i] as number) + unseen / 2, weight: 1 / variance, counted: s[i] as number };
   });
 }
 
