@@ -1,7 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { fromNdjson } from '#shared/journal/ndjson.ts';
 import { replay } from '#shared/journal/replay.ts';
-import { runSheet } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 
 /** `npm run -s replay -- FILE`: prints the run sheet of an exported journal (NDJSON) as JSON. `-` reads standard input. */
 

@@ -1,8 +1,8 @@
 import type { StoredJournal } from '#server/services/runs/read-journal.ts';
 import { decodeBlocks, type Journalled } from '#shared/journal/block.ts';
 import { replay } from '#shared/journal/replay.ts';
-import { runSheet } from '#shared/pace/run.ts';
 import type { RunSheet } from '#shared/pace/run-sheet.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { fail, ok, type Result } from '#shared/result.ts';
 
 /** The fold itself: chunks to run sheet, with the very code the cockpit runs. */

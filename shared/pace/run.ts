@@ -1,11 +1,8 @@
 import type { Pack } from '#shared/course/pack.ts';
 import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
-import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { Readout } from '#shared/pace/readout.ts';
 import { readoutAt } from '#shared/pace/readout-at.ts';
-import type { RunSheet } from '#shared/pace/run-sheet.ts';
 import { ENGINE_VERSION as CURRENT, copyState, makeRunState, type RunState as State } from '#shared/pace/run-state.ts';
-import { sheetOf } from '#shared/pace/sheet.ts';
 import { settle, step as take } from '#shared/pace/step.ts';
 import type { Micros } from '#shared/units.ts';
 
@@ -34,6 +31,3 @@ export const snapshot = (state: RunState): RunState => copyState(state);
 
 /** What to show at an instant of the session clock, microseconds. Cheap enough for every frame; changes nothing. */
 export const readout = (state: RunState, at: Micros): Readout => readoutAt(state, at);
-
-/** The story of the run so far, told by leg. */
-export const runSheet = (state: RunState, header: RunHeader): RunSheet => sheetOf(state, header);

@@ -7,10 +7,11 @@ import { type DerivedTap, modelOf, type PlacePassing, type RunState } from '#sha
 import { targetTimeAt } from '#shared/pace/schedule.ts';
 import { sheetWarnings } from '#shared/pace/sheet-warnings.ts';
 import { finishPoint } from '#shared/pace/situation.ts';
-import { knotAt, rawAt } from '#shared/pace/track.ts';
+import { type TracePoint, traceOf } from '#shared/pace/trace.ts';
+import { rawAt } from '#shared/pace/track.ts';
 
-/** The run sheet of a state: derived now, changes nothing. */
-export function sheetOf(state: RunState, header: RunHeader): RunSheet {
+/** The story of the run so far, told by leg: derived now, changes nothing. Apart from `run.ts`, for no run needs it under way. */
+export function runSheet(state: RunState, header: RunHeader): RunSheet {
   const model = modelOf(state);
   const { derived, acts, odometer } = state;
   const finish = finishPoint(state, model);
@@ -27,7 +28,7 @@ export function sheetOf(state: RunState, header: RunHeader): RunSheet {
     legs: model.places.map((place, i) => legRow(state, model, place, derived.passings[i] as PlacePassing)),
     finish: finish === null ? null : { elapsedS: finish.elapsed, timeErrorS: finish.timeError, sigmaS: finish.sigma },
     shown: shownOf(state, finish),
-    trace: traceOf(state, model),
+    trace: traceOf(state).map((point) => traceRow(state, model, point)),
     stops: acts.stops.map((stop) => stopRow(state, stop)),
     taps: derived.taps.map(tapRow),
     aidsUsed: aidsUsed(state),
@@ -104,36 +105,8 @@ function stopRow(state: RunState, stop: { from: number; to: number | null }): Ru
   };
 }
 
-const MOST_POINTS = 400;
-
-/** Time error along the course from the sparse trace: start to finish, at most 400 points. */
-function traceOf(state: RunState, model: CourseModel): RunSheet['trace'] {
-  const { trace } = state.odometer.track;
-  const { startAt, anchors, passings } = state.derived;
-  const first = anchors[0];
-  if (startAt === null || first === undefined) return [];
-  const end = passings[model.finishIndex]?.at ?? Number.POSITIVE_INFINITY;
-  const from = Math.max(first.at, startAt);
-  const knots = trace.at.flatMap((at, i) => (at >= from && at <= end ? [i] : []));
-  const chosen = decimate(knots);
-  return chosen.map((i) => {
-    const at = trace.at[i] as number;
-    const d = distanceOf(anchorAt(anchors, at) ?? first, knotAt(trace, i));
-    const elapsedS = officialSeconds(state.clock, startAt, at);
-    return {
-      d,
-      elapsedS,
-      timeErrorS: elapsedS - targetTimeAt(model.schedule, d),
-      plannedS: d >= model.finish ? 0 : model.plan.plannedErrorAt(d),
-      speed: speedAround(state, i),
-    };
-  });
-}
-
-/** Evenly spread, first and last included. */
-function decimate(knots: readonly number[]): readonly number[] {
-  if (knots.length <= MOST_POINTS) return knots;
-  return Array.from({ length: MOST_POINTS }, (_, i) => knots[Math.round((i * (knots.length - 1)) / (MOST_POINTS - 1))] as number);
+function traceRow(state: RunState, model: CourseModel, { knot, d, elapsedS, timeErrorS }: TracePoint): RunSheet['trace'][number] {
+  return { d, elapsedS, timeErrorS, plannedS: d >= model.finish ? 0 : model.plan.plannedErrorAt(d), speed: speedAround(state, knot) };
 }
 
 function speedAround(state: RunState, i: number): number {

@@ -2,7 +2,7 @@ import type { Checkpoint } from '#shared/course/course-book.ts';
 import type { NewObservation } from '#shared/journal/observation.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
 import type { Readout } from '#shared/pace/readout.ts';
-import type { RunSheet } from '#shared/pace/run-sheet.ts';
+import type { RunState } from '#shared/pace/run.ts';
 import type { Result } from '#shared/result.ts';
 import type { SensorFailure, SensorSource, SensorStatus } from '#src/sensors/sensor-source.ts';
 import type { SessionClock } from './clock.ts';
@@ -23,8 +23,8 @@ export interface RunSession {
   /** The session clock, for sensor sources and for stamping events. */
   readonly clock: SessionClock;
   status(): RunStatus;
-  /** Derived now, from the state. */
-  runSheet(): RunSheet;
+  /** What `of` makes of the state now, such as the run sheet; a session does not carry what few runs ask for. `of` changes nothing. */
+  derive<T>(of: (state: RunState, header: RunHeader) => T): T;
   /** The course as it stands now, with everything that was typed in on the grid. Derived; changes only with `subscribe`. */
   course(): CourseNow;
   /** NDJSON of the whole journal, for export without a server. */

@@ -1,12 +1,11 @@
 import { v7 as uuidv7 } from 'uuid';
-import { readout, runSheet } from '#shared/pace/run.ts';
+import { readout } from '#shared/pace/run.ts';
 import { fail, ok, type Result } from '#shared/result.ts';
 import type { SensorSource } from '#src/sensors/sensor-source.ts';
 import { type ChangeNotice, changeKey, createChangeNotice } from './change-notice.ts';
 import { createSessionClock, type SessionClock } from './clock.ts';
 import { createCourseNow } from './course-now.ts';
 import { bridgedByWall } from './epoch.ts';
-import { exportJournal } from './export-journal.ts';
 import { type FoundRun, findRun } from './find-run.ts';
 import type { OpenRunFailure, OpenRunOptions } from './open-run.ts';
 import { browserEnvironment, type RunEnvironment } from './run-environment.ts';
@@ -48,10 +47,13 @@ function createSession(options: OpenRunOptions, environment: RunEnvironment, fou
     },
     readout: now,
     course: createCourseNow(() => run.state),
-    runSheet: () => runSheet(run.state, run.header),
+    derive: (of) => of(run.state, run.header),
     status,
     subscribe: changes.subscribe,
-    exportJournal: () => exportJournal(store, run.header, roles.writer()?.uncommitted() ?? []),
+    exportJournal: async () => {
+      const { exportJournal } = await import('./export-journal.ts');
+      return exportJournal(store, run.header, roles.writer()?.uncommitted() ?? []);
+    },
     act(act, eventTimeStamp) {
       const writer = roles.writer();
       if (closing !== null) return fail(CLOSED);

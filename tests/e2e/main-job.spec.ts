@@ -2,7 +2,7 @@ import type { Page } from 'playwright/test';
 import { runResponseSchema } from '#shared/api/runs.ts';
 import type { TapV1 } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
-import { runSheet } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { expect, test } from './fixtures.ts';
 import { beginPractice, exportJournal, hold, openCockpit, release } from './support/cockpit-pages.ts';
 

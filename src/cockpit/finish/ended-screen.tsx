@@ -1,6 +1,7 @@
 import { useEffect } from 'react';
 import { formatDuration, formatTimeError } from '#shared/course/format.ts';
 import type { RunSheet } from '#shared/pace/run-sheet.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { runSheetPath } from '#src/cockpit/cockpit-path.ts';
 import { useStored } from '#src/cockpit/list/use-stored.ts';
 import { Shell } from '#src/cockpit/shell.tsx';
@@ -29,7 +30,7 @@ interface EndedProps {
 /** The run is closed: what came out, and where its journal is. */
 export function EndedScreen({ session, store, again }: EndedProps) {
   const stored = useStored(store);
-  const sheet = session.runSheet();
+  const sheet = session.derive(runSheet);
   const { runId, pack, practice } = session.header;
   const upload = stored?.runs.find((run) => run.runId === runId)?.upload ?? 'on this device';
   useEffect(() => {

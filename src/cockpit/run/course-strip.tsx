@@ -1,6 +1,7 @@
 import { useEffect, useRef, useState } from 'react';
 import { formatSpeed } from '#shared/course/format.ts';
 import type { Readout } from '#shared/pace/readout.ts';
+import { traceOf } from '#shared/pace/trace.ts';
 import { usePainter, useStructure } from '#src/cockpit/live/use-live.ts';
 import {
   createTrace,
@@ -105,7 +106,7 @@ function OwnTrace({ course, size }: Drawn) {
   trace.current ??= createTrace(
     course.lengthM,
     TRACE_STEPS,
-    session.runSheet().trace.map((point) => ({ d: point.d, errorS: point.timeErrorS })),
+    session.derive(traceOf).map((point) => ({ d: point.d, errorS: point.timeErrorS })),
   );
   const drawnFor = useRef<StripSize | null>(null);
   usePainter('figures', (readout) => {

@@ -3,8 +3,8 @@ import { toNdjson } from '#shared/journal/ndjson.ts';
 import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
 import type { RunHeader } from '#shared/journal/run-header.ts';
-import { runSheet } from '#shared/pace/run.ts';
 import type { RunSheet } from '#shared/pace/run-sheet.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { fail, ok, type Result } from '#shared/result.ts';
 import type { JournalStore } from '#src/storage/journal-store.ts';
 

@@ -1,6 +1,7 @@
 import { act, cleanup, fireEvent, screen as page } from '@testing-library/react';
 import { afterEach, describe, expect, it, vi } from 'vitest';
 import { formatTimeError } from '#shared/course/format.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { SessionScreen } from '#src/cockpit/attempt/session-screen.tsx';
 import { FinishScreen } from '#src/cockpit/finish/finish-screen.tsx';
 import { HOLD_MS } from '#src/cockpit/run/use-held-touch.ts';
@@ -67,7 +68,7 @@ describe('finish', () => {
     expect(screen.container.querySelector('.finish-slow')?.textContent).toMatch(/^slow/);
     expect(page.getByText(/unofficial/)).toBeTruthy();
     hold(page.getByRole('button', { name: 'end the run' }));
-    expect(screen.opened.session.runSheet().outcome).toBe('finished');
+    expect(screen.opened.session.derive(runSheet).outcome).toBe('finished');
   });
 });
 

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { begin, runSheet } from '#shared/pace/run.ts';
+import { begin } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { planOfPack, profile } from '#src/paddock/plan/pack-plan.ts';
 import { sampleHeader } from './sample-header.ts';
 import { samplePack } from './sample-pack.ts';

@@ -4,6 +4,7 @@ import { fromNdjson } from '#shared/journal/ndjson.ts';
 import { isSensorObservation } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
 import { readout } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { ok } from '#shared/result.ts';
 import type { SensorSource } from '#src/sensors/sensor-source.ts';
 import { must } from '#tests/client/storage/device.ts';
@@ -109,7 +110,7 @@ describe('recording', () => {
     const shown = journal.filter((o) => o.type === 'finish-shown.v1');
     expect(shown).toHaveLength(1);
     expect(shown[0]).toMatchObject({ elapsedMs: expect.closeTo((finish?.elapsed ?? 0) * 1000, 2) });
-    expect(session.runSheet()).toMatchObject({ outcome: 'finished', shown: { agrees: true } });
+    expect(session.derive(runSheet)).toMatchObject({ outcome: 'finished', shown: { agrees: true } });
   });
 
   it('takes nothing more once the run has ended: its journal may be sealed', async () => {
@@ -121,7 +122,7 @@ describe('recording', () => {
     await session.close();
     const journal = await rig.journal(session.header.runId);
     expect(journal.at(-1)).toMatchObject({ seq: ended.seq, type: 'run-ended.v1' });
-    expect(session.runSheet().observations).toBe(journal.length);
+    expect(session.derive(runSheet).observations).toBe(journal.length);
   });
 
   it('writes the pair of clocks every ten seconds', async () => {

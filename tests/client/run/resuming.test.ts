@@ -4,7 +4,8 @@ import { encodeBlock, type Journalled } from '#shared/journal/block.ts';
 import { fromNdjson } from '#shared/journal/ndjson.ts';
 import type { EpochV1 } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
-import { ENGINE_VERSION, readout, runSheet } from '#shared/pace/run.ts';
+import { ENGINE_VERSION, readout } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { restoreRun } from '#src/run/known-run.ts';
 import type { RunSession } from '#src/run/run-session-contract.ts';
 import { must } from '#tests/client/storage/device.ts';
@@ -65,7 +66,7 @@ describe('a run that is taken up again', () => {
     const whole = replay(again.session.header, await observationsOf(again.session));
     expect(again.session.readout()).toEqual(readout(whole, at));
     expect(JSON.stringify(again.session.readout())).toBe(JSON.stringify(readout(whole, at)));
-    expect(JSON.stringify(again.session.runSheet())).toBe(JSON.stringify(runSheet(whole, again.session.header)));
+    expect(JSON.stringify(again.session.derive(runSheet))).toBe(JSON.stringify(runSheet(whole, again.session.header)));
     expect(again.session.status().restored).toBe(true);
     expect(again.session.role).toBe('writer');
   });

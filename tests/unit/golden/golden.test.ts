@@ -2,8 +2,9 @@ import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { fromNdjson } from '#shared/journal/ndjson.ts';
 import { replay } from '#shared/journal/replay.ts';
-import { readout, runSheet } from '#shared/pace/run.ts';
+import { readout } from '#shared/pace/run.ts';
 import type { LegRow, RunSheet } from '#shared/pace/run-sheet.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { micros } from '#shared/units.ts';
 import expectedJson from './expected.json' with { type: 'json' };
 

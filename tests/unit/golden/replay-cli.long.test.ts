@@ -4,7 +4,7 @@ import { fileURLToPath } from 'node:url';
 import { describe, expect, it } from 'vitest';
 import { fromNdjson } from '#shared/journal/ndjson.ts';
 import { replay } from '#shared/journal/replay.ts';
-import { runSheet } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 
 /** `npm run -s replay -- FILE`, as a person runs it. */
 const ROOT = fileURLToPath(new URL('../../../', import.meta.url));

@@ -5,7 +5,8 @@ import { decodeBlocks, encodeBlock, type Journalled } from '#shared/journal/bloc
 import { fromNdjson, toNdjson } from '#shared/journal/ndjson.ts';
 import type { Observation } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
-import { begin, readout, runSheet, snapshot, step } from '#shared/pace/run.ts';
+import { begin, readout, snapshot, step } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { micros } from '#shared/units.ts';
 import { HEADER, PACK } from './header.ts';
 

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { NewObservation, Observation } from '#shared/journal/observation.ts';
-import { begin, type RunState, readout, runSheet, snapshot, step } from '#shared/pace/run.ts';
+import { begin, type RunState, readout, snapshot, step } from '#shared/pace/run.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { micros } from '#shared/units.ts';
 import { clockCheck, fixes, fromRest, instantOf, journal, pulses, RELEASE_US, tapAt } from '#tests/unit/pace/drives.ts';
 import { headerOf, pack } from '#tests/unit/pace/packs.ts';

@@ -1,8 +1,9 @@
 import type { Pack } from '#shared/course/pack.ts';
 import type { NewObservation, Observation } from '#shared/journal/observation.ts';
 import type { Readout } from '#shared/pace/readout.ts';
-import { begin, type RunState, readout, runSheet, step } from '#shared/pace/run.ts';
+import { begin, type RunState, readout, step } from '#shared/pace/run.ts';
 import type { LegRow, RunSheet } from '#shared/pace/run-sheet.ts';
+import { runSheet } from '#shared/pace/sheet.ts';
 import { micros } from '#shared/units.ts';
 import { RELEASE_US } from '#tests/unit/pace/drives.ts';
 import { headerOf } from '#tests/unit/pace/packs.ts';
