@@ -4,7 +4,6 @@ import { AttemptPage } from './attempt/attempt-page.tsx';
 import { placeOf } from './cockpit-path.ts';
 import { missingFeatures } from './devices/support.ts';
 import { PackList } from './list/pack-list.tsx';
-import { Unsupported } from './unsupported.tsx';
 
 /** Figures must not swap faces in the driver's sight: nothing is drawn before they are here (from the cache, offline). */
 const FACES = ['400 20px "JetBrains Mono"', '800 20px "JetBrains Mono"'];
@@ -15,6 +14,7 @@ export async function mount(element: HTMLElement): Promise<void> {
   const root = createRoot(element);
   const missing = missingFeatures();
   if (missing.length > 0) {
+    const { Unsupported } = await import('./unsupported.tsx');
     root.render(<Unsupported missing={missing} />);
     return;
   }

@@ -6,6 +6,7 @@ import { openRunSession } from '#src/run/run-session.ts';
 import type { RunSession } from '#src/run/run-session-contract.ts';
 import type { JournalStore, StoredRunSummary } from '#src/storage/journal-store.ts';
 import type { StoredPack } from '#src/storage/pack-store.ts';
+import { fetchAroundRun } from './around-run-later.tsx';
 import { ChooseRun, type RunChoice } from './choose-run.tsx';
 import { deviceId } from './device-id.ts';
 import { exchangeTime } from './exchange-time.ts';
@@ -29,6 +30,8 @@ export function AttemptPage({ store, attemptId }: AttemptProps) {
   useEffect(() => {
     let session: RunSession | null = null;
     let gone = false;
+    // Behind the choice of a run comes the grid, at once. Where this fails, the screen that needs it asks again.
+    fetchAroundRun().catch(() => undefined);
     void resume(store, attemptId).then((next) => {
       if (next.at === 'run') session = next.session;
       if (gone) void session?.close();

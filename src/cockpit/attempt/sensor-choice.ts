@@ -1,10 +1,8 @@
 import type { RunHeader } from '#shared/journal/run-header.ts';
-import type { Result } from '#shared/result.ts';
+import { fail, type Result } from '#shared/result.ts';
 import { canReadLocation, canReadSerial } from '#src/cockpit/devices/support.ts';
 import type { RunSession } from '#src/run/run-session-contract.ts';
-import { createGeolocationSource } from '#src/sensors/geolocation-source.ts';
 import type { SensorFailure, SensorSource } from '#src/sensors/sensor-source.ts';
-import { createSerialSource } from '#src/sensors/serial-source.ts';
 
 export type SourceName = SensorSource['name'];
 
@@ -23,7 +21,9 @@ export function sourcesFor(header: Pick<RunHeader, 'practice' | 'pack'>): readon
 }
 
 export async function attachSource(session: RunSession, name: SourceName, ask: boolean): Promise<Result<void, SensorFailure>> {
-  const attached = await session.attach(await createSource(session, name), { ask });
+  const source = await createSource(session, name).catch(() => null);
+  if (source === null) return fail(NOT_HERE);
+  const attached = await session.attach(source, { ask });
   if (attached.ok) localStorage.setItem(KEPT, name);
   return attached;
 }
@@ -36,15 +36,20 @@ export async function attachAgain(session: RunSession): Promise<void> {
   if (again !== undefined) await attachSource(session, again.name, false);
 }
 
+const NOT_HERE: SensorFailure = {
+  code: 'unsupported',
+  message: 'The part that reads this sensor could not be loaded. Try again, with a connection if there is one.',
+};
+
+/** A run loads the one that it uses. Precached, so that none of them needs a connection. */
 async function createSource(session: RunSession, name: SourceName): Promise<SensorSource> {
   const { clock } = session;
   switch (name) {
     case 'serial':
-      return createSerialSource({ clock });
+      return (await import('#src/sensors/serial-source.ts')).createSerialSource({ clock });
     case 'geolocation':
-      return createGeolocationSource({ clock });
+      return (await import('#src/sensors/geolocation-source.ts')).createGeolocationSource({ clock });
     case 'simulator':
-      // Practice alone needs a drive and a replay; a run in the car does not wait for them. Precached like everything else.
       return (await import('./simulator.ts')).createPracticeSource(session);
   }
 }

@@ -1,18 +1,15 @@
 import { useEffect, useMemo } from 'react';
+import type { Phase } from '#shared/pace/readout.ts';
 import { wakeSound } from '#src/cockpit/devices/tick.ts';
 import { useWakeLock } from '#src/cockpit/devices/use-wake-lock.ts';
-import { EndedScreen } from '#src/cockpit/finish/ended-screen.tsx';
-import { FinishScreen } from '#src/cockpit/finish/finish-screen.tsx';
-import { GridCheck } from '#src/cockpit/grid/grid-check.tsx';
-import { createLiveModel, heldForLong } from '#src/cockpit/live/live-model.ts';
+import { createLiveModel } from '#src/cockpit/live/live-model.ts';
 import { LiveContext, useLiveLoop, useStructure } from '#src/cockpit/live/use-live.ts';
-import { RunContext, useRunSettings } from '#src/cockpit/run/run-context.ts';
+import { RunContext } from '#src/cockpit/run/run-context.ts';
 import { RunScreen } from '#src/cockpit/run/run-screen.tsx';
-import { Countdown, Held } from '#src/cockpit/start/countdown.tsx';
-import { StoppedScreen } from '#src/cockpit/stop/stopped-screen.tsx';
 import { holdUpdates } from '#src/components/app-update.ts';
 import type { RunSession } from '#src/run/run-session-contract.ts';
 import type { JournalStore } from '#src/storage/journal-store.ts';
+import { AroundRunLater } from './around-run-later.tsx';
 import { useOutbox } from './use-outbox.ts';
 
 interface SessionProps {
@@ -40,17 +37,26 @@ export function SessionScreen(props: SessionProps) {
   );
 }
 
-function Phases({ session, store, again }: SessionProps) {
+function Phases(props: SessionProps) {
+  const { session, store } = props;
   const { phase } = useStructure();
   useOutbox(session, store, phase);
-  if (phase === 'ended') return <EndedScreen session={session} store={store} again={again} />;
-  return <OpenRun />;
+  const run = <RunScreen side={session.header.pack.settings.buttonSide} />;
+  const screen =
+    phase === 'running' ? run : <AroundRunLater phase={phase} {...props} meanwhile={NO_RUN.has(phase) ? <main className="run" /> : run} />;
+  return (
+    <>
+      {phase === 'ended' ? null : <OpenRun />}
+      {screen}
+    </>
+  );
 }
+
+/** Where the run's screen would say nothing that is so; everywhere else it is better than none. */
+const NO_RUN: ReadonlySet<Phase> = new Set(['grid', 'ended']);
 
 /** While the run is open the screen stays on and no newer version comes in. */
 function OpenRun() {
-  const { session } = useRunSettings();
-  const structure = useStructure();
   useWakeLock();
   useEffect(holdUpdates, []);
   // After a reload the countdown is silent until a touch anywhere lets it sound.
@@ -58,20 +64,5 @@ function OpenRun() {
     addEventListener('pointerdown', wakeSound);
     return () => removeEventListener('pointerdown', wakeSound);
   }, []);
-  const { buttonSide } = session.header.pack.settings;
-  switch (structure.phase) {
-    case 'grid':
-      return <GridCheck side={buttonSide} />;
-    case 'countdown':
-      return <Countdown />;
-    case 'held':
-      return heldForLong(structure) ? <GridCheck side={buttonSide} /> : <Held />;
-    case 'stopped':
-      return <StoppedScreen />;
-    case 'finished':
-      return <FinishScreen />;
-    case 'running':
-    case 'ended':
-      return <RunScreen side={buttonSide} />;
-  }
+  return null;
 }

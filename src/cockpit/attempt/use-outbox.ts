@@ -2,16 +2,12 @@ import { useEffect } from 'react';
 import type { Phase } from '#shared/pace/readout.ts';
 import type { RunSession } from '#src/run/run-session-contract.ts';
 import type { JournalStore } from '#src/storage/journal-store.ts';
-import { startOutbox } from '#src/sync/start-outbox.ts';
+import { startOutboxLater } from './outbox-later.ts';
 
 const ON_COURSE: ReadonlySet<Phase> = new Set(['countdown', 'held', 'running', 'stopped']);
 
 /** Journals go to the server from here too; from the countdown to the line only where the class permits a data link. */
 export function useOutbox(session: RunSession, store: JournalStore, phase: Phase): void {
   const mayLink = session.header.pack.raceClass.aids.dataLink || !ON_COURSE.has(phase);
-  useEffect(() => {
-    if (!mayLink) return;
-    const outbox = startOutbox(store);
-    return () => outbox.stop();
-  }, [mayLink, store]);
+  useEffect(() => (mayLink ? startOutboxLater(store) : undefined), [mayLink, store]);
 }

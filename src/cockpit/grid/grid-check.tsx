@@ -2,7 +2,7 @@ import '#src/cockpit/run/run.css';
 import '#src/cockpit/run/tap.css';
 import '#src/cockpit/keys.css';
 import './grid.css';
-import { lazy, Suspense, useState } from 'react';
+import { useState } from 'react';
 import { useStructure } from '#src/cockpit/live/use-live.ts';
 import { CheckpointButton } from '#src/cockpit/run/checkpoint-button.tsx';
 import { Cautions } from '#src/components/cautions.tsx';
@@ -13,9 +13,7 @@ import { LineEntry } from './line-entry.tsx';
 import { ReleaseEntry } from './release-entry.tsx';
 import { StagedEntry } from './staged-entry.tsx';
 import { TargetEntry } from './target-entry.tsx';
-
-/** Rarely needed, and in the precache: not part of what every start loads. */
-const TouchClock = lazy(() => import('./touch-clock.tsx'));
+import { TouchClock } from './touch-clock.tsx';
 
 const TRY_IT = { name: 'try the button', words: 'on glass, or with the glove' } as const;
 const TRIED = { name: 'button good', words: 'try again as you like' } as const;
@@ -51,10 +49,6 @@ function SettingEntry({ setting, done }: { readonly setting: Setting; readonly d
     case 'line':
       return <LineEntry done={done} />;
     case 'clock':
-      return (
-        <Suspense>
-          <TouchClock done={done} />
-        </Suspense>
-      );
+      return <TouchClock done={done} />;
   }
 }

@@ -12,7 +12,7 @@ const FLASH_US = 120_000;
 const PAUSE_US = 3_500_000;
 
 /** An official clock that can only be seen: touched in its rhythm on ten seconds or more, its reading confirmed by the person. */
-export default function TouchClock({ done }: { readonly done: () => void }) {
+export function TouchClock({ done }: { readonly done: () => void }) {
   const { session, timeZone } = useRunSettings();
   const [alongOwn, setAlongOwn] = useState(false);
   const [own, setOwn] = useState<OwnRhythm | null>(null);

@@ -1,5 +1,6 @@
 import { useEffect } from 'react';
 import { formatClock } from '#shared/course/format.ts';
+import { startOutboxLater } from '#src/cockpit/attempt/outbox-later.ts';
 import { attemptPath } from '#src/cockpit/cockpit-path.ts';
 import { RunRow } from '#src/cockpit/finish/run-row.tsx';
 import { Shell } from '#src/cockpit/shell.tsx';
@@ -8,16 +9,12 @@ import { FaultNotice } from '#src/components/notice.tsx';
 import { UpdatePrompt } from '#src/components/update-prompt.tsx';
 import type { JournalStore } from '#src/storage/journal-store.ts';
 import type { StoredPack } from '#src/storage/pack-store.ts';
-import { startOutbox } from '#src/sync/start-outbox.ts';
 import { useStored } from './use-stored.ts';
 
 /** What this tablet can run with no connection: open runs first, then packs, then what was recorded. */
 export function PackList({ store }: { readonly store: JournalStore }) {
   const stored = useStored(store);
-  useEffect(() => {
-    const outbox = startOutbox(store);
-    return () => outbox.stop();
-  }, [store]);
+  useEffect(() => startOutboxLater(store), [store]);
   if (stored === undefined) return <Shell title="Cockpit">reading what is on this tablet</Shell>;
   const open = stored.runs.filter((run) => !run.ended);
   const ended = stored.runs.filter((run) => run.ended);
