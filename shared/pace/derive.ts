@@ -74,12 +74,10 @@ class Walk {
   take({ tap, verdict, use }: JudgedTap): void {
     const anchor = this.anchor();
     const { derived } = this;
-    if (anchor !== undefined && tap.raw !== null && tap.t >= this.at) {
-      const measured = distanceOf(anchor, tap.raw);
-      this.passUntil(tap.t, measured);
-    }
     derived.taps.push(verdict);
+    // a tap that is not used is no knot of the walk either: places are passed at the instants they would be without it
     if (use === null) return;
+    if (anchor !== undefined && tap.raw !== null && tap.t >= this.at) this.passUntil(tap.t, distanceOf(anchor, tap.raw));
     derived.passings[use.place] = use.passing;
     derived.anchors.push(use.anchor);
     derived.placedAt = use.anchor.at;

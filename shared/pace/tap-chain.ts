@@ -64,8 +64,10 @@ function keyOf({ state: { acts, odometer }, model, first, queue }: Course): stri
 function judgeAll(course: Course): TapChain {
   const { first } = course;
   const { story, chain } = likeliestStory(course);
-  if (first === null || first.belief === null || tapsOf(chain).every((j) => j.use === null)) return goOn(course, chain);
-  const temper = temperBy((tried) => follow(tempered(course, tried), story).cost);
+  const used = tapsOf(chain).flatMap((j) => (j.use === null ? [] : [j.tap]));
+  if (first === null || first.belief === null || used.length === 0) return goOn(course, chain);
+  // by the taps that are used alone: one that is not believed must not shift so much as a rounding
+  const temper = temperBy((tried) => follow(tempered({ ...course, queue: used }, tried), story).cost);
   const mild = tempered(course, temper);
   return goOn(mild, follow(mild, story));
 }
