@@ -183,10 +183,8 @@ function absorbMisfit(a: Draft, s: number, misfit: number, placeOnly = false): v
   a.belief.lead = { glass: glass + by(LEAD.glass), wired: wired + by(LEAD.wired) };
 }
 
-type HeatedNode = SourceNode & Raw;
-
 /** An estimate at a node: carried there, and compared with what GNSS says of the stretch since the node before and of the place. */
-export function compareAt(a: Estimate, since: HeatedNode | null, node: HeatedNode, placedAt: number, lost: number): Estimate {
+export function compareAt(a: Estimate, since: SourceNode | null, node: SourceNode, placedAt: number, lost: number): Estimate {
   const draft = draftOf(a);
   carryDraft(draft, node, node.at, lost);
   if (since !== null) compareSpeed(draft, since, node, placedAt);
@@ -198,7 +196,7 @@ export function compareAt(a: Estimate, since: HeatedNode | null, node: HeatedNod
  * GNSS's metres since the node before against the wheel's. `placedAt`: instant of the last tap: slips before it no longer matter
  * to the distance. The estimate must stand at the node.
  */
-function compareSpeed(a: Draft, since: HeatedNode, node: HeatedNode, placedAt: number): void {
+function compareSpeed(a: Draft, since: SourceNode, node: SourceNode, placedAt: number): void {
   if (node.compared === null) return;
   const { h, c } = scratch;
   const m = a.mmPerPulse / 1000;

@@ -42,12 +42,14 @@ const answered = new WeakMap<RunState, { readonly key: string; readonly chain: T
 
 /** The most probable story of all taps, found greedily; deterministic. `first`: the anchor at the start, null before it. */
 export function likeliestChain(state: RunState, model: CourseModel, first: Anchor | null): TapChain {
-  const course: Course = { state, model, first, queue: tapQueue(state) };
+  const all = tapQueue(state);
+  const course: Course = { state, model, first, queue: all.filter((tap) => tap.raw !== null) };
   const key = keyOf(course);
   const known = answered.get(state);
   const chain = known?.key === key ? goOn(course, known.chain) : judgeAll(course);
   answered.set(state, { key, chain });
-  return chain;
+  const waiting = all.filter((tap) => tap.raw === null);
+  return waiting.length === 0 ? chain : goOn(course, chain, waiting);
 }
 
 /** Everything that the judgement of the taps depends on. */
@@ -67,16 +69,20 @@ function judgeAll(course: Course): TapChain {
   const used = tapsOf(chain).flatMap((j) => (j.use === null ? [] : [j.tap]));
   if (first === null || first.belief === null || used.length === 0) return goOn(course, chain);
   // by the taps that are used alone: one that is not believed must not shift so much as a rounding
-  const temper = temperBy((tried) => follow(tempered({ ...course, queue: used }, tried), story).cost);
+  const temper = temperBy(
+    course.state.odometer.sourceNodes.some((n) => n.compared !== null),
+    (tried) => follow(tempered({ ...course, queue: used }, tried), story).cost,
+  );
   const mild = tempered(course, temper);
   return goOn(mild, follow(mild, story));
 }
 
-/** The same taps, and the comparisons with GNSS since. */
-function goOn(course: Course, { steps }: TapChain): TapChain {
+/** The same taps, the comparisons with GNSS since, and taps whose raw values have yet to come. */
+function goOn(course: Course, { steps }: TapChain, waiting: readonly TapAct[] = []): TapChain {
   const walk = new ChainWalk(course);
   for (const step of steps) walk.add(step);
   walk.compareTo(Number.POSITIVE_INFINITY);
+  for (const tap of waiting) walk.judge(tap, 'plain');
   return walk;
 }
 
