@@ -22,6 +22,8 @@ export default defineConfig({
           name: 'long',
           environment: 'node',
           include: ['tests/unit/**/*.long.test.ts'],
+          // against hanging, on a machine that has other work too; no measure of speed
+          testTimeout: 120_000,
         },
       },
       {

@@ -4,7 +4,7 @@ import type { JudgedTap } from '#shared/pace/derive-tap.ts';
 import { distanceOf } from '#shared/pace/distance.ts';
 import { type Anchor, type Derived, modelOf, type PlacePassing, type RunState, type TapAct } from '#shared/pace/run-state.ts';
 import { likeliestChain } from '#shared/pace/tap-chain.ts';
-import { knotAt } from '#shared/pace/track.ts';
+import type { Trace } from '#shared/pace/track.ts';
 
 /**
  * The one path from what was recorded to what it means: start, anchors, passings, verdicts. Run anew, from the start of the run,
@@ -74,12 +74,10 @@ class Walk {
   take({ tap, verdict, use }: JudgedTap): void {
     const anchor = this.anchor();
     const { derived } = this;
-    if (anchor !== undefined && tap.raw !== null && tap.t >= this.at) {
-      const measured = distanceOf(anchor, tap.raw);
-      this.passUntil(tap.t, measured);
-    }
     derived.taps.push(verdict);
+    // a tap that is not used is no knot of the walk either: places are passed at the instants they would be without it
     if (use === null) return;
+    if (anchor !== undefined && tap.raw !== null && tap.t >= this.at) this.passUntil(tap.t, distanceOf(anchor, tap.raw));
     derived.passings[use.place] = use.passing;
     derived.anchors.push(use.anchor);
     derived.placedAt = use.anchor.at;
@@ -125,7 +123,12 @@ class Walk {
     let i = this.knot < 0 ? firstAfter(at, this.at) : this.knot;
     while (i < at.length && (at[i] as number) <= this.at) i++;
     for (; i < at.length && (at[i] as number) < until; i++) {
-      this.advance(at[i] as number, distanceOf(anchor, knotAt(trace, i)));
+      const d = alongTrace(anchor, trace, i);
+      // most knots are far from every place
+      if (d >= this.d && d < this.ahead) {
+        this.d = d;
+        this.at = at[i] as number;
+      } else this.advance(at[i] as number, d);
     }
     this.knot = i;
     if (dUntil !== null) this.advance(until, dUntil);
@@ -171,6 +174,12 @@ class Walk {
     const next = model.places.find((place, i) => place.d > this.d && (derived.passings[i] as PlacePassing).by === null);
     return next?.d ?? null;
   }
+}
+
+/** `distanceOf` of a knot of the trace, to the last bit. */
+function alongTrace(a: Anchor, { w, g, h, u }: Trace, i: number): number {
+  const counts = (w[i] as number) - a.w - a.cold * ((h[i] as number) - a.h) + a.speed * ((u[i] as number) - a.u);
+  return a.d + a.official * ((counts * a.mmPerPulse) / 1000 + ((g[i] as number) - a.g));
 }
 
 function firstAfter(at: readonly number[], instant: number): number {

@@ -1,12 +1,10 @@
+import type { Estimate } from '#shared/pace/belief.ts';
 import { lossVariance } from '#shared/pace/distance.ts';
-import { compareAt, type Estimate } from '#shared/pace/estimator.ts';
+import { compareAt } from '#shared/pace/estimator.ts';
 import type { RunState } from '#shared/pace/run-state.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
-import { type Raw, withHeat } from '#shared/pace/track.ts';
 
 /** What the comparisons with GNSS make of an estimate between two taps. */
-
-type HeatedNode = SourceNode & Raw;
 
 /** Index of the first node after an instant. */
 export function firstNodeAfter(nodes: readonly SourceNode[], at: number): number {
@@ -29,10 +27,6 @@ export function estimatesTo(state: RunState, last: Estimate, placedAt: number, u
 
 export function estimateAtNode(state: RunState, last: Estimate, placedAt: number, i: number): Estimate {
   const { sourceNodes: nodes, losses } = state.odometer;
-  const node = heated(state, nodes[i] as SourceNode);
-  const since = nodes[i - 1];
-  const lost = lossVariance(losses, last.at, node.at);
-  return compareAt(last, since === undefined ? null : heated(state, since), node, placedAt, lost);
+  const node = nodes[i] as SourceNode;
+  return compareAt(last, nodes[i - 1] ?? null, node, placedAt, lossVariance(losses, last.at, node.at));
 }
-
-const heated = (state: RunState, node: SourceNode): HeatedNode => ({ ...node, ...withHeat(state.odometer.track, node.at, node) });

@@ -116,7 +116,7 @@ export function handBack(o: Odometer, verdict: 'first' | 'moved' | 'restarted', 
   bridgeToCounts(track, bridge, wheel.at, w, endG);
   const share = endG > bridge.g ? counts / (endG - bridge.g) : 0;
   o.handedBack = { at: wheel.at, counts, metres: endG - bridge.g };
-  rewriteNodes(o.sourceNodes, bridge.at, bridge.w, bridge.g, share);
+  rewriteNodes(o.sourceNodes, track, bridge.at, bridge.w, bridge.g, share);
   rewriteLaunches(o.launches, bridge.at, bridge.w, bridge.g, share);
   return knot(o, wheel.at, w, bridge.g, metresPerPulse, { from: bridge.at, w: bridge.w, g: bridge.g, share });
 }

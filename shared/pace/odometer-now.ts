@@ -88,4 +88,13 @@ function quietWheel(o: Odometer, at: number, age: number, rate: number, speed: n
   return { w: w + (rate * Math.min(age, CARRY_US)) / 1e6, g, speed: null, source };
 }
 
+/** Metres that may have gone by unmeasured: at the last speed, since that is carried on no longer. */
+export function unmeasuredNow(o: Odometer, at: number, metresPerPulse: number): number {
+  const last = o.track.recent.at[o.track.recent.at.length - 1];
+  if (o.mode === 'none' || last === undefined) return 0;
+  const fix = o.gnss.recent[o.gnss.recent.length - 1];
+  const speed = o.mode === 'gnss' ? (fix?.speed ?? 0) : Math.abs(rateNow(o.track)) * metresPerPulse;
+  return (speed * Math.max(0, at - last - CARRY_US)) / 1e6;
+}
+
 const clampStep = (steps: number): number => Math.max(-1, Math.min(1, steps));

@@ -2,7 +2,7 @@ import { clockSigmaMs, officialSeconds } from '#shared/pace/clock.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { startGate } from '#shared/pace/derive-start.ts';
 import { anchorAt, distanceAt, distanceOf, distanceVariance, scaleNow } from '#shared/pace/distance.ts';
-import { odometerNow } from '#shared/pace/odometer-now.ts';
+import { odometerNow, unmeasuredNow } from '#shared/pace/odometer-now.ts';
 import { planInForce } from '#shared/pace/plan-memory.ts';
 import type { Phase } from '#shared/pace/readout.ts';
 import { type Anchor, modelOf, type PlacePassing, type RunState } from '#shared/pace/run-state.ts';
@@ -37,6 +37,8 @@ export interface FinishPoint {
 
 const COUNTDOWN_US = 60_000_000;
 const HELD_US = 5_000_000;
+/** One sigma of what nothing measures, as a share of what the last speed would make of it. */
+const UNMEASURED_SHARE = 0.6;
 /** Speed times this is how far off distance may be for lags that nobody measured, s. */
 const LAG_S = 0.05;
 
@@ -51,7 +53,9 @@ export function situationAt(state: RunState, at: number): Situation {
   const past = last !== null && at < last ? distanceAt(state, at) : null;
   const beforeStart = model.start - Math.max(0, state.changes.stagedBehindM);
   const distance = past ?? (anchor === null || at < anchor.at ? beforeStart : distanceOf(anchor, raw));
-  const variance = anchor === null ? 0 : distanceVariance(anchor, raw, at, (derived.anchors[0] as Anchor).at, odometer.losses);
+  const unmeasured = now.source === 'none' ? UNMEASURED_SHARE * unmeasuredNow(odometer, at, mmPerPulse / 1000) : 0;
+  const grown = anchor === null ? 0 : distanceVariance(anchor, raw, at, (derived.anchors[0] as Anchor).at, odometer.losses);
+  const variance = grown + unmeasured * unmeasured;
   const finish = finishPoint(state, model);
   const phase = phaseAt(state, at, finish);
   const over = finish !== null && at >= finish.at;

@@ -1,13 +1,12 @@
+import type { Raw } from '#shared/pace/track.ts';
+
 /**
  * Every so often the wheel and GNSS are compared, and a projected position is kept: raw facts for the estimator, whatever scale
  * turns out to be right. Frozen once made. Made by the odometer, in order of instant, only while the car moves.
  */
-export interface SourceNode {
-  /** Session microseconds. */
+export interface SourceNode extends Raw {
+  /** Session microseconds; the raw values are the track's at that instant. */
   readonly at: number;
-  /** Raw values of the track at that instant: wheel counts, and metres by GNSS that stood in for the wheel. */
-  readonly w: number;
-  readonly g: number;
   /** GNSS's own metres since the first fix, at that instant, its lateness taken off. */
   readonly gnssMetres: number;
   /**
@@ -20,4 +19,4 @@ export interface SourceNode {
 }
 
 /** Nodes are this far apart, µs. */
-export const NODE_US = 20_000_000;
+export const NODE_US = 30_000_000;

@@ -3,7 +3,7 @@ import type { Odometer } from '#shared/pace/odometer.ts';
 import { makeProjectedFixes, type ProjectedFixes, positionAt } from '#shared/pace/projected-fixes.ts';
 import { compareSources, type WheelKind } from '#shared/pace/source-comparison.ts';
 import { NODE_US, type SourceNode } from '#shared/pace/source-node.ts';
-import { rawAt } from '#shared/pace/track.ts';
+import { rawAt, type Track, withHeat } from '#shared/pace/track.ts';
 
 /**
  * Fixes are looked at a second time once the wheel has been heard up to their instant: only then do both sources tell of it,
@@ -74,6 +74,8 @@ function takeNode(o: Odometer, fix: GnssKnot, before: GnssKnot | undefined): boo
     at,
     w: raw.w,
     g: raw.g,
+    h: raw.h,
+    u: raw.u,
     gnssMetres: (previous?.gnssMetres ?? 0) + step,
     compared: comparedVariance(o, at, fix.speed),
     position: positionAt(look.projected, o.gnss, at + lagUs, (sigmaUs / 1e6) * fix.speed),
@@ -104,10 +106,10 @@ function comparedVariance(o: Odometer, at: number, speed: number): number | null
 }
 
 /** Part of the past is told anew: GNSS metres beyond `g` since `from` became `share` counts each. */
-export function rewriteNodes(nodes: SourceNode[], from: number, w: number, g: number, share: number): void {
+export function rewriteNodes(nodes: SourceNode[], track: Track, from: number, w: number, g: number, share: number): void {
   for (let i = nodes.length - 1; i >= 0; i--) {
     const node = nodes[i] as SourceNode;
     if (node.at <= from) return;
-    nodes[i] = { ...node, w: w + (node.g - g) * share, g };
+    nodes[i] = { ...node, ...withHeat(track, node.at, { w: w + (node.g - g) * share, g }) };
   }
 }

@@ -1,7 +1,7 @@
+import type { Estimate, Temper } from '#shared/pace/belief.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { type JudgedTap, judgeTap, tapQueue } from '#shared/pace/derive-tap.ts';
 import { estimatesTo, firstNodeAfter } from '#shared/pace/estimate-nodes.ts';
-import type { Estimate, Temper } from '#shared/pace/estimator.ts';
 import type { Anchor, RunState, TapAct } from '#shared/pace/run-state.ts';
 import type { Story, TakenFor } from '#shared/pace/tap-judge.ts';
 import { temperBy } from '#shared/pace/temper.ts';
@@ -42,12 +42,14 @@ const answered = new WeakMap<RunState, { readonly key: string; readonly chain: T
 
 /** The most probable story of all taps, found greedily; deterministic. `first`: the anchor at the start, null before it. */
 export function likeliestChain(state: RunState, model: CourseModel, first: Anchor | null): TapChain {
-  const course: Course = { state, model, first, queue: tapQueue(state) };
+  const all = tapQueue(state);
+  const course: Course = { state, model, first, queue: all.filter((tap) => tap.raw !== null) };
   const key = keyOf(course);
   const known = answered.get(state);
   const chain = known?.key === key ? goOn(course, known.chain) : judgeAll(course);
   answered.set(state, { key, chain });
-  return chain;
+  const waiting = all.filter((tap) => tap.raw === null);
+  return waiting.length === 0 ? chain : goOn(course, chain, waiting);
 }
 
 /** Everything that the judgement of the taps depends on. */
@@ -64,17 +66,23 @@ function keyOf({ state: { acts, odometer }, model, first, queue }: Course): stri
 function judgeAll(course: Course): TapChain {
   const { first } = course;
   const { story, chain } = likeliestStory(course);
-  if (first === null || first.belief === null || tapsOf(chain).every((j) => j.use === null)) return goOn(course, chain);
-  const temper = temperBy((tried) => follow(tempered(course, tried), story).cost);
+  const used = tapsOf(chain).flatMap((j) => (j.use === null ? [] : [j.tap]));
+  if (first === null || first.belief === null || used.length === 0) return goOn(course, chain);
+  // by the taps that are used alone: one that is not believed must not shift so much as a rounding
+  const temper = temperBy(
+    course.state.odometer.sourceNodes.some((n) => n.compared !== null),
+    (tried) => follow(tempered({ ...course, queue: used }, tried), story).cost,
+  );
   const mild = tempered(course, temper);
   return goOn(mild, follow(mild, story));
 }
 
-/** The same taps, and the comparisons with GNSS since. */
-function goOn(course: Course, { steps }: TapChain): TapChain {
+/** The same taps, the comparisons with GNSS since, and taps whose raw values have yet to come. */
+function goOn(course: Course, { steps }: TapChain, waiting: readonly TapAct[] = []): TapChain {
   const walk = new ChainWalk(course);
   for (const step of steps) walk.add(step);
   walk.compareTo(Number.POSITIVE_INFINITY);
+  for (const tap of waiting) walk.judge(tap, 'plain');
   return walk;
 }
 

@@ -1,4 +1,4 @@
-import type { Temper } from '#shared/pace/estimator.ts';
+import type { Temper } from '#shared/pace/belief.ts';
 
 /**
  * What this hand and these tyres are like, judged from all taps so far: each way in which they may differ from the usual is tried
@@ -16,10 +16,13 @@ const WANDERS = [
   { factor: 7, prior: 0.3 },
 ] as const;
 
-/** `costOf`: −2 ln of how probable the taps are under a temper. */
-export function temperBy(costOf: (tried: Temper) => number): Temper {
+/** Where GNSS speed shows the scale all the time, its wander need not be guessed. */
+const SHOWN = [{ factor: 2, prior: 1 }] as const;
+
+/** `byGnss`: the scale is compared with GNSS speed. `costOf`: −2 ln of how probable the taps are under a temper. */
+export function temperBy(byGnss: boolean, costOf: (tried: Temper) => number): Temper {
   const tried = SCATTERS.flatMap((s) =>
-    WANDERS.map((w) => {
+    (byGnss ? SHOWN : WANDERS).map((w) => {
       const temper = { scatter: s.factor, wander: w.factor };
       return { temper, cost: costOf(temper) - 2 * Math.log(s.prior * w.prior) };
     }),

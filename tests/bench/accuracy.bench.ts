@@ -15,16 +15,13 @@ const DRIVES = 2000;
 const QUICK = { drives: 60, settings: ['base', 'gross', 'rough'] } as const;
 /** Drives a thread takes at a time. */
 const PART = 20;
-/** The classic rule with no judging of touches belongs where there is something to judge. */
-const PLAIN_SETTINGS: readonly SettingName[] = ['gross'];
-const USUAL_METHODS = METHODS.filter((method) => method !== 'ratioPlain');
 
 export const bench: Bench = async ({ quick, only, methods, drives }) => {
   const settings = chosen(only ?? (quick ? QUICK.settings : SETTING_NAMES), isSetting, SETTING_NAMES, 'setting');
   const wanted = methods === undefined ? null : chosen(methods, isMethod, METHODS, 'method');
   const count = drives ?? (quick ? QUICK.drives : DRIVES);
   const cells = settings.flatMap((setting) =>
-    methodsOf(setting, wanted).map((method) => ({ setting, method, world: worldOf(setting, usesGnss(method)) })),
+    (wanted ?? METHODS).map((method) => ({ setting, method, world: worldOf(setting, usesGnss(method)) })),
   );
   const worlds = new Map(cells.map(({ world, method }) => [`${world} ${method}`, parts(world, method, count)]));
   const tasks = [...worlds.values()].flat();
@@ -46,9 +43,6 @@ function chosen<T extends string>(wanted: readonly string[], is: (text: string) 
     return text;
   });
 }
-
-const methodsOf = (setting: SettingName, wanted: readonly Method[] | null): readonly Method[] =>
-  wanted ?? (PLAIN_SETTINGS.includes(setting) ? METHODS : USUAL_METHODS);
 
 function parts(setting: SettingName, method: Method, count: number): Task[] {
   const tasks: Task[] = [];

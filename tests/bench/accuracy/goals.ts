@@ -28,14 +28,16 @@ export function goalsOf(table: Table): Goal[] {
     const value = a.finishRmsMs / b.finishRmsMs;
     goals.push({ what: `${setting}: ${method} / ${against}`, value, bound: `≤ ${atMost}`, met: value <= atMost });
   };
-  for (const method of ESTIMATORS) ratioGoal('base', method, 'ratio', BASE_AT_MOST[method]);
-  // the engine's own ratio rule doubts mistaken touches as well, so the classic rule is run beside it
+  // the engine's own ratio rule judges all touches together and lets short legs add up, so the classic rule is run beside it
+  for (const against of ['ratioPlain', 'ratio'] as const)
+    for (const method of ESTIMATORS) ratioGoal('base', method, against, BASE_AT_MOST[method]);
   ratioGoal('gross', 'filter', 'ratioPlain', GROSS_AT_MOST);
   ratioGoal('gross', 'filter', 'ratio', GROSS_AT_MOST);
   for (const setting of Object.keys(table) as SettingName[]) {
     ratioGoal(setting, 'filterSpeed', 'filter', 1);
     ratioGoal(setting, 'filterPosition', 'filterSpeed', 1);
     for (const method of ESTIMATORS) {
+      ratioGoal(setting, method, 'ratioPlain', 1);
       ratioGoal(setting, method, 'ratio', 1);
       if (OTHER_MODELS.includes(setting)) continue;
       const covered = table[setting]?.[method]?.within2Sigma;

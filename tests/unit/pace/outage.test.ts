@@ -37,6 +37,15 @@ describe('an outage of GNSS as the only source', () => {
     expect(widened * 40).toBeLessThan(28);
   });
 
+  it('is unsure by as much as may have gone by, while nothing measures', () => {
+    const [fresh, late] = look(p, journal([clockCheck(p)], heard), [101, 115]);
+    expect(late?.source).toBe('none');
+    const widened = Math.sqrt((late?.sigma ?? 0) ** 2 - (fresh?.sigma ?? 0) ** 2) * 40;
+    // 15 s at 20 m/s, of which 2 s are carried on; six tenths of the rest, in time at the average of 40 m/s
+    expect(widened).toBeGreaterThan(0.6 * 12.9 * 20);
+    expect(widened).toBeLessThan(0.6 * 13.4 * 20);
+  });
+
   it('leaves a touch believed that puts the distance right by as much', () => {
     // the car had in truth covered 45 m less in the dark: the place comes 45 m later than the speeds say
     const touch = tapAt(instantOf(motion, 4_045), 'settle');
