@@ -1,6 +1,6 @@
+import type { Estimate } from '#shared/pace/belief.ts';
 import { distanceOf } from '#shared/pace/distance.ts';
 import { estimateAtNode, firstNodeAfter } from '#shared/pace/estimate-nodes.ts';
-import type { Estimate } from '#shared/pace/estimator.ts';
 import { modelOf, type RunState } from '#shared/pace/run-state.ts';
 import { knotAt } from '#shared/pace/track.ts';
 

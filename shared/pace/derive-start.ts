@@ -1,6 +1,6 @@
+import { firstBelief, firstTyres } from '#shared/pace/belief.ts';
 import { instantOfOfficial } from '#shared/pace/clock.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
-import { firstBelief, firstTyres } from '#shared/pace/estimator.ts';
 import type { Launch } from '#shared/pace/launch.ts';
 import { type Anchor, type Derived, nominalMetres, type RunState } from '#shared/pace/run-state.ts';
 import { type Counts, tracedAt, withHeat } from '#shared/pace/track.ts';

@@ -1,5 +1,6 @@
+import type { Estimate } from '#shared/pace/belief.ts';
 import { lossVariance } from '#shared/pace/distance.ts';
-import { compareAt, type Estimate } from '#shared/pace/estimator.ts';
+import { compareAt } from '#shared/pace/estimator.ts';
 import type { RunState } from '#shared/pace/run-state.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
 

@@ -1,11 +1,8 @@
-import type { Pack } from '#shared/course/pack.ts';
+import { type Belief, COLD, D, type Estimate, LEAD, N, OFFICIAL, PLACED, SCALE, SPEED, type TapInput } from '#shared/pace/belief.ts';
 import { absorb, add, type Covariance, carryFirst, dot, type Row, shrink, times } from '#shared/pace/covariance.ts';
-import type { Anchor, TapAct } from '#shared/pace/run-state.ts';
+import type { Anchor } from '#shared/pace/run-state.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
-import { leadSigma } from '#shared/pace/tap-lead.ts';
 import type { Raw } from '#shared/pace/track.ts';
-
-type TapInput = TapAct['input'];
 
 /**
  * The estimator: an extended Kalman filter over what the crew cannot see. Distance follows
@@ -15,43 +12,6 @@ type TapInput = TapAct['input'];
  * knowledge of estimation theory; the model and its figures are our own, tuned by simulation, no source.
  */
 
-/** Places in the state vector. */
-const D = 0;
-const SCALE = 1;
-const COLD = 2;
-const SPEED = 3;
-const OFFICIAL = 4;
-const PLACED = 5;
-const LEAD = { glass: 6, wired: 7 } as const;
-const N = 8;
-
-export interface Belief {
-  readonly covariance: Covariance;
-  /** Slow error of GNSS positions along the course, m. */
-  readonly placed: number;
-  /** The navigator's lead beyond the pack's by input, s; positive = touches late. */
-  readonly lead: Readonly<Record<TapInput, number>>;
-  readonly temper: Temper;
-}
-
-/** What this hand and these tyres are like beside what is usual: factors on the variance of a tap's scatter and of the scale's wander. */
-export interface Temper {
-  readonly scatter: number;
-  readonly wander: number;
-}
-
-export const USUAL: Temper = { scatter: 1, wander: 1 };
-
-/** An anchor under the estimator. */
-export type Estimate = Anchor & { readonly belief: Belief };
-
-/** Deficit of cold tyres and its sigma; growth by speed at 50 m/s and its sigma, and the same for a driven wheel, which slips. */
-const COLD_TYRES = { mean: 0.0035, sigma: 0.0015 };
-const BY_SPEED = { rolling: { mean: 0.00125, sigma: 0.0006 }, driven: { mean: -0.0065, sigma: 0.005 } };
-/** A scale that was not measured on warm tyres may be off by as much as tyres grow. */
-const WARMTH_UNKNOWN = 0.004;
-/** The line driven against the line surveyed. */
-const LINE_SIGMA = 0.001;
 /** Wander of a warm tyre's scale, and more of it while it warms, relative² per metre. */
 const SCALE_WANDER = 6e-12;
 const WARMING_WANDER = 3e-11;
@@ -71,28 +31,6 @@ const PLACED_S = 120;
 const GATE = 4;
 /** Reading between two pulses, m². */
 const PULSE_VARIANCE = 0.1;
-
-/** What is believed before the first metre. `variance`: of the distance at the start, m². */
-export function firstBelief(pack: Pack, variance: number): Belief {
-  const { aids } = pack.raceClass;
-  const { scaleSigma, scaleSource, driven } = pack.wheel;
-  const byGnss = aids.gnssSpeed || aids.gnssPosition;
-  const line = LINE_SIGMA * LINE_SIGMA;
-  const covariance = new Array<number>(N * N).fill(0);
-  const set = (i: number, value: number): void => add(covariance, N, i, i, value);
-  set(D, variance);
-  set(SCALE, scaleSigma * scaleSigma + (scaleSource === 'run' ? 0 : WARMTH_UNKNOWN ** 2) + (byGnss ? 0 : line));
-  set(COLD, COLD_TYRES.sigma ** 2);
-  set(SPEED, (driven === true ? BY_SPEED.driven : BY_SPEED.rolling).sigma ** 2);
-  set(OFFICIAL, byGnss ? line : 0);
-  for (const input of ['glass', 'wired'] as const) set(LEAD[input], leadSigma(pack, input) ** 2);
-  return { covariance, placed: 0, lead: { glass: 0, wired: 0 }, temper: USUAL };
-}
-
-/** The tyres' part of the first anchor: `cold` and `speed`. */
-export function firstTyres(pack: Pack): { readonly cold: number; readonly speed: number } {
-  return { cold: COLD_TYRES.mean, speed: (pack.wheel.driven === true ? BY_SPEED.driven : BY_SPEED.rolling).mean };
-}
 
 /** Written over by every call: rows of the formulae, and what comes of them. */
 const scratch = { f: new Float64Array(N), h: new Float64Array(N), c: new Float64Array(N), k: new Float64Array(N) };

@@ -1,8 +1,8 @@
 import type { Pack } from '#shared/course/pack.ts';
 import type { FinishShownV1, RunEndedV1, TapV1 } from '#shared/journal/observation.ts';
+import type { Belief } from '#shared/pace/belief.ts';
 import { type Clock, makeClock } from '#shared/pace/clock.ts';
 import { buildCourseModel, type Changes, type CourseModel, makeChanges } from '#shared/pace/course-model.ts';
-import type { Belief } from '#shared/pace/estimator.ts';
 import { makeOdometer, type Odometer } from '#shared/pace/odometer.ts';
 import { makePlanMemory, type PlanMemory } from '#shared/pace/plan-memory.ts';
 import type { Raw } from '#shared/pace/track.ts';

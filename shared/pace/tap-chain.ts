@@ -1,7 +1,7 @@
+import type { Estimate, Temper } from '#shared/pace/belief.ts';
 import type { CourseModel } from '#shared/pace/course-model.ts';
 import { type JudgedTap, judgeTap, tapQueue } from '#shared/pace/derive-tap.ts';
 import { estimatesTo, firstNodeAfter } from '#shared/pace/estimate-nodes.ts';
-import type { Estimate, Temper } from '#shared/pace/estimator.ts';
 import type { Anchor, RunState, TapAct } from '#shared/pace/run-state.ts';
 import type { Story, TakenFor } from '#shared/pace/tap-judge.ts';
 import { temperBy } from '#shared/pace/temper.ts';

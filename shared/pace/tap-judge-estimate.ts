@@ -1,6 +1,7 @@
+import type { Estimate } from '#shared/pace/belief.ts';
 import type { Place } from '#shared/pace/course-model.ts';
 import { lossVariance, scaleNow } from '#shared/pace/distance.ts';
-import { carry, type Estimate, type TapAtPlace, takeTap, tapMisfit } from '#shared/pace/estimator.ts';
+import { carry, type TapAtPlace, takeTap, tapMisfit } from '#shared/pace/estimator.ts';
 import { speedSquare } from '#shared/pace/heat.ts';
 import type { TapAt, TapJudge } from '#shared/pace/tap-judge.ts';
 import { coldnessAt } from '#shared/pace/track.ts';

@@ -1,4 +1,4 @@
-import type { Temper } from '#shared/pace/estimator.ts';
+import type { Temper } from '#shared/pace/belief.ts';
 
 /**
  * What this hand and these tyres are like, judged from all taps so far: each way in which they may differ from the usual is tried

@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { carry, compareAt, type Estimate, firstBelief, takeTap, tapMisfit, USUAL } from '#shared/pace/estimator.ts';
+import { type Estimate, firstBelief, USUAL } from '#shared/pace/belief.ts';
+import { carry, compareAt, takeTap, tapMisfit } from '#shared/pace/estimator.ts';
 import type { SourceNode } from '#shared/pace/source-node.ts';
 import type { Raw } from '#shared/pace/track.ts';
 import { pack } from './packs.ts';
