@@ -15,6 +15,8 @@ import { beginDirection, findDirection } from '#shared/pace/wheel-direction.ts';
 /** Unchanged for longer than this is a rest. */
 const RESTED_US = 700_000;
 const GNSS_FRESH_US = 1_500_000;
+/** Beside the box's own clock the instants of records are set right by less than this from one to the next, or in a step. */
+const STEP_US = 25_000;
 
 export interface WheelChannels {
   /** The measuring one, and another to compare with. */
@@ -66,6 +68,8 @@ function takeFirst(o: Odometer, pulse: PulseV1, metresPerPulse: number): Odomete
 function takeCount(o: Odometer, step: number, metresPerPulse: number): OdometerChange {
   const { wheel, gap } = o;
   const turned = wheel.forward === 0 && step !== 0 && findDirection(o, metresPerPulse);
+  // across a step of the instants no rate is one: what follows would look like pulses missed
+  if (gap.phase === 'steady' && Math.abs(wheel.sinceBox - wheel.since) > STEP_US) restartGap(gap, wheel.at, wheel.total);
   if (gap.phase !== 'steady' || o.second.standing !== null || wheel.at - gap.at >= LOOK_US) {
     const change = lookForGap(o, step, metresPerPulse);
     if (change !== null) return change;

@@ -11,8 +11,9 @@ export interface WheelChannel {
   at: number;
   count: number;
   boxUs: number;
-  /** From the record before to that one, microseconds. */
+  /** From the record before to that one, microseconds: by the session clock, and by the box's own. */
   since: number;
+  sinceBox: number;
   /** Unwrapped count since the first record, times `sign`: −1 for a sensor that counts down while the car goes forwards. */
   total: number;
   sign: 1 | -1;
@@ -33,6 +34,7 @@ export const makeWheelChannel = (): WheelChannel => ({
   count: 0,
   boxUs: 0,
   since: 0,
+  sinceBox: 0,
   total: 0,
   sign: 1,
   forward: 0,
@@ -79,6 +81,7 @@ function follows(last: Mark, next: Mark, forward: number, metresPerPulse: number
 
 function believe(c: WheelChannel, o: Mark, pulses: number): WheelVerdict {
   c.since = o.at - c.at;
+  c.sinceBox = (o.boxUs - c.boxUs) >>> 0;
   c.at = o.at;
   c.count = o.count;
   c.boxUs = o.boxUs;

@@ -39,7 +39,7 @@ describe('the precache', () => {
     expect(bytes).toBeLessThanOrEqual(1_200_000);
   });
 
-  test('leaves /api and the pulse box’s files alone and waits for a prompt', () => {
+  test('leaves /api and the files of the pulse box alone and waits for a prompt', () => {
     const worker = readFileSync(join(DIST, 'sw.js'), 'utf8');
     expect(worker).toContain('denylist:[/^\\/api(\\/|$)/,/^\\/pulse-box\\//]');
     expect(worker).toMatch(/"SKIP_WAITING"===\w+\.data\.type/);

@@ -64,15 +64,23 @@ function withPresses(drive: PlayedDrive, seed: number, utcShiftMs: number): Time
   return [{ atMs: 0, text: writeButton(0, 0, first) }, ...stream];
 }
 
-/** Session instant of the stream's beginning, from the box's own clock: pulses carry both. */
-function streamStart(drive: PlayedDrive, observations: readonly { readonly type: string }[]): number {
+/**
+ * Session instants of the drive's own, by the pulses around them, which carry both clocks. What this rig's wire delays, ten times
+ * as long as a real one and longer on a busy machine, moves pulses and places alike.
+ */
+function sessionInstants(drive: PlayedDrive, observations: readonly { readonly type: string }[]): (afterMs: number) => number {
   const first = /\$PEVLW,0,\d+,(\d+)\*/.exec(drive.sentences(0).find(({ text }) => text.includes('$PEVLW,0'))?.text ?? '');
   const box = Number(first?.[1]);
-  const offsets = observations
+  const pulses = observations
     .filter((o): o is PulseV1 => o.type === 'pulse.v1' && (o as PulseV1).channel === 0)
-    .slice(2000, 6000)
-    .map((o) => o.at - ((o.boxUs - box + 2 ** 32) % 2 ** 32));
-  return offsets.sort((a, b) => a - b)[offsets.length >> 1] ?? Number.NaN;
+    .map((o) => ({ at: o.at, afterUs: (o.boxUs - box + 2 ** 32) % 2 ** 32 }))
+    .sort((a, b) => a.afterUs - b.afterUs);
+  return (afterMs) => {
+    const i = pulses.findIndex(({ afterUs }) => afterUs >= afterMs * 1000);
+    const [a, b] = [pulses[i - 1], pulses[i]];
+    if (a === undefined || b === undefined) return Number.NaN;
+    return a.at + ((b.at - a.at) * (afterMs * 1000 - a.afterUs)) / (b.afterUs - a.afterUs);
+  };
 }
 
 for (const [index, seed] of [
@@ -117,8 +125,8 @@ for (const [index, seed] of [
     const journal = await exportJournal(page);
     const sheet = runSheet(replay(journal.header, journal.observations), journal.header);
 
-    const start = streamStart(drive, journal.observations);
-    const truth = new Map(drive.passings.map(({ checkpoint, afterMs }) => [checkpoint, start + afterMs * 1000]));
+    const instantOf = sessionInstants(drive, journal.observations);
+    const truth = new Map(drive.passings.map(({ checkpoint, afterMs }) => [checkpoint, instantOf(afterMs)]));
     const errors = distancesShown(journal, truth);
     const line = truth.get('finish') ?? Number.NaN;
     const finishErrorS = ((sheet.legs.find((leg) => leg.checkpointId === 'finish')?.atUs ?? Number.NaN) - line) / 1e6;

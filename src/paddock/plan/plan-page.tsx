@@ -29,20 +29,18 @@ export function PlanPage() {
   const { attemptId } = useParams();
   const events = useQuery(eventsQuery(user.id, team.id));
   const packs = usePacks();
-  const stored = attemptId === undefined ? undefined : packs?.find((pack) => pack.attemptId === attemptId);
-  if (stored !== undefined) {
-    const placed = events.data === undefined ? null : findAttempt(events.data, attemptId, team.id);
-    return <Plan stored={stored} placed={placed} />;
-  }
+  const placed = events.data === undefined ? null : findAttempt(events.data, attemptId, team.id);
+  const stored = packs?.find((pack) => pack.attemptId === (attemptId ?? placed?.attempt.id));
   return (
-    <Loaded query={events}>
-      {(data) => {
-        const placed = findAttempt(data, attemptId, team.id);
-        const there = packs?.find((pack) => pack.attemptId === placed?.attempt.id);
-        if (there !== undefined) return <Plan stored={there} placed={placed} />;
-        return packs === undefined ? null : <NoPlan placed={placed} />;
-      }}
-    </Loaded>
+    <>
+      {stored === undefined ? (
+        <Loaded query={events}>{() => (packs === undefined ? null : <NoPlan placed={placed} />)}</Loaded>
+      ) : (
+        <Plan stored={stored} />
+      )}
+      {/* In one place whether there is a plan or not: what is being typed survives the storing of the pack. */}
+      {packs === undefined ? null : <CockpitSettingsSection key={placed?.entry.id} placed={placed} stored={stored ?? null} />}
+    </>
   );
 }
 
@@ -65,12 +63,11 @@ function NoPlan({ placed }: { readonly placed: PlacedAttempt | null }) {
         from the pack
         {placed === null ? ', and there is no attempt yet.' : ', and the pack is not on this device yet.'}
       </EmptyState>
-      <CockpitSettingsSection placed={placed} stored={null} />
     </>
   );
 }
 
-function Plan({ stored, placed }: { readonly stored: StoredPack; readonly placed: PlacedAttempt | null }) {
+function Plan({ stored }: { readonly stored: StoredPack }) {
   const { user, team } = useSignedIn();
   const garage = useQuery(garageQuery(user.id, team.id));
   const { pack } = stored;
@@ -109,7 +106,6 @@ function Plan({ stored, placed }: { readonly stored: StoredPack; readonly placed
       </div>
       <PlanTable pack={pack} plan={plan} releaseMs={release} />
       <PlanCautions pack={pack} plan={plan} tyre={setup?.tyre ?? null} />
-      <CockpitSettingsSection placed={placed} stored={stored} />
     </>
   );
 }

@@ -144,6 +144,23 @@ describe('what is no gap', () => {
   });
 });
 
+it.each([-1.5, -0.3, -0.1, 0.05, 0.1, 0.3, 1.5])(
+  'session instants that are set right by %d s while the box counts on are no pulses missed',
+  (by) => {
+    const motion = cruise(30);
+    for (const [hz, metresPerPulse] of [
+      [20, 0.25],
+      [100, 0.02],
+    ] as const) {
+      const set = records(motion, 60, { hz, metresPerPulse, jitter: (t) => (t < 40 ? by : 0) });
+      const o = roll(set, metresPerPulse);
+      expect(o.fills.count + o.losses.length).toBe(0);
+      expect(o.w).toBe(o.wheel.total);
+      expect(Math.abs(o.w * metresPerPulse - motion.metresAt(60))).toBeLessThanOrEqual(metresPerPulse);
+    }
+  },
+);
+
 it('the same records give the same bits, stopped and taken up again anywhere', () => {
   const list = records(cruise(30), 44, { hz: 20, metresPerPulse: 0.25, misses: [[40, 40.6]] });
   const whole = roll(list, 0.25);
