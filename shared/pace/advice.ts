@@ -68,14 +68,20 @@ function stretchToHold({ model, distance }: Situation, live: LivePlan | null, sp
   return live === null ? model.plan.stretchAt(here.to) : (live.next ?? here);
 }
 
-/** What stays of the shown speed, and what may change. */
+/** What stays of the shown speed, and what may change. One of the two, written over. */
 function nextHold(before: HoldMemory | null, fresh: HoldMemory, s: Situation): HoldMemory {
   if (before === null) return fresh;
   const toGo = (s.model.finish - s.distance) / Math.max(1, s.speed ?? 0);
-  if (s.phase === 'running' && toGo <= FROZEN_S) return { ...before, frozen: true };
+  if (s.phase === 'running' && toGo <= FROZEN_S) {
+    before.frozen = true;
+    return before;
+  }
   if (fresh.stretch !== before.stretch || fresh.speed === before.speed) {
-    return { ...fresh, changedAt: fresh.speed === before.speed ? before.changedAt : fresh.changedAt };
+    if (fresh.speed === before.speed) fresh.changedAt = before.changedAt;
+    return fresh;
   }
   if (s.at - before.changedAt >= APART_US) return fresh;
-  return { ...before, kind: fresh.kind, by: fresh.by };
+  before.kind = fresh.kind;
+  before.by = fresh.by;
+  return before;
 }

@@ -16,7 +16,10 @@ export function derive(state: RunState): void {
   const start = startOf(state, model);
   const passings = model.places.map((): PlacePassing => unpassed(state.pack.wheel.mmPerPulse));
   const derived: Derived = {
-    ...start.derived,
+    releaseAt: start.derived.releaseAt,
+    startAt: start.derived.startAt,
+    firstMovedAt: start.derived.firstMovedAt,
+    start: start.derived.start,
     anchors: start.anchor === null ? [] : [start.anchor],
     placedAt: start.anchor?.at ?? 0,
     passings,

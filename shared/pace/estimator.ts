@@ -38,7 +38,25 @@ const scratch = { f: new Float64Array(N), h: new Float64Array(N), c: new Float64
 /** An estimate that is still being made: only its maker may write to it. */
 type Draft = { -readonly [K in keyof Omit<Anchor, 'belief'>]: Anchor[K] } & { belief: { -readonly [K in keyof Belief]: Belief[K] } };
 
-const draftOf = (a: Estimate): Draft => ({ ...a, belief: { ...a.belief, covariance: a.belief.covariance.slice() } });
+/** Field by field: a spread with one of its fields told again costs more than all the arithmetic that follows. */
+const draftOf = (a: Estimate): Draft => ({
+  at: a.at,
+  d: a.d,
+  w: a.w,
+  g: a.g,
+  h: a.h,
+  u: a.u,
+  mmPerPulse: a.mmPerPulse,
+  cold: a.cold,
+  speed: a.speed,
+  official: a.official,
+  belief: { covariance: a.belief.covariance.slice(), placed: a.belief.placed, lead: a.belief.lead, temper: a.belief.temper },
+  scaleVariance: a.scaleVariance,
+  variance: a.variance,
+  covariance: a.covariance,
+  scaleFrom: a.scaleFrom,
+  coldShare: a.coldShare,
+});
 
 /** ∂D/∂state from the anchor to raw values, first row of F; returns driven metres by the wheel. */
 function rowTo(a: Anchor, raw: Raw, f: Row): number {

@@ -38,8 +38,10 @@ export function takeGnss(
   if (!takeFix(o.gnss, fix, aids, now)) return UNREMARKABLE;
   if (surveyed !== null && aids.gnssPosition) projectFix(o.secondLook.projected, fix, o.gnss, surveyed);
   const change = carryOn(o, metresPerPulse);
-  return lookAgain(o, { metresPerPulse, driven }) ? { ...change, node: true } : change;
+  return lookAgain(o, { metresPerPulse, driven }) ? withNode(change) : change;
 }
+
+const withNode = ({ traced, launch, rewritten }: OdometerChange): OdometerChange => ({ traced, launch, rewritten, node: true });
 
 function carryOn(o: Odometer, metresPerPulse: number): OdometerChange {
   const { gnss } = o;

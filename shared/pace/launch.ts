@@ -48,41 +48,40 @@ export type LaunchEvent = 'none' | 'moved' | 'complete';
 /** True while the first metres are being driven. */
 export const isLaunching = (watch: LaunchWatch): boolean => watch.current !== null;
 
-export interface LaunchKnot {
-  readonly at: number;
-  /** Raw metres by the nominal scale, counts, metres by GNSS. */
-  readonly r: number;
-  readonly w: number;
-  readonly g: number;
-  /** Last record that showed no movement. */
-  readonly stillAt: number;
-  /** One pulse of the source, metres; 0 for GNSS. */
-  readonly pulseMetres: number;
-  /** Between this record and the one before, microseconds; 0 for GNSS. */
-  readonly interval: number;
-}
-
-/** Takes a knot. */
-export function watchLaunch(watch: LaunchWatch, { at, r, w, g, stillAt, pulseMetres, interval }: LaunchKnot): LaunchEvent {
+/**
+ * Takes a knot: raw metres by the nominal scale, counts, metres by GNSS. `stillAt`: last record that showed no movement. `pulseMetres`
+ * and `interval`: one pulse of the source, and microseconds since the record before; 0 for GNSS. No object: a knot comes with every pulse.
+ */
+export function watchLaunch(
+  watch: LaunchWatch,
+  at: number,
+  r: number,
+  w: number,
+  g: number,
+  stillAt: number,
+  pulseMetres: number,
+  interval: number,
+): LaunchEvent {
   const { cell, current } = watch;
   if (cell === null) {
     watch.cell = { at, r, w, g };
     return 'none';
   }
   if (Math.abs(r - cell.r) <= STILL_M) return 'none';
-  const [restedAt, restR, restW, restG] = [cell.at, cell.r, cell.w, cell.g];
+  const still = current === null ? STILL_US : STILL_US + 1e6 * Math.sqrt((2 * pulseMetres) / GENTLE);
+  // either records said so, or a box that only speaks when the wheel turns was silent and then a step or two further
+  if (stillAt - cell.at >= still || (at - cell.at >= still && Math.abs(r - cell.r) <= STEP_M))
+    watch.current = { r: cell.r, w: cell.w, g: cell.g, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - cell.r], stillAt };
   cell.at = at;
   cell.r = r;
   cell.w = w;
   cell.g = g;
-  const still = current === null ? STILL_US : STILL_US + 1e6 * Math.sqrt((2 * pulseMetres) / GENTLE);
-  // either records said so, or a box that only speaks when the wheel turns was silent and then a step or two further
-  const rested = stillAt - restedAt >= still || (at - restedAt >= still && Math.abs(r - restR) <= STEP_M);
-  if (rested) {
-    watch.current = { r: restR, w: restW, g: restG, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - restR], stillAt };
-    return 'moved';
-  }
-  if (current === null) return 'none';
+  if (watch.current !== current) return 'moved';
+  return current === null ? 'none' : moveOn(watch, current, at, r, pulseMetres, interval);
+}
+
+/** The next of the first metres. */
+function moveOn(watch: LaunchWatch, current: MovingOff, at: number, r: number, pulseMetres: number, interval: number): LaunchEvent {
   const s = r - current.r;
   const enough = s >= Math.max(LAUNCH_M, LAUNCH_PULSES * pulseMetres);
   if (!enough && at - (current.t[current.t.length - 1] as number) < APART_US) return 'none';

@@ -16,15 +16,9 @@ export function knot(
 ): OdometerChange {
   o.w = w;
   o.g = g;
-  const launch = watchLaunch(o.launches, {
-    at,
-    r: w * metresPerPulse + g,
-    w,
-    g,
-    stillAt: o.stillAt,
-    pulseMetres: o.mode === 'wheel' ? metresPerPulse : 0,
-    interval: o.mode === 'wheel' ? o.wheel.since : 0,
-  });
+  const byWheel = o.mode === 'wheel';
+  const pulseMetres = byWheel ? metresPerPulse : 0;
+  const launch = watchLaunch(o.launches, at, w * metresPerPulse + g, w, g, o.stillAt, pulseMetres, byWheel ? o.wheel.since : 0);
   const traced = addKnot(o.track, at, w, g, isLaunching(o.launches) || launch !== 'none');
   return traced || launch !== 'none' || rewritten !== null ? { traced, launch, rewritten, node: false } : UNREMARKABLE;
 }

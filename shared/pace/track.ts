@@ -50,19 +50,21 @@ const makeKnots = (): Knots => ({ head: 0, at: [], w: [], g: [] });
 export const makeTrack = (): Track => ({ recent: makeKnots(), trace: { ...makeKnots(), h: [], u: [], cold: [] }, perCount: 0 });
 
 function push(k: Knots, at: number, w: number, g: number): void {
-  k.at.push(at);
-  k.w.push(w);
-  k.g.push(g);
+  const n = k.at.length;
+  k.at[n] = at;
+  k.w[n] = w;
+  k.g[n] = g;
 }
 
 /** Appends a knot; `at` must not lie before the last one. Returns true when the trace grew. */
 export function addKnot(track: Track, at: number, w: number, g: number, launching: boolean): boolean {
-  const { recent, trace } = track;
+  const { recent } = track;
   const last = recent.at.length - 1;
-  const lastTraced = trace.at.length === 0 ? Number.NEGATIVE_INFINITY : (trace.at[trace.at.length - 1] as number);
   push(recent, at, w, g);
   while (recent.head < last && (recent.at[recent.head + 1] as number) < at - RECENT_US) recent.head++;
   if (recent.head > 1024) dropHead(recent);
+  const traced = track.trace.at;
+  const lastTraced = traced.length === 0 ? Number.NEGATIVE_INFINITY : (traced[traced.length - 1] as number);
   if (at - lastTraced < (launching ? TRACE_LAUNCH_US : TRACE_US)) return false;
   if (last >= 0) keepStandstill(track, at, lastTraced);
   pushTrace(track, at, w, g);
