@@ -3,6 +3,7 @@ import type { CourseModel } from '#shared/pace/course-model.ts';
 import { type JudgedTap, judgeTap, tapQueue } from '#shared/pace/derive-tap.ts';
 import { estimatesTo, firstNodeAfter } from '#shared/pace/estimate-nodes.ts';
 import type { Anchor, RunState, TapAct } from '#shared/pace/run-state.ts';
+import type { SourceNode } from '#shared/pace/source-node.ts';
 import type { Story, TakenFor } from '#shared/pace/tap-judge.ts';
 import { temperBy } from '#shared/pace/temper.ts';
 
@@ -59,9 +60,11 @@ function keyOf({ state: { acts, odometer }, model, first, queue }: Course): stri
     queue.map(({ seq, t, raw }) => [seq, t, raw]),
     [acts.voided, acts.moved, acts.accepted, acts.skipped],
     [model.version, odometer.handedBack?.at, odometer.losses.length, firstNodeAfter(odometer.sourceNodes, last?.t ?? 0)],
-    [first?.at, first?.d, first?.w, first?.g],
+    [first?.at, first?.d, first?.w, first?.g, hasCompared(odometer.sourceNodes)],
   ]);
 }
+
+const hasCompared = (nodes: readonly SourceNode[]): boolean => nodes.some((n) => n.compared !== null);
 
 function judgeAll(course: Course): TapChain {
   const { first } = course;
@@ -70,7 +73,7 @@ function judgeAll(course: Course): TapChain {
   if (first === null || first.belief === null || used.length === 0) return goOn(course, chain);
   // by the taps that are used alone: one that is not believed must not shift so much as a rounding
   const temper = temperBy(
-    course.state.odometer.sourceNodes.some((n) => n.compared !== null),
+    hasCompared(course.state.odometer.sourceNodes),
     (tried) => follow(tempered({ ...course, queue: used }, tried), story).cost,
   );
   const mild = tempered(course, temper);

@@ -1,3 +1,4 @@
+import { seedOf } from '#shared/drive/seed-of.ts';
 import { fromNdjson } from '#shared/journal/ndjson.ts';
 import type { PulseV1 } from '#shared/journal/observation.ts';
 import { replay } from '#shared/journal/replay.ts';
@@ -29,9 +30,6 @@ export async function createPracticeSource(session: RunSession): Promise<SensorS
     ...touches,
   });
 }
-
-/** The same run drives the same drive. */
-const seedOf = (runId: string): number => Number.parseInt(runId.replaceAll('-', '').slice(-8), 16);
 
 async function driveStart(session: RunSession): Promise<DriveStart> {
   const official = session.readout().official;

@@ -72,14 +72,17 @@ describe('finish', () => {
   });
 });
 
+/** The screens around the run are loaded beside it, which takes this browser double a while on a busy machine. */
+const LOADED = { timeout: 20_000 };
+
 describe('an open run', () => {
-  it('goes from grid to countdown to held by itself, with nothing pressed', async () => {
+  it('goes from grid to countdown to held by itself, with nothing pressed', { timeout: 30_000 }, async () => {
     // This browser double has no locks, and sending is not the subject: the outbox waits in line for good.
     vi.spyOn(webLocks, 'wait').mockReturnValue(new Promise(() => undefined));
     const screen = await drawScreen({ screen: null, releaseInMs: 100_000 });
     const { session, storage } = screen.opened;
     screen.rerender(<SessionScreen session={session} store={storage.store} again={() => undefined} />);
-    expect(await page.findByRole('region', { name: 'grid check' })).toBeTruthy();
+    expect(await page.findByRole('region', { name: 'grid check' }, LOADED)).toBeTruthy();
     await screen.pass(50_000);
     expect(await page.findByText('the starter outranks this screen')).toBeTruthy();
     await screen.pass(56_000);
