@@ -74,7 +74,7 @@ function tryPlaces(points: readonly Point[], still: number, pulseMetres: number)
   for (let k = 0; k < count; k++) {
     const within = ((k + 0.5) / count) * pulseMetres;
     const line = lineFrom(points, within, still, pulseMetres - within);
-    if (line !== null) lines.push({ ...line, within });
+    if (line !== null) lines.push({ t0: line.t0, misfit: line.misfit, within });
   }
   if (lines.length === 0) return { t0: 0, within: 0, misfit: 0 };
   const misfit = Math.min(...lines.map((line) => line.misfit));

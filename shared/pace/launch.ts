@@ -89,7 +89,7 @@ function moveOn(watch: LaunchWatch, current: MovingOff, at: number, r: number, p
   current.s.push(s);
   if (!enough) return 'none';
   watch.current = null;
-  const first = firstMovement({ ...current, pulseMetres, interval });
+  const first = firstMovement({ t: current.t, s: current.s, stillAt: current.stillAt, pulseMetres, interval });
   watch.done.push({ r: current.r, w: current.w, g: current.g, movedAt: current.movedAt, first });
   return 'complete';
 }

@@ -1,8 +1,8 @@
 import type { ButtonV1 } from '#shared/journal/observation.ts';
 import type { OdometerChange } from '#shared/pace/odometer.ts';
 import { odometerNow } from '#shared/pace/odometer-now.ts';
-import { nominalMetres, type RunState, type TapAct } from '#shared/pace/run-state.ts';
-import { lastKnotAt, rawAt, withHeat } from '#shared/pace/track.ts';
+import { nominalMetres, type RunState, type TapAct, type TapRaw } from '#shared/pace/run-state.ts';
+import { lastKnotAt, type Raw, rawAt, withHeat } from '#shared/pace/track.ts';
 import { wrappedDifference } from '#shared/pace/wheel.ts';
 
 /** Touches as recorded: the instant that counts, and the raw values then. What they mean is `derive`'s to say. */
@@ -16,7 +16,8 @@ const MOST_PRESSES = 5;
 /** Records a touch; its raw values come with the next knot. */
 export function addTap(state: RunState, tap: Pick<TapAct, 'seq' | 'at' | 'input' | 'checkpoint'>): void {
   const t = Math.round(tap.at - state.pack.settings.tapLeadMs[tap.input] * 1000);
-  state.acts.taps.push({ ...tap, t, raw: null, firm: false });
+  const { seq, at, input, checkpoint } = tap;
+  state.acts.taps.push({ seq, at, input, checkpoint, t, raw: null, firm: false });
   state.acts.pending++;
   settleTaps(state);
 }
@@ -75,25 +76,27 @@ export function settleTaps(state: RunState): boolean {
   return changed;
 }
 
+const atSpeed = ({ w, g, h, u }: Raw, v: number): TapRaw => ({ w, g, h, u, v });
+
 function rawWithSpeed(state: RunState, t: number): TapAct['raw'] {
   const { track } = state.odometer;
   const [raw, before] = [rawAt(track, t), rawAt(track, t - SPEED_OVER_US)];
   if (raw === null || before === null) return null;
   const metres = (raw.w - before.w) * nominalMetres(state) + (raw.g - before.g);
-  return { ...raw, v: (Math.max(0, metres) * 1e6) / SPEED_OVER_US };
+  return atSpeed(raw, (Math.max(0, metres) * 1e6) / SPEED_OVER_US);
 }
 
 function carried(state: RunState, t: number): TapAct['raw'] {
   const now = odometerNow(state.odometer, t, nominalMetres(state));
   return now.source === 'none' && lastKnotAt(state.odometer.track) === null
     ? null
-    : { ...withHeat(state.odometer.track, t, now), v: now.speed ?? 0 };
+    : atSpeed(withHeat(state.odometer.track, t, now), now.speed ?? 0);
 }
 
 /** Bridged metres became counts: touches and launches in that stretch are told anew like the track. */
 export function rewriteTaps(state: RunState, { from, w, g, share }: NonNullable<OdometerChange['rewritten']>): void {
   for (const tap of state.acts.taps) {
     if (tap.t <= from || tap.raw === null) continue;
-    tap.raw = { ...withHeat(state.odometer.track, tap.t, { w: w + (tap.raw.g - g) * share, g }), v: tap.raw.v };
+    tap.raw = atSpeed(withHeat(state.odometer.track, tap.t, { w: w + (tap.raw.g - g) * share, g }), tap.raw.v);
   }
 }

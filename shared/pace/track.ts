@@ -46,8 +46,12 @@ const TRACE_US = 250_000;
 /** Much denser while the car pulls away: there a straight line between knots would bend the start. */
 const TRACE_LAUNCH_US = 20_000;
 
-const makeKnots = (): Knots => ({ head: 0, at: [], w: [], g: [] });
-export const makeTrack = (): Track => ({ recent: makeKnots(), trace: { ...makeKnots(), h: [], u: [], cold: [] }, perCount: 0 });
+// no spread: every trace would be of a kind of its own, and what meets many of them slow
+export const makeTrack = (): Track => ({
+  recent: { head: 0, at: [], w: [], g: [] },
+  trace: { head: 0, at: [], w: [], g: [], h: [], u: [], cold: [] },
+  perCount: 0,
+});
 
 function push(k: Knots, at: number, w: number, g: number): void {
   const n = k.at.length;
