@@ -31,11 +31,12 @@ const onRoad = (metres: number): { lat: number; lon: number; course: number } =>
 };
 
 describe('nodes where wheel and GNSS are compared', () => {
-  it('come every 20 s from the moving off on, in order, and hold what both say of the same instant', () => {
+  it('come every 30 s from the moving off on, in order, and hold what both say of the same instant', () => {
     const o = feed(journal(wheel, receiver(1)));
     const nodes = o.sourceNodes;
     expect(seconds((nodes[0] as SourceNode).at)).toBeCloseTo(0.6, 0);
-    expect(nodes.length).toBe(10);
+    // from half a second after the release to 200 s
+    expect(nodes.length).toBe(7);
     for (const [a, b] of steps(nodes)) expect(b.at - a.at).toBe(NODE_US);
     for (const node of nodes) {
       expect(Math.abs(node.w * 0.25 - truth(node.at))).toBeLessThan(0.5);
@@ -45,7 +46,7 @@ describe('nodes where wheel and GNSS are compared', () => {
 
   it('compare to within the variance they state: 2 sigma in 19 of 20 stretches', () => {
     let [within, all, squares] = [0, 0, 0];
-    for (let seed = 1; seed <= 12; seed++) {
+    for (let seed = 1; seed <= 18; seed++) {
       // the launch teaches the lateness; from then on it is known
       for (const [a, b] of steps(feed(journal(wheel, receiver(seed, { hz: seed % 2 === 0 ? 5 : 1 }))).sourceNodes)) {
         if (b.compared === null) continue;
@@ -103,37 +104,44 @@ describe('nodes where wheel and GNSS are compared', () => {
   });
 
   it('carry the nose’s place on the surveyed line, with what its lateness and the aerial add', () => {
-    const surveyed = { line: courseLineOf(road) as CourseLine, aerialM: 2, expected: 0 };
-    const placed = receiver(4, { place: (m) => onRoad(m - 2), off: 1.5 });
     let expected = 0;
-    const at = {
-      ...surveyed,
+    const surveyed = {
+      line: courseLineOf(road) as CourseLine,
+      aerialM: 2,
       get expected() {
         return expected;
       },
     };
-    const o = feed(journal(wheel, placed), {
-      surveyed: at,
-      each: (x) => {
+    const follow = {
+      surveyed,
+      each: (x: Odometer): void => {
         expected = x.w * 0.25;
       },
+    };
+    let [squares, all] = [0, 0];
+    for (let seed = 4; seed < 12; seed++) {
+      expected = 0;
+      const placed = receiver(seed, { place: (m) => onRoad(m - 2), off: 1.5 });
+      const nodes = feed(journal(wheel, placed), follow).sourceNodes.filter((n) => n.position !== null);
+      expect(nodes.length).toBe(7);
+      for (const node of nodes) {
+        const { d, sigma } = node.position as { d: number; sigma: number };
+        squares += (d - truth(node.at)) ** 2 / sigma ** 2;
+        all++;
+      }
+    }
+    expect(squares / all).toBeLessThan(2);
+    expect(squares / all).toBeGreaterThan(0.1);
+    const unasked = feed(journal(wheel, receiver(4, { place: (m) => onRoad(m - 2), off: 1.5 })), {
+      surveyed,
+      aids: { ...ALL, gnssPosition: false },
     });
-    const nodes = o.sourceNodes.filter((n) => n.position !== null);
-    expect(nodes.length).toBeGreaterThan(8);
-    let squares = 0;
-    for (const node of nodes)
-      squares +=
-        ((node.position as { d: number; sigma: number }).d - truth(node.at)) ** 2 / (node.position as { sigma: number }).sigma ** 2;
-    expect(squares / nodes.length).toBeLessThan(2);
-    expect(squares / nodes.length).toBeGreaterThan(0.1);
-    expect(
-      feed(journal(wheel, placed), { surveyed: at, aids: { ...ALL, gnssPosition: false } }).sourceNodes.every((n) => n.position === null),
-    ).toBe(true);
+    expect(unasked.sourceNodes.every((n) => n.position === null)).toBe(true);
   });
 
   it('come on GNSS alone too, compared with nothing', () => {
     const o = feed(journal(wheel, receiver(5)), { aids: { ...ALL, wheel: false } });
-    expect(o.sourceNodes.length).toBe(10);
+    expect(o.sourceNodes.length).toBe(7);
     for (const node of o.sourceNodes) {
       expect(node).toMatchObject({ w: 0, compared: null });
       expect(Math.abs(node.g - truth(node.at))).toBeLessThan(3);
