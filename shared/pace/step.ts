@@ -35,8 +35,12 @@ export function step(state: RunState, o: Observation | UnknownObservation): void
   let stale = take(state, o as Observation);
   if (state.acts.pending > 0 && settleTaps(state)) stale = true;
   if (stale) derive(state);
-  if (isAdviceDue(state)) advise(state);
+  // a touch sets no rhythm: one that is taken back would have left another
+  if (isAdviceDue(state) && !isTouch(o.type)) advise(state);
 }
+
+const isTouch = (type: string): boolean =>
+  type === 'tap.v1' || type === 'tap-voided.v1' || type === 'tap-moved.v1' || type === 'tap-accepted.v1';
 
 /** Records the observation; true when what was derived so far may no longer hold. */
 function take(state: RunState, o: Observation): boolean {

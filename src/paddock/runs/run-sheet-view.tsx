@@ -1,6 +1,6 @@
 import type { ReactNode } from 'react';
 import { formatDistance, formatDuration, roundedDigits } from '#shared/course/format.ts';
-import type { RunSheet } from '#shared/pace/run-sheet.ts';
+import type { LegRow, RunSheet } from '#shared/pace/run-sheet.ts';
 import { Figure, FigureRow } from '#src/components/figure.tsx';
 import { FaultNotice } from '#src/components/notice.tsx';
 import { sureText } from '#src/components/sure-text.ts';
@@ -19,6 +19,10 @@ export interface SheetPlace {
   readonly timeZone: string;
 }
 
+/** Did a touch move the distance by less than it was off? The simple rules never do that. */
+const isShared = (leg: LegRow): boolean =>
+  leg.measuredM !== null && leg.movedM !== null && Math.abs(leg.officialM - leg.measuredM - leg.movedM) > 0.05;
+
 export function RunSheetView({ sheet, place }: { readonly sheet: RunSheet; readonly place: SheetPlace }) {
   return (
     <>
@@ -26,6 +30,12 @@ export function RunSheetView({ sheet, place }: { readonly sheet: RunSheet; reado
       <ShownAndDerived sheet={sheet} />
       <RunChart sheet={sheet} unit={place.unit} zones={place.zones} />
       <LegTable legs={sheet.legs} unit={place.unit} />
+      {sheet.legs.some(isShared) && (
+        <p className="text-quiet mt-2 max-w-prose">
+          The estimator moves the distance by the share a touch deserves beside wheel, GNSS and the navigator's lead: <i>moved</i> is less
+          than <i>official</i> less <i>measured</i>.
+        </p>
+      )}
       <div className="mt-8 grid gap-x-12 gap-y-8 md:grid-cols-2">
         <Facts sheet={sheet} place={place} />
         <Incidents sheet={sheet} place={place} />
