@@ -72,7 +72,7 @@ describe.each(SCALE_RULES)('by the rule "%s"', (rule) => {
     );
   });
 
-  it('a tap that is not believed changes nothing that is shown', () => {
+  it('a tap that is not believed, among others that are, changes nothing that is shown', () => {
     let unused = 0;
     fc.assert(
       fc.property(drives, equipped, fc.integer({ min: 120, max: 700 }), (drive, equip, t) => {
@@ -84,8 +84,10 @@ describe.each(SCALE_RULES)('by the rule "%s"', (rule) => {
         const seq = withTap.find((o) => o.type === 'tap.v1' && o.at === touch.at)?.seq;
         const verdict = state.derived.taps.find((x) => x.seq === seq)?.verdict;
         if (verdict !== 'doubted' && verdict !== 'no place near') return;
-        unused++;
         const plain = fold(p, without);
+        // where several touches contradict each other, one more may tip the search for the likeliest story
+        if (plain.derived.taps.some((x) => x.verdict === 'doubted' || x.verdict === 'no place near')) return;
+        unused++;
         same(unnumbered(state.derived), unnumbered(plain.derived), `derived, ${verdict}`);
         const now = micros(plain.now);
         same(shown(readout(state, now)), shown(readout(plain, now)), `shown, ${verdict}`);
