@@ -132,8 +132,8 @@ describe('the demo', () => {
     for (const sheet of sheets.filter((one) => one?.outcome === 'finished')) {
       expect(Math.abs(sheet?.finish?.timeErrorS ?? 99)).toBeLessThan(2);
       expect(sheet?.shown?.agrees).toBe(true);
-      const moved = (sheet?.taps ?? []).map((tap) => tap.movedM);
-      expect(new Set(moved.map((metres) => metres.toFixed(2))).size).toBe(moved.length);
+      const off = (sheet?.taps ?? []).map((tap) => tap.figures?.misfitM ?? 0);
+      expect(new Set(off.map((metres) => metres.toFixed(2))).size).toBe(off.length);
     }
     const passedUntouched = sheets
       .flatMap((sheet) => sheet?.legs ?? [])
