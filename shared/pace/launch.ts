@@ -63,20 +63,46 @@ export function watchLaunch(
   interval: number,
 ): LaunchEvent {
   const { cell, current } = watch;
+  // under way, as nearly always: looked at first, and short
+  if (cell !== null && current === null && Math.max(at, stillAt) - cell.at < STILL_US) {
+    if (Math.abs(r - cell.r) > STILL_M) moveTo(cell, at, r, w, g);
+    return 'none';
+  }
   if (cell === null) {
     watch.cell = { at, r, w, g };
     return 'none';
   }
-  if (Math.abs(r - cell.r) <= STILL_M) return 'none';
-  const still = current === null ? STILL_US : STILL_US + 1e6 * Math.sqrt((2 * pulseMetres) / GENTLE);
-  // either records said so, or a box that only speaks when the wheel turns was silent and then a step or two further
-  if (stillAt - cell.at >= still || (at - cell.at >= still && Math.abs(r - cell.r) <= STEP_M))
-    watch.current = { r: cell.r, w: cell.w, g: cell.g, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - cell.r], stillAt };
+  return watchRest(watch, cell, at, r, w, g, stillAt, pulseMetres, interval);
+}
+
+type Cell = NonNullable<LaunchWatch['cell']>;
+
+function moveTo(cell: Cell, at: number, r: number, w: number, g: number): void {
   cell.at = at;
   cell.r = r;
   cell.w = w;
   cell.g = g;
-  if (watch.current !== current) return 'moved';
+}
+
+function watchRest(
+  watch: LaunchWatch,
+  cell: Cell,
+  at: number,
+  r: number,
+  w: number,
+  g: number,
+  stillAt: number,
+  pulseMetres: number,
+  interval: number,
+): LaunchEvent {
+  if (Math.abs(r - cell.r) <= STILL_M) return 'none';
+  const { current } = watch;
+  const still = current === null ? STILL_US : STILL_US + 1e6 * Math.sqrt((2 * pulseMetres) / GENTLE);
+  // either records said so, or a box that only speaks when the wheel turns was silent and then a step or two further
+  const rested = stillAt - cell.at >= still || (at - cell.at >= still && Math.abs(r - cell.r) <= STEP_M);
+  if (rested) watch.current = { r: cell.r, w: cell.w, g: cell.g, movedAt: at, first: { at, within: 0 }, t: [at], s: [r - cell.r], stillAt };
+  moveTo(cell, at, r, w, g);
+  if (rested) return 'moved';
   return current === null ? 'none' : moveOn(watch, current, at, r, pulseMetres, interval);
 }
 

@@ -5,8 +5,10 @@ import type { Observation, PulseV1, UnknownObservation } from '#shared/journal/o
 type Check = (value: unknown) => boolean;
 
 /** Beyond whole numbers that a float64 can tell apart nothing is an instant, a speed or a time. */
-const number: Check = (v) => typeof v === 'number' && Math.abs(v) <= Number.MAX_SAFE_INTEGER;
-const counter: Check = (v) => Number.isInteger(v) && (v as number) >= 0 && (v as number) < 2 ** 32;
+const LARGEST = Number.MAX_SAFE_INTEGER;
+const number: Check = (v) => typeof v === 'number' && v <= LARGEST && v >= -LARGEST;
+/** A whole number from 0 to 2^32 − 1. */
+const counter: Check = (v) => typeof v === 'number' && v >>> 0 === v;
 const text: Check = (v) => typeof v === 'string';
 const numberOrNull: Check = (v) => v === null || number(v);
 const textOrNull: Check = (v) => v === null || text(v);

@@ -1,4 +1,4 @@
-import type { Observation, UnknownObservation } from '#shared/journal/observation.ts';
+import type { Observation, PulseV1, UnknownObservation } from '#shared/journal/observation.ts';
 import { advise, isAdviceDue } from '#shared/pace/advice.ts';
 import { offerClock, takePps } from '#shared/pace/clock-hear.ts';
 import { hearBox, takeClockPair, takeEpoch } from '#shared/pace/clock-life.ts';
@@ -32,7 +32,7 @@ export function step(state: RunState, o: Observation | UnknownObservation): void
     return;
   }
   if (o.at > state.now) state.now = o.at;
-  let stale = take(state, o as Observation);
+  let stale = o.type === 'pulse.v1' ? hearPulse(state, o as PulseV1) : take(state, o as Exclude<Observation, PulseV1>);
   if (state.acts.pending > 0 && settleTaps(state)) stale = true;
   if (stale) derive(state);
   // a touch sets no rhythm: one that is taken back would have left another
@@ -42,13 +42,17 @@ export function step(state: RunState, o: Observation | UnknownObservation): void
 const isTouch = (type: string): boolean =>
   type === 'tap.v1' || type === 'tap-voided.v1' || type === 'tap-moved.v1' || type === 'tap-accepted.v1';
 
+/** Nearly all observations are pulses: theirs is a way of its own, short enough to be compiled in one piece. */
+function hearPulse(state: RunState, o: PulseV1): boolean {
+  const { pack } = state;
+  hearBox(state.clock, o.at, o.boxUs);
+  return takeChange(state, takePulse(state.odometer, o, pack.wheel, pack.raceClass.aids, nominalMetres(state)));
+}
+
 /** Records the observation; true when what was derived so far may no longer hold. */
-function take(state: RunState, o: Observation): boolean {
+function take(state: RunState, o: Exclude<Observation, PulseV1>): boolean {
   const { acts, pack } = state;
   switch (o.type) {
-    case 'pulse.v1':
-      hearBox(state.clock, o.at, o.boxUs);
-      return takeChange(state, takePulse(state.odometer, o, pack.wheel, pack.raceClass.aids, nominalMetres(state)));
     case 'fix.v1':
       return takeChange(
         state,

@@ -67,8 +67,7 @@ export function addKnot(track: Track, at: number, w: number, g: number, launchin
   push(recent, at, w, g);
   while (recent.head < last && (recent.at[recent.head + 1] as number) < at - RECENT_US) recent.head++;
   if (recent.head > 1024) dropHead(recent);
-  const traced = track.trace.at;
-  const lastTraced = traced.length === 0 ? Number.NEGATIVE_INFINITY : (traced[traced.length - 1] as number);
+  const lastTraced = track.trace.at[track.trace.at.length - 1] ?? Number.NEGATIVE_INFINITY;
   if (at - lastTraced < (launching ? TRACE_LAUNCH_US : TRACE_US)) return false;
   if (last >= 0) keepStandstill(track, at, lastTraced);
   pushTrace(track, at, w, g);

@@ -48,12 +48,15 @@ function takeFirst(o: Odometer, pulse: PulseV1, metresPerPulse: number): Odomete
     beginAnew(wheel);
   }
   const verdict = takeRecord(wheel, pulse, metresPerPulse);
-  if (verdict === 'held' || verdict === 'stale') return UNREMARKABLE;
-  if (verdict === 'same' || verdict === 'moved') {
-    if (verdict === 'moved') o.usedWheel = true;
-    if (o.mode === 'wheel') return takeCount(o, wheel.total - total, metresPerPulse);
-    if (verdict === 'same') return UNREMARKABLE;
-  }
+  if (verdict === 'moved') o.usedWheel = true;
+  if (o.mode === 'wheel' && (verdict === 'moved' || verdict === 'same')) return takeCount(o, wheel.total - total, metresPerPulse);
+  if (verdict === 'held' || verdict === 'stale' || verdict === 'same') return UNREMARKABLE;
+  return takeUp(o, verdict, before, metresPerPulse);
+}
+
+/** The wheel becomes the source of distance, or its count goes on from nothing known. */
+function takeUp(o: Odometer, verdict: 'first' | 'moved' | 'restarted', before: number, metresPerPulse: number): OdometerChange {
+  const { wheel } = o;
   o.usedWheel = true;
   restartGap(o.gap, wheel.at, wheel.total);
   if (wheel.forward === 0) beginDirection(o);
@@ -87,7 +90,8 @@ function count(o: Odometer, metresPerPulse: number): OdometerChange {
   const { wheel, wheelKnot } = o;
   const pulses = wheel.total - wheelKnot.total;
   // one pulse more may have been on its way all the time; several were not, and neither was one after a rest
-  if (Math.abs(pulses) > 1 || o.stillAt - wheelKnot.at > RESTED_US) keepStill(o);
+  const still = o.stillAt - wheelKnot.at;
+  if (still > 0 && (Math.abs(pulses) > 1 || still > RESTED_US)) keepStill(o);
   wheelKnot.at = wheel.at;
   wheelKnot.total = wheel.total;
   return knot(o, wheel.at, o.w + pulses, o.g, metresPerPulse);

@@ -100,6 +100,16 @@ export function beginAnew(c: WheelChannel): void {
 
 /** Takes one record of this channel. `metresPerPulse` only judges what is plausible. */
 export function takeRecord(c: WheelChannel, o: PulseV1, metresPerPulse: number): WheelVerdict {
+  // fast backwards is believed of two records that agree, and while the way round is not known
+  if (c.seen && !c.anew && o.at >= c.at && follows(c, o, c.forward === 0 ? c.sign : c.forward, metresPerPulse)) {
+    if (c.suspect !== null) c.wild++;
+    return believe(c, o, wrappedDifference(o.count, c.count));
+  }
+  return takeOdd(c, o, metresPerPulse);
+}
+
+/** A baseline, or a record that does not follow. */
+function takeOdd(c: WheelChannel, o: PulseV1, metresPerPulse: number): WheelVerdict {
   if (!c.seen) {
     c.seen = true;
     believe(c, o, 0);
@@ -110,11 +120,6 @@ export function takeRecord(c: WheelChannel, o: PulseV1, metresPerPulse: number):
     c.anew = false;
     believe(c, o, 0);
     return 'restarted';
-  }
-  // fast backwards is believed of two records that agree, and while the way round is not known
-  if (follows(c, o, c.forward === 0 ? c.sign : c.forward, metresPerPulse)) {
-    if (c.suspect !== null) c.wild++;
-    return believe(c, o, wrappedDifference(o.count, c.count));
   }
   const suspect = c.suspect;
   // the same record again proves nothing: a living box's clock goes on
