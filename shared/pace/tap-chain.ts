@@ -3,7 +3,6 @@ import type { CourseModel } from '#shared/pace/course-model.ts';
 import { type JudgedTap, judgeTap, tapQueue } from '#shared/pace/derive-tap.ts';
 import { estimatesTo, firstNodeAfter } from '#shared/pace/estimate-nodes.ts';
 import type { Anchor, RunState, TapAct } from '#shared/pace/run-state.ts';
-import type { SourceNode } from '#shared/pace/source-node.ts';
 import type { Story, TakenFor } from '#shared/pace/tap-judge.ts';
 import { temperBy } from '#shared/pace/temper.ts';
 
@@ -60,11 +59,9 @@ function keyOf({ state: { acts, odometer }, model, first, queue }: Course): stri
     queue.map(({ seq, t, raw }) => [seq, t, raw]),
     [acts.voided, acts.moved, acts.accepted, acts.skipped],
     [model.version, odometer.handedBack?.at, odometer.losses.length, firstNodeAfter(odometer.sourceNodes, last?.t ?? 0)],
-    [first?.at, first?.d, first?.w, first?.g, hasCompared(odometer.sourceNodes)],
+    [first?.at, first?.d, first?.w, first?.g],
   ]);
 }
-
-const hasCompared = (nodes: readonly SourceNode[]): boolean => nodes.some((n) => n.compared !== null);
 
 function judgeAll(course: Course): TapChain {
   const { first } = course;
@@ -73,7 +70,7 @@ function judgeAll(course: Course): TapChain {
   if (first === null || first.belief === null || used.length === 0) return goOn(course, chain);
   // by the taps that are used alone: one that is not believed must not shift so much as a rounding
   const temper = temperBy(
-    hasCompared(course.state.odometer.sourceNodes),
+    course.state.pack.raceClass.aids.gnssSpeed,
     (tried) => follow(tempered({ ...course, queue: used }, tried), story).cost,
   );
   const mild = tempered(course, temper);

@@ -16,7 +16,7 @@ const WANDERS = [
   { factor: 7, prior: 0.3 },
 ] as const;
 
-/** Where GNSS speed shows the scale all the time, its wander need not be guessed. */
+/** Where GNSS speed is permitted it shows the scale all the time: its wander need not be guessed, and what is shown does not hang on when it is first heard. */
 const SHOWN = [{ factor: 2, prior: 1 }] as const;
 
 /** `byGnss`: the scale is compared with GNSS speed. `costOf`: −2 ln of how probable the taps are under a temper. */
